@@ -1,0 +1,49 @@
+/**
+ * News within the process, published after commit. The bus may lose news (a crash), so nothing that matters hangs
+ * on it alone: jobs read stored watermarks, browsers fetch again.
+ */
+import { EventEmitter } from 'node:events'
+import type { LongJobView } from '../../shared/schemas/longJob.ts'
+import type { TracesChunk } from '../../shared/schemas/station.ts'
+
+export interface News {
+  /** Durable readings of a station, newest end in milliseconds since 1970 UTC. */
+  'readings.stored': { stationId: number; from: number; to: number; late: boolean }
+  /** Newest samples for the record section, at most 4 a second a station. */
+  'traces.arrived': TracesChunk
+  /** The telemetry link of a station changed (connected, lost, clock). */
+  'link.changed': { stationId: number }
+  'estimate.saved': { stationId: number; windowEndsAt: number; revision: number }
+  'session.ended': { sessionId: string }
+  /** Role, disabling: everything of this person must be asked again. */
+  'person.changed': { personId: number }
+  /** A key was revoked. */
+  'stationKey.revoked': { stationId: number; keyId: number }
+  'job.progressed': LongJobView
+}
+
+export interface Bus {
+  publish<K extends keyof News>(topic: K, news: News[K]): void
+  /** Returns the function that ends the subscription. */
+  subscribe<K extends keyof News>(topic: K, listener: (news: News[K]) => void): () => void
+}
+
+/** `onError` hears what a listener throws, so that one listener cannot silence another. */
+export function createBus(onError: (error: unknown) => void): Bus {
+  const emitter = new EventEmitter()
+  emitter.setMaxListeners(0)
+  return {
+    publish: (topic, news) => void emitter.emit(topic, news),
+    subscribe(topic, listener) {
+      const guarded = (news: Parameters<typeof listener>[0]) => {
+        try {
+          listener(news)
+        } catch (error) {
+          onError(error)
+        }
+      }
+      emitter.on(topic, guarded)
+      return () => emitter.off(topic, guarded)
+    },
+  }
+}

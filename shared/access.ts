@@ -1,0 +1,59 @@
+/** Who may do what: asked by the server before every route and room, and by the client before it offers a control. */
+import type { Role } from './schemas/session.ts'
+
+/** Everything that somebody may be allowed or refused. */
+export type Action =
+  | 'session.read'
+  | 'session.end'
+  | 'installation.read'
+  | 'setUp.complete'
+  | 'settings.read'
+  | 'stations.read'
+  | 'stationKeys.read'
+  | 'stationKeys.change'
+  | 'stationHealth.read'
+  | 'jobs.read'
+  | 'jobs.cancel'
+  | 'log.read'
+  | 'audits.read'
+  | 'openapi.read'
+
+const everyone: readonly Role[] = ['admin', 'operator', 'partner']
+const anybody = 'anybody'
+
+/** `anybody` needs no session; a list names the roles. An action without a row is refused. */
+const rows: Record<Action, readonly Role[] | typeof anybody> = {
+  'session.read': anybody,
+  'session.end': anybody,
+  'installation.read': anybody,
+  'setUp.complete': anybody,
+  'openapi.read': everyone,
+  'settings.read': everyone,
+  'stations.read': everyone,
+  'stationHealth.read': ['admin', 'operator'],
+  'stationKeys.read': ['admin'],
+  'stationKeys.change': ['admin'],
+  'jobs.read': everyone,
+  'jobs.cancel': ['admin'],
+  'log.read': ['admin', 'operator'],
+  'audits.read': ['admin'],
+}
+
+export const actions = Object.keys(rows) as Action[]
+
+/** May a person of this role (null: not signed in) do this? */
+export function may(role: Role | null, action: Action): boolean {
+  const row = rows[action]
+  if (row === anybody) return true
+  return role !== null && row !== undefined && row.includes(role)
+}
+
+/** Actions that change something: refused while a session is read-only (past its absolute limit). */
+export const changes = (action: Action): boolean => /\.(change|cancel|complete)$/.test(action)
+
+/** Which action a live room asks for; null for a room that does not exist. */
+export function actionOfRoom(room: string): Action | null {
+  if (room === 'stations' || /^(station|traces):\d+$/.test(room)) return 'stations.read'
+  if (room === 'system') return 'jobs.read'
+  return null
+}

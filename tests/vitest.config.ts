@@ -1,0 +1,50 @@
+import vue from '@vitejs/plugin-vue'
+import { quasar } from '@quasar/vite-plugin'
+import { defineConfig } from 'vitest/config'
+
+/** Unit and reference tests run in parallel; API tests share one database and run one file at a time. */
+export default defineConfig({
+  root: new URL('..', import.meta.url).pathname,
+  plugins: [vue(), quasar()],
+  test: {
+    projects: [
+      {
+        extends: true,
+        test: { name: 'unit', include: ['tests/unit/**/*.test.ts', 'tests/reference/**/*.test.ts'], environment: 'node' },
+      },
+      {
+        extends: true,
+        test: {
+          name: 'api',
+          include: ['tests/api/**/*.test.ts'],
+          environment: 'node',
+          globalSetup: ['tests/support/databaseServer.ts'],
+          fileParallelism: false,
+          testTimeout: 20_000,
+          hookTimeout: 60_000,
+        },
+      },
+      {
+        extends: true,
+        test: {
+          name: 'client',
+          include: ['tests/client/**/*.test.ts'],
+          environment: 'happy-dom',
+          setupFiles: ['tests/client/setup.ts'],
+        },
+      },
+      {
+        extends: true,
+        test: {
+          name: 'e2e',
+          include: ['tests/e2e/**/*.test.ts'],
+          environment: 'node',
+          globalSetup: ['tests/support/runningProgram.ts'],
+          fileParallelism: false,
+          testTimeout: 90_000,
+          hookTimeout: 120_000,
+        },
+      },
+    ],
+  },
+})
