@@ -9,7 +9,8 @@ const everywhere = [
     message: 'A cast by way of unknown hides a wrong type: validate at the door or mend the type.',
   },
   {
-    selector: 'MemberExpression[object.name=/^(it|test|describe|suite)$/][property.name=/^(only|skip|todo|skipIf|runIf)$/]',
+    selector:
+      'MemberExpression[object.name=/^(it|test|describe|suite)$/][property.name=/^(only|skip|todo|skipIf|runIf)$/]',
     message: 'Every test runs, every time.',
   },
 ]
@@ -30,13 +31,23 @@ const oneDoorToSql = [
 const noClockNoDice = [
   { selector: 'NewExpression[callee.name="Date"][arguments.length=0]', message: 'Time is an argument here.' },
   { selector: 'CallExpression[callee.name="Date"]', message: 'Time is an argument here.' },
-  { selector: 'CallExpression[callee.object.name="Date"][callee.property.name="now"]', message: 'Time is an argument here.' },
   {
-    selector: 'CallExpression[callee.object.name="DateTime"][callee.property.name=/^(now|local|utc)$/][arguments.length=0]',
+    selector: 'CallExpression[callee.object.name="Date"][callee.property.name="now"]',
     message: 'Time is an argument here.',
   },
-  { selector: 'CallExpression[callee.object.name="DateTime"][callee.property.name="now"]', message: 'Time is an argument here.' },
-  { selector: 'MemberExpression[object.name="Math"][property.name="random"]', message: 'The seed is an argument here.' },
+  {
+    selector:
+      'CallExpression[callee.object.name="DateTime"][callee.property.name=/^(now|local|utc)$/][arguments.length=0]',
+    message: 'Time is an argument here.',
+  },
+  {
+    selector: 'CallExpression[callee.object.name="DateTime"][callee.property.name="now"]',
+    message: 'Time is an argument here.',
+  },
+  {
+    selector: 'MemberExpression[object.name="Math"][property.name="random"]',
+    message: 'The seed is an argument here.',
+  },
   { selector: 'ImportExpression', message: 'shared has no dynamic imports.' },
 ]
 
@@ -50,7 +61,13 @@ const outsideWorld = [
 
 /** mathjs can run text as a program; the text of a person never gets there. */
 const noTextAsProgram = {
-  paths: [{ name: 'mathjs', importNames: ['evaluate', 'parse', 'compile', 'parser'], message: 'No text is run as a program.' }],
+  paths: [
+    {
+      name: 'mathjs',
+      importNames: ['evaluate', 'parse', 'compile', 'parser'],
+      message: 'No text is run as a program.',
+    },
+  ],
 }
 
 export default tseslint.config(
