@@ -11,6 +11,8 @@ export const coastFeature = z.object({
     depth: z.number().optional(),
     /** Degrees true, inbound, of a channel axis. */
     bearing: z.number().optional(),
+    /** Where a place's label stands, at the end of its leader. */
+    labelAt: position.optional(),
   }),
   geometry: z.discriminatedUnion('type', [
     z.object({ type: z.literal('Point'), coordinates: position }),
