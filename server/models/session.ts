@@ -1,0 +1,30 @@
+import { DataTypes, Model } from 'sequelize'
+import type { InferAttributes, InferCreationAttributes, Sequelize } from 'sequelize'
+
+/** One signed-in browser or wall. The token in the cookie names it, and it is asked on every request. */
+export class Session extends Model<InferAttributes<Session>, InferCreationAttributes<Session>> {
+  declare id: string
+  declare personId: number
+  declare kind: 'browser' | 'wall'
+  declare createdAt: Date
+  declare lastSeenAt: Date
+  declare absoluteUntil: Date
+  declare endedAt: Date | null
+  declare endReason: string | null
+}
+
+export const defineSession = (sequelize: Sequelize): void => {
+  Session.init(
+    {
+      id: { type: DataTypes.STRING(43), primaryKey: true },
+      personId: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
+      kind: { type: DataTypes.ENUM('browser', 'wall'), allowNull: false },
+      createdAt: { type: DataTypes.DATE(3), allowNull: false },
+      lastSeenAt: { type: DataTypes.DATE(3), allowNull: false },
+      absoluteUntil: { type: DataTypes.DATE(3), allowNull: false },
+      endedAt: DataTypes.DATE(3),
+      endReason: DataTypes.STRING(40),
+    },
+    { sequelize, tableName: 'sessions' },
+  )
+}

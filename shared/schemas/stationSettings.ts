@@ -1,0 +1,29 @@
+/** How a station's windows are cut and its estimates made: the content of one version of `stationSettings`. SI units. */
+import { z } from 'zod'
+
+/** Field by field as `EstimateSettings` of `shared/waves/window` documents them. */
+export const estimateSettings = z.strictObject({
+  bandFrom: z.number().positive(),
+  bandTo: z.number().positive(),
+  gravity: z.number().min(9.7).max(9.9),
+  density: z.number().min(990).max(1060),
+  leastCompleteness: z.number().min(0).max(1),
+  leastHeight: z.number().min(0),
+  leastPressureResponse: z.number().min(0.01).max(1),
+  longestBridgedGap: z.number().min(0),
+  spikeSigmas: z.number().positive(),
+  flatSuspectSamples: z.number().int().min(2),
+  flatFailSamples: z.number().int().min(2),
+  rangeShareOfDepth: z.number().positive(),
+})
+
+export const stationSettingsContent = z.strictObject({
+  windowSeconds: z.number().int().min(300).max(3600),
+  hopSeconds: z.number().int().min(10).max(3600),
+  /** How long after a window's end it is computed though readings are still missing. */
+  graceSeconds: z.number().int().min(0).max(600),
+  /** Bearings (degrees true, clockwise from first to second) from which no wave can come. */
+  landSectors: z.array(z.tuple([z.number(), z.number()])),
+  estimate: estimateSettings,
+})
+export type StationSettingsContent = z.infer<typeof stationSettingsContent>
