@@ -1,0 +1,72 @@
+/** One way to the server: own origin, session cookie, `X-Offing` header, answers checked by the shared schemas. */
+import type { z } from 'zod'
+import { problem } from '../../shared/schemas/problem.ts'
+import { ContactError, ProblemError } from './problem.ts'
+
+export type Method = 'GET' | 'POST' | 'PUT' | 'PATCH' | 'DELETE'
+
+interface Listeners {
+  /** Any answer is contact; `serverTimeMs` from its Date header, which counts whole seconds only. */
+  answered(serverTimeMs: number | null): void
+  /** The session is no longer valid. */
+  unauthorized(): void
+}
+
+let listeners: Listeners = { answered: () => undefined, unauthorized: () => undefined }
+
+/** Called once when the program starts; stores are told of what every answer carries. */
+export function listenToAnswers(next: Listeners): void {
+  listeners = next
+}
+
+const answerTimeoutMs = 20_000
+
+export async function request<T extends z.ZodType>(
+  method: Method,
+  path: string,
+  schema: T,
+  body?: unknown,
+): Promise<z.infer<T>> {
+  const response = await send(method, path, body)
+  const answer: unknown = response.status === 204 ? undefined : await readJson(response)
+  if (!response.ok) throw refusal(response, path, answer)
+  const parsed = schema.safeParse(answer)
+  if (!parsed.success) throw new ContactError(`${path} answered in an unknown form`, { cause: parsed.error })
+  return parsed.data
+}
+
+async function send(method: Method, path: string, body: unknown): Promise<Response> {
+  try {
+    const response = await fetch(path, {
+      method,
+      credentials: 'same-origin',
+      headers: {
+        Accept: 'application/json',
+        'X-Offing': '1',
+        ...(body === undefined ? {} : { 'Content-Type': 'application/json' }),
+      },
+      body: body === undefined ? undefined : JSON.stringify(body),
+      signal: AbortSignal.timeout(answerTimeoutMs),
+    })
+    const sentAt = Date.parse(response.headers.get('Date') ?? '')
+    listeners.answered(Number.isNaN(sentAt) ? null : sentAt)
+    return response
+  } catch (error) {
+    throw new ContactError(`no answer to ${method} ${path}`, { cause: error })
+  }
+}
+
+async function readJson(response: Response): Promise<unknown> {
+  try {
+    return await response.json()
+  } catch {
+    return undefined
+  }
+}
+
+function refusal(response: Response, path: string, answer: unknown): Error {
+  const parsed = problem.safeParse(answer)
+  if (!parsed.success) return new ContactError(`${path} answered ${response.status}`)
+  if (response.status === 401 && path !== '/api/session') listeners.unauthorized()
+  return new ProblemError(parsed.data)
+}
