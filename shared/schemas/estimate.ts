@@ -9,7 +9,10 @@ import { z } from 'zod'
 export const qualityFlag = z.union([z.literal(1), z.literal(2), z.literal(3), z.literal(4), z.literal(9)])
 export type QualityFlag = z.infer<typeof qualityFlag>
 
-/** Why no vector is given. `clock`: the station's clock is too far off for a live estimate. */
+/**
+ * Why no vector is given. `clock`: the station's clock is too far off for a live estimate. `not-computed`: the
+ * computation of this window failed twice, so nothing is known of it.
+ */
 export const unresolvedReason = z.enum([
   'too-few-sensors',
   'collinear-array',
@@ -18,6 +21,7 @@ export const unresolvedReason = z.enum([
   'ambiguous',
   'geometry-doubtful',
   'clock',
+  'not-computed',
 ])
 export type UnresolvedReason = z.infer<typeof unresolvedReason>
 
