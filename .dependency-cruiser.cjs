@@ -234,6 +234,8 @@ module.exports = {
       {
         dependencyTypesNot: ['core'],
         pathNot: '^server/setup/.+\\.mjs$',
+        // What is imported when it is reached may lean on packages.
+        dynamic: false,
       },
     ),
     forbid(
