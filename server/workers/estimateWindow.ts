@@ -1,0 +1,31 @@
+/** A worker thread: takes a window, answers its estimate. One at a time, in the order they come. */
+import { setPriority } from 'node:os'
+import { parentPort } from 'node:worker_threads'
+import { estimate } from '../../shared/waves/estimate.ts'
+import { judgeStationClock } from '../../shared/waves/stationClock.ts'
+import { trackSystems } from '../../shared/waves/trackSystems.ts'
+import type { EstimateAnswer, EstimateTask, WorkerReply, WorkerRequest } from './estimateTask.ts'
+import { packDetail } from './packDetail.ts'
+import { resultDigest } from './resultDigest.ts'
+
+function answer({ window, windowEndsAt, clockOffset, known }: EstimateTask): EstimateAnswer {
+  const bare = estimate(window)
+  const judged = judgeStationClock(bare, clockOffset)
+  const { systems, tracks, nextKey } = trackSystems(known, judged.systems, windowEndsAt)
+  const result = { ...judged, systems }
+  const { spectrum: _s, directionalSpectrum: _d, tests: _t, traceSpeeds: _p, subArrays: _a, ...figures } = result
+  return { figures, known: { tracks, nextKey }, digest: resultDigest(bare), detail: packDetail(result) }
+}
+
+/** Linux keeps a priority for each thread: readings and pages go before estimates. Elsewhere it is the process's. */
+if (process.platform === 'linux') setPriority(0, 5)
+
+parentPort?.on('message', ({ id, task }: WorkerRequest) => {
+  let reply: WorkerReply
+  try {
+    reply = { id, answer: answer(task) }
+  } catch (error) {
+    reply = { id, fault: error instanceof Error ? (error.stack ?? error.message) : String(error) }
+  }
+  parentPort?.postMessage(reply)
+})
