@@ -27,12 +27,18 @@ export const pastManifest = z.object({
   /** End of the readings: the live stream begins here. */
   until: z.iso.datetime(),
   scenario: z.string(),
+  /** With scenario and anchor (the scenario's hour zero) it makes the same sea again, so that a stream joins. */
+  seed: z.number().int(),
+  anchor: z.iso.datetime(),
   stations: z.array(
     z.object({
       code: z.string(),
       readingsFile: z.string(),
       readingsFrom: z.iso.datetime(),
-      /** Each file: JSON array of pastSeaState, rising in time. */
+      /**
+       * Each file: JSON array of pastSeaState, rising in time, at most some days long. A state is the mean of the 20
+       * minutes that end at its time; the last is no later than `readingsFrom`.
+       */
       seaStates: z.array(z.object({ file: z.string(), stepSeconds: z.number().int() })),
     }),
   ),
