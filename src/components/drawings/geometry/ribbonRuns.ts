@@ -1,0 +1,97 @@
+/**
+ * The bearing ribbon cut into pieces. What was not measured stays a gap; what is suspect is hatched; each piece of
+ * one tone of period and one quality is one polygon.
+ */
+import type { SeriesPoint } from '../../../../shared/schemas/station.ts'
+import { normalise, opposite, turnBetween } from '../../../../shared/directions.ts'
+import { periodStep } from './periodTone.ts'
+
+/** One measured vector on the ribbon. */
+export interface RibbonPoint {
+  /** Hours before now. */
+  hoursAgo: number
+  /** Bearing the waves come from, unrolled about the ribbon's centre, degrees. */
+  from: number
+  height: number
+  period: number
+  spread: number | null
+  isSuspect: boolean
+}
+
+/** Points newest first; windows without a vector (unresolved, failed, missing) are left out. */
+export function ribbonPoints(
+  points: readonly SeriesPoint[],
+  nowMs: number,
+  hours: number,
+  centre: number,
+): RibbonPoint[] {
+  return points
+    .flatMap((point): RibbonPoint[] => {
+      const hoursAgo = (nowMs - Date.parse(point.at)) / 3_600_000
+      const { toward, height, period } = point
+      if (!point.resolved || point.qualityFlag === 4 || point.qualityFlag === 9) return []
+      if (toward === null || height === null || period === null || hoursAgo < 0 || hoursAgo > hours) return []
+      return [
+        {
+          hoursAgo,
+          from: centre + turnBetween(opposite(toward), centre),
+          height,
+          period,
+          spread: point.spread,
+          isSuspect: point.qualityFlag === 3,
+        },
+      ]
+    })
+    .sort((a, b) => a.hoursAgo - b.hoursAgo)
+}
+
+/** The usual time between points, hours: the median of the differences; 1/60 for fewer than two. */
+export function usualStep(points: readonly RibbonPoint[]): number {
+  const steps = points.slice(1).map((point, index) => point.hoursAgo - points[index].hoursAgo)
+  steps.sort((a, b) => a - b)
+  return steps[Math.floor(steps.length / 2)] ?? 1 / 60
+}
+
+/** Stretches without a gap: a gap is more than two and a half usual steps, and at least three minutes. */
+export function stretches(points: readonly RibbonPoint[]): RibbonPoint[][] {
+  const longest = Math.max(2.5 * usualStep(points), 0.05)
+  const found: RibbonPoint[][] = []
+  for (const point of points) {
+    const current = found.at(-1)
+    const before = current?.at(-1)
+    if (!current || !before || point.hoursAgo - before.hoursAgo > longest) found.push([point])
+    else current.push(point)
+  }
+  return found
+}
+
+/** A stretch cut where tone or quality changes; neighbours share their border point, so no seam shows. */
+export function tonedRuns(stretch: readonly RibbonPoint[]): RibbonPoint[][] {
+  const runs: RibbonPoint[][] = []
+  for (const point of stretch) {
+    const run = runs.at(-1)
+    if (!run) {
+      runs.push([point])
+      continue
+    }
+    run.push(point)
+    const alike = periodStep(run[0].period) === periodStep(point.period) && run[0].isSuspect === point.isSuspect
+    if (!alike) runs.push([point])
+  }
+  return runs.filter((run) => run.length > 1)
+}
+
+/** The bearing in the middle of the open sea: opposite the widest land. 240 where no land is given. */
+export function openSeaBearing(landSectors: readonly (readonly [number, number])[]): number {
+  if (landSectors.length === 0) return 240
+  const widths = landSectors.map(([start, end]) => normalise(end - start))
+  const [start, end] = landSectors[widths.indexOf(Math.max(...widths))]
+  return opposite(start + normalise(end - start) / 2)
+}
+
+/** Half width of the ribbon in pixels for each metre; wider for a low sea, so that it stays a ribbon. */
+export function ribbonScale(points: readonly Pick<SeriesPoint, 'height'>[], isRow: boolean): number {
+  const highest = Math.max(0, ...points.map((point) => point.height ?? 0))
+  const isLow = highest > 0 && highest < 1
+  return isRow ? (isLow ? 9.2 : 5.6) : isLow ? 14 : 8.5
+}
