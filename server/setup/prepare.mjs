@@ -14,7 +14,7 @@ export const dataFolder = resolve(root, process.env.DATA_DIR || 'var')
 const leastRoom = 700 * 1024 * 1024
 
 /** Says at once what would otherwise fail in the middle: no right to write, no room. */
-async function checkDataFolder() {
+export async function checkDataFolder() {
   await mkdir(dataFolder, { recursive: true, mode: 0o700 })
   const user = process.getuid?.()
   const owner = (await stat(dataFolder)).uid
@@ -37,7 +37,6 @@ async function checkDataFolder() {
  * @param {{ chromium: boolean, ownDatabase: boolean }} wanted
  */
 export async function prepare({ chromium, ownDatabase }) {
-  await checkDataFolder()
   const needs = [...(ownDatabase ? [debianNeeds.mariadb] : []), ...(chromium ? [debianNeeds.chromium] : [])]
   const missing = needs.filter((need) => need.programs.some((name) => !findProgram(name)))
   const results = await Promise.allSettled([

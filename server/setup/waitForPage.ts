@@ -1,0 +1,47 @@
+/** Waits until the page answers, or says why it never will. */
+import { PlainFailure } from './plainFailure.mjs'
+import type { Supervised } from './supervise.ts'
+
+const patienceMilliseconds = 180_000
+const pollMilliseconds = 100
+
+const pause = (milliseconds: number): Promise<void> => new Promise((resolve) => setTimeout(resolve, milliseconds))
+
+async function answersWithPage(address: string): Promise<boolean> {
+  try {
+    const answer = await fetch(`${address}/`, { headers: { accept: 'text/html' }, signal: AbortSignal.timeout(2_000) })
+    const isPage = answer.ok && (answer.headers.get('content-type') ?? '').startsWith('text/html')
+    await answer.body?.cancel()
+    return isPage
+  } catch {
+    return false
+  }
+}
+
+/** The sentences of a log: lines that are not JSON, and the messages of those that report a fatal fault. */
+export function sentencesOf(log: string): string {
+  const lines = log.split('\n').flatMap((line) => {
+    if (!line.startsWith('{')) return /^\s+at /.test(line) ? [] : [line]
+    try {
+      const { level, msg } = JSON.parse(line)
+      return level === 'fatal' || level === 'error' ? [String(msg)] : []
+    } catch {
+      return []
+    }
+  })
+  return lines.join('\n').trim()
+}
+
+export async function waitForPage(address: string, server: Supervised): Promise<void> {
+  let ended: { how: string; tail: string } | null = null
+  void server.firstEnd.then((end) => (ended = end))
+  const refusal = ({ how, tail }: { how: string; tail: string }) =>
+    new PlainFailure(sentencesOf(tail) || `The server ended before its page answered (${how}).`)
+  const until = performance.now() + patienceMilliseconds
+  while (!(await answersWithPage(address))) {
+    if (ended) throw refusal(ended)
+    if (performance.now() > until)
+      throw new PlainFailure(`No page at ${address} after ${patienceMilliseconds / 1000} s.`)
+    await pause(pollMilliseconds)
+  }
+}
