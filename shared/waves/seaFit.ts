@@ -1,0 +1,110 @@
+/** Fisher scoring (Fisher 1925; Longford 1987) of a sea model, damped so that the likelihood never falls. */
+import { seaLikelihood } from './seaLikelihood.ts'
+import type { Evaluation } from './seaLikelihood.ts'
+import type { SeaModel, SeaState } from './seaModel.ts'
+import {
+  copyState,
+  currentAt,
+  greatestSpread,
+  leastSpread,
+  noiseIndex,
+  parameterCount,
+  parametersPerSystem,
+} from './seaModel.ts'
+import { depthAt, directionAt, spreadAt } from './seaModel.ts'
+import { invertSymmetric, times } from './symmetric.ts'
+
+export interface SeaFit {
+  model: SeaModel
+  state: SeaState
+  evaluation: Evaluation
+  /** Inverse of the information: covariance of the parameters were the model exact. */
+  covariance: Float64Array
+  converged: boolean
+  iterations: number
+}
+
+export interface FitOptions {
+  maxIterations: number
+  /** Largest change, relative to each parameter's own scale, at which the fit has settled. */
+  tolerance: number
+}
+
+/** Fully iterated: rotation of the axes or another order of sensors changes nothing above 1e-10. */
+export const thorough: FitOptions = { maxIterations: 60, tolerance: 1e-11 }
+/** For comparing starts and faults. */
+export const quick: FitOptions = { maxIterations: 8, tolerance: 1e-4 }
+
+/** Largest change in one iteration of direction, current, ln depth and ln spread. */
+const largestStep: number[] = []
+largestStep[directionAt] = 0.25
+largestStep[currentAt] = 0.7
+largestStep[depthAt] = 0.25
+largestStep[spreadAt] = 0.6
+const largestOtherStep = 1.5
+
+/** Null where the likelihood cannot be evaluated from the start given. */
+export function fitSea(model: SeaModel, start: SeaState, options: FitOptions): SeaFit | null {
+  const likelihood = seaLikelihood(model)
+  const count = parameterCount(model)
+  let state = copyState(start)
+  let evaluation = likelihood.evaluate(state)
+  if (!Number.isFinite(evaluation.value)) return null
+  let covariance = invertSymmetric(count, evaluation.information)
+  let converged = false
+  let iterations = 0
+  while (covariance && iterations < options.maxIterations) {
+    iterations++
+    const step = times(count, covariance, evaluation.gradient)
+    const largest = limit(model, step)
+    const densityStep = likelihood.densityStep(evaluation, step)
+    let share = 1
+    let better: { state: SeaState; evaluation: Evaluation } | null = null
+    for (let halving = 0; halving < 7 && !better; halving++) {
+      const tried = move(model, state, step, densityStep, share)
+      const found = likelihood.evaluate(tried)
+      if (found.value >= evaluation.value - 1e-9 * Math.abs(evaluation.value))
+        better = { state: tried, evaluation: found }
+      share /= 2
+    }
+    if (!better) break
+    state = better.state
+    evaluation = better.evaluation
+    covariance = invertSymmetric(count, evaluation.information)
+    if (largest * share * 2 < options.tolerance) {
+      converged = true
+      break
+    }
+  }
+  return covariance ? { model, state, evaluation, covariance, converged, iterations } : null
+}
+
+/** Shortens an overlong step as a whole and returns its largest part relative to the parameter's scale. */
+function limit(model: SeaModel, step: Float64Array): number {
+  let over = 1
+  let largest = 0
+  for (let a = 0; a < step.length; a++) {
+    const isSystem = a < noiseIndex(model)
+    const bound = isSystem ? largestStep[a % parametersPerSystem] : largestOtherStep
+    over = Math.max(over, Math.abs(step[a]) / bound)
+    largest = Math.max(largest, Math.abs(step[a]))
+  }
+  for (let a = 0; a < step.length; a++) step[a] /= over
+  return largest / over
+}
+
+function move(model: SeaModel, from: SeaState, step: Float64Array, densityStep: Float64Array, share: number): SeaState {
+  const to = copyState(from)
+  for (let a = 0; a < step.length; a++) to.parameters[a] += share * step[a]
+  for (let j = 0; j < model.systems; j++) {
+    const at = j * parametersPerSystem + spreadAt
+    to.parameters[at] = Math.min(Math.log(greatestSpread), Math.max(Math.log(leastSpread), to.parameters[at]))
+  }
+  const groups = model.bands.groups
+  for (let n = 0; n < densityStep.length; n++) {
+    const change = Math.min(1.5, Math.max(-1.5, densityStep[n]))
+    const floor = Math.log(1e-4 * model.bands.density[n % groups] + 1e-300)
+    to.logDensity[n] = Math.max(floor, to.logDensity[n] + share * change)
+  }
+  return to
+}

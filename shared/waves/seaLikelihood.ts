@@ -1,0 +1,340 @@
+/**
+ * Whittle's likelihood (Whittle 1953; complex Wishart, Goodman 1963) of the cross-spectral matrices under a sea model, with its
+ * gradient and Fisher's information. ln L = −Σ_g ν_g [ln det R_g + tr(R_g⁻¹ C_g)]; score ν tr((R⁻¹CR⁻¹ − R⁻¹) ∂R);
+ * information ν tr(R⁻¹ ∂_a R R⁻¹ ∂_b R) (Slepian 1954, Bangs 1971). The densities of each group are eliminated (Schur).
+ */
+import { dopplerWaveNumber } from './dopplerDispersion.ts'
+import { invertHermitian } from './hermitian.ts'
+import type { SeaModel, SeaState } from './seaModel.ts'
+import {
+  currentAt,
+  depthAt,
+  directionAt,
+  noiseIndex,
+  parameterCount,
+  parametersPerSystem,
+  spreadAt,
+} from './seaModel.ts'
+import { makeSpreadingNodes, spreadingNodes } from './spreading.ts'
+import { complexMatrix, fillWaveMatrices, waveMatrices } from './waveMatrices.ts'
+import type { ComplexMatrix } from './waveMatrices.ts'
+
+export interface Evaluation {
+  /** ln L with priors, without its constant. */
+  value: number
+  /** ln L of the data alone. */
+  dataValue: number
+  /** Gradient and information of the parameters after elimination of the densities. */
+  gradient: Float64Array
+  information: Float64Array
+  /** Each group's own share of the gradient (data alone), groups × parameters: its scatter is the honest uncertainty. */
+  groupGradient: Float64Array
+  /** What `densityStep` needs. */
+  densityInverse: Float64Array
+  densityGradient: Float64Array
+  densityCross: Float64Array
+}
+
+export interface SeaLikelihood {
+  evaluate: (state: SeaState) => Evaluation
+  /** ln S change that goes with a change of the parameters. */
+  densityStep: (evaluation: Evaluation, parameterStep: Float64Array) => Float64Array
+}
+
+export function seaLikelihood(model: SeaModel): SeaLikelihood {
+  const { bands, x, y, systems } = model
+  const m = bands.sensors
+  const mm = m * m
+  const groups = bands.groups
+  const count = parameterCount(model)
+  const noiseAt = noiseIndex(model)
+  // Local directions of change in a group: S_j, then per system direction, wave number, spread, then noise and faults.
+  const locals = systems * 4 + 1 + model.faults.length
+  const waves = Array.from({ length: systems }, () => waveMatrices(m))
+  const nodes = Array.from({ length: systems }, makeSpreadingNodes)
+  const r = complexMatrix(m)
+  const w = complexMatrix(m)
+  const e = complexMatrix(m)
+  const c = complexMatrix(m)
+  const change: ComplexMatrix[] = Array.from({ length: locals }, () => complexMatrix(m))
+  const product: ComplexMatrix[] = Array.from({ length: locals }, () => complexMatrix(m))
+  const work = new Float64Array(4 * mm)
+  const score = new Float64Array(locals)
+  const fisher = new Float64Array(locals * locals)
+  const wave = Array.from({ length: systems }, () => ({ k: 0, dkByCurrent: 0, dkByLogDepth: 0 }))
+  const aperture = Math.max(...Array.from(x, (xi, i) => 2 * Math.hypot(xi, y[i])))
+  const topFrequency = groups > 0 ? bands.frequency[groups - 1] : 0
+  // Global index and factor of each local change, filled per group (wave number feeds current and depth).
+  const toGlobal = new Float64Array(locals * count)
+
+  function evaluate(state: SeaState): Evaluation {
+    const p = state.parameters
+    const evaluation: Evaluation = {
+      value: 0,
+      dataValue: 0,
+      gradient: new Float64Array(count),
+      information: new Float64Array(count * count),
+      groupGradient: new Float64Array(groups * count),
+      densityInverse: new Float64Array(groups * systems * systems),
+      densityGradient: new Float64Array(groups * systems),
+      densityCross: new Float64Array(groups * systems * count),
+    }
+    for (let j = 0; j < systems; j++) {
+      const base = j * parametersPerSystem
+      dopplerWaveNumber(
+        2 * Math.PI * topFrequency,
+        Math.exp(p[base + depthAt]),
+        p[base + currentAt],
+        model.gravity,
+        wave[j],
+      )
+      spreadingNodes(Math.exp(p[base + spreadAt]), wave[j].k * aperture, nodes[j])
+    }
+    const noise = Math.exp(p[noiseAt])
+    for (let g = 0; g < groups; g++) {
+      const omega = 2 * Math.PI * bands.frequency[g]
+      const nu = bands.averages[g]
+      r.real.fill(0)
+      r.imag.fill(0)
+      toGlobal.fill(0)
+      for (let j = 0; j < systems; j++) {
+        const base = j * parametersPerSystem
+        dopplerWaveNumber(omega, Math.exp(p[base + depthAt]), p[base + currentAt], model.gravity, wave[j])
+        fillWaveMatrices(x, y, p[base + directionAt], wave[j].k, nodes[j], waves[j])
+        const density = Math.exp(state.logDensity[j * groups + g])
+        const local = systems + 3 * j
+        scaled(waves[j].gamma, density, change[j])
+        scaled(waves[j].byDirection, density, change[local])
+        scaled(waves[j].byWaveNumber, density, change[local + 1])
+        scaled(waves[j].byLogSpread, density, change[local + 2])
+        for (let n = 0; n < mm; n++) {
+          r.real[n] += change[j].real[n]
+          r.imag[n] += change[j].imag[n]
+        }
+        toGlobal[local * count + base + directionAt] = 1
+        toGlobal[(local + 1) * count + base + currentAt] = wave[j].dkByCurrent
+        toGlobal[(local + 1) * count + base + depthAt] = wave[j].dkByLogDepth
+        toGlobal[(local + 2) * count + base + spreadAt] = 1
+      }
+      const noiseLocal = systems * 4
+      change[noiseLocal].real.fill(0)
+      change[noiseLocal].imag.fill(0)
+      for (let i = 0; i < m; i++) {
+        const own = noise * bands.noise[g * m + i]
+        r.real[i * m + i] += own
+        change[noiseLocal].real[i * m + i] = own
+      }
+      toGlobal[noiseLocal * count + noiseAt] = 1
+      for (let n = 0; n < mm; n++) {
+        c.real[n] = bands.real[g * mm + n]
+        c.imag[n] = bands.imag[g * mm + n]
+      }
+      for (let f = 0; f < model.faults.length; f++) {
+        const fault = model.faults[f]
+        const rate = fault.kind === 'clock' ? omega : -wave[0].k
+        unturn(c, fault.sensor, rate * p[noiseAt + 1 + f])
+        turnRate(r, fault.sensor, rate, change[noiseLocal + 1 + f])
+        toGlobal[(noiseLocal + 1 + f) * count + noiseAt + 1 + f] = 1
+      }
+      const logDeterminant = invertHermitian(m, r.real, r.imag, w.real, w.imag, work)
+      if (!(logDeterminant === logDeterminant)) {
+        evaluation.value = -Infinity
+        evaluation.dataValue = -Infinity
+        return evaluation
+      }
+      multiply(m, w, c, product[0])
+      let trace = 0
+      for (let i = 0; i < m; i++) trace += product[0].real[i * m + i]
+      evaluation.dataValue -= nu * (logDeterminant + trace)
+      multiply(m, product[0], w, e)
+      for (let n = 0; n < mm; n++) {
+        e.real[n] -= w.real[n]
+        e.imag[n] -= w.imag[n]
+      }
+      for (let a = 0; a < locals; a++) {
+        score[a] = nu * traceOfProduct(m, e, change[a])
+        multiply(m, w, change[a], product[a])
+      }
+      for (let a = 0; a < locals; a++) {
+        for (let b = 0; b <= a; b++) {
+          const value = nu * traceOfProduct(m, product[a], product[b])
+          fisher[a * locals + b] = value
+          fisher[b * locals + a] = value
+        }
+      }
+      gather(state, evaluation, g)
+    }
+    evaluation.value += evaluation.dataValue
+    for (let a = 0; a < count; a++) {
+      const prior = model.priors[a]
+      const off = (p[a] - prior.mean) / prior.sd
+      evaluation.value -= 0.5 * off * off
+      evaluation.gradient[a] -= off / prior.sd
+      evaluation.information[a * count + a] += 1 / (prior.sd * prior.sd)
+    }
+    return evaluation
+  }
+
+  /** Eliminates the densities of group g and adds what is left to gradient and information of the parameters. */
+  function gather(state: SeaState, evaluation: Evaluation, g: number): void {
+    const inner = new Float64Array(systems * systems)
+    const innerGradient = evaluation.densityGradient
+    for (let j = 0; j < systems; j++) {
+      let own = score[j]
+      let weight = 1e-6
+      if (model.densityPrior) {
+        const off = state.logDensity[j * groups + g] - model.densityPrior.mean[j * groups + g]
+        const precision = 1 / model.densityPrior.sd ** 2
+        own -= off * precision
+        weight = precision
+        evaluation.value -= 0.5 * off * off * precision
+      }
+      innerGradient[g * systems + j] = own
+      for (let i = 0; i < systems; i++) inner[j * systems + i] = fisher[j * locals + i] + (i === j ? weight : 0)
+    }
+    const inverse = invertSmall(systems, inner)
+    evaluation.densityInverse.set(inverse, g * systems * systems)
+    for (let a = 0; a < count; a++) {
+      for (let local = systems; local < locals; local++) {
+        const factor = toGlobal[local * count + a]
+        if (factor === 0) continue
+        evaluation.groupGradient[g * count + a] += factor * score[local]
+        for (let j = 0; j < systems; j++)
+          evaluation.densityCross[(g * systems + j) * count + a] += factor * fisher[local * locals + j]
+        for (let b = 0; b < count; b++) {
+          for (let other = systems; other < locals; other++) {
+            const factorB = toGlobal[other * count + b]
+            if (factorB !== 0)
+              evaluation.information[a * count + b] += factor * factorB * fisher[local * locals + other]
+          }
+        }
+      }
+    }
+    for (let i = 0; i < systems; i++) {
+      for (let j = 0; j < systems; j++) {
+        const weight = inverse[i * systems + j]
+        const crossI = (g * systems + i) * count
+        const crossJ = (g * systems + j) * count
+        for (let a = 0; a < count; a++) {
+          const left = evaluation.densityCross[crossI + a] * weight
+          if (left === 0) continue
+          evaluation.groupGradient[g * count + a] -= left * innerGradient[g * systems + j]
+          for (let b = 0; b < count; b++)
+            evaluation.information[a * count + b] -= left * evaluation.densityCross[crossJ + b]
+        }
+      }
+    }
+    for (let a = 0; a < count; a++) evaluation.gradient[a] += evaluation.groupGradient[g * count + a]
+  }
+
+  function densityStep(evaluation: Evaluation, parameterStep: Float64Array): Float64Array {
+    const step = new Float64Array(systems * groups)
+    for (let g = 0; g < groups; g++) {
+      for (let i = 0; i < systems; i++) {
+        for (let j = 0; j < systems; j++) {
+          let left = evaluation.densityGradient[g * systems + j]
+          for (let a = 0; a < count; a++)
+            left -= evaluation.densityCross[(g * systems + j) * count + a] * parameterStep[a]
+          step[i * groups + g] += evaluation.densityInverse[(g * systems + i) * systems + j] * left
+        }
+      }
+    }
+    return step
+  }
+
+  return { evaluate, densityStep }
+}
+
+function scaled(matrix: ComplexMatrix, factor: number, out: ComplexMatrix): void {
+  for (let n = 0; n < matrix.real.length; n++) {
+    out.real[n] = factor * matrix.real[n]
+    out.imag[n] = factor * matrix.imag[n]
+  }
+}
+
+function multiply(m: number, a: ComplexMatrix, b: ComplexMatrix, out: ComplexMatrix): void {
+  for (let row = 0; row < m; row++) {
+    for (let col = 0; col < m; col++) {
+      let real = 0
+      let imag = 0
+      for (let k = 0; k < m; k++) {
+        const ar = a.real[row * m + k]
+        const ai = a.imag[row * m + k]
+        const br = b.real[k * m + col]
+        const bi = b.imag[k * m + col]
+        real += ar * br - ai * bi
+        imag += ar * bi + ai * br
+      }
+      out.real[row * m + col] = real
+      out.imag[row * m + col] = imag
+    }
+  }
+}
+
+/** Real part of tr(A B). */
+function traceOfProduct(m: number, a: ComplexMatrix, b: ComplexMatrix): number {
+  let trace = 0
+  for (let row = 0; row < m; row++) {
+    for (let k = 0; k < m; k++) {
+      const at = row * m + k
+      const other = k * m + row
+      trace += a.real[at] * b.real[other] - a.imag[at] * b.imag[other]
+    }
+  }
+  return trace
+}
+
+/** Takes the phase `angle` of one sensor out of the data. */
+function unturn(c: ComplexMatrix, sensor: number, angle: number): void {
+  if (angle === 0) return
+  const m = Math.sqrt(c.real.length)
+  const cos = Math.cos(angle)
+  const sin = Math.sin(angle)
+  for (let k = 0; k < m; k++) {
+    if (k === sensor) continue
+    const row = sensor * m + k
+    const col = k * m + sensor
+    const real = c.real[row] * cos + c.imag[row] * sin
+    const imag = c.imag[row] * cos - c.real[row] * sin
+    c.real[row] = real
+    c.imag[row] = imag
+    c.real[col] = real
+    c.imag[col] = -imag
+  }
+}
+
+/** ∂(D R D*)/∂v with D = exp(i v rate) on one sensor, at v = 0. */
+function turnRate(r: ComplexMatrix, sensor: number, rate: number, out: ComplexMatrix): void {
+  out.real.fill(0)
+  out.imag.fill(0)
+  const m = Math.sqrt(r.real.length)
+  for (let k = 0; k < m; k++) {
+    if (k === sensor) continue
+    const row = sensor * m + k
+    const col = k * m + sensor
+    out.real[row] = -rate * r.imag[row]
+    out.imag[row] = rate * r.real[row]
+    out.real[col] = out.real[row]
+    out.imag[col] = -out.imag[row]
+  }
+}
+
+/** Inverse of a symmetric 1×1, 2×2 or 3×3 matrix. */
+function invertSmall(n: number, a: Float64Array): Float64Array {
+  if (n === 1) return Float64Array.of(1 / a[0])
+  if (n === 2) {
+    const determinant = a[0] * a[3] - a[1] * a[2]
+    return Float64Array.of(a[3] / determinant, -a[1] / determinant, -a[2] / determinant, a[0] / determinant)
+  }
+  const c00 = a[4] * a[8] - a[5] * a[7]
+  const c01 = a[5] * a[6] - a[3] * a[8]
+  const c02 = a[3] * a[7] - a[4] * a[6]
+  const determinant = a[0] * c00 + a[1] * c01 + a[2] * c02
+  const c11 = (a[0] * a[8] - a[2] * a[6]) / determinant
+  const c12 = (a[2] * a[3] - a[0] * a[5]) / determinant
+  const c22 = (a[0] * a[4] - a[1] * a[3]) / determinant
+  const i00 = c00 / determinant
+  const i01 = c01 / determinant
+  const i02 = c02 / determinant
+  return Float64Array.of(i00, i01, i02, i01, c11, c12, i02, c12, c22)
+}

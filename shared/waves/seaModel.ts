@@ -1,0 +1,56 @@
+/**
+ * The sea as the likelihood sees it: J trains of waves, each with heading, current along its heading, depth and spread, over sensor
+ * noise. R_g = Σ_j S_jg Γ_jg + N·diag(v_g). Densities S_jg are free at every frequency, so no shape of spectrum is assumed.
+ */
+import type { BandMatrices } from './bandMatrices.ts'
+
+/** Parameters of one train, in this order in the vector: direction (rad), current (m/s), ln depth, ln spread (rad). */
+export const parametersPerSystem = 4
+export const directionAt = 0
+export const currentAt = 1
+export const depthAt = 2
+export const spreadAt = 3
+
+/** Narrowest and widest spread that is fitted, rad (2° and 75°). */
+export const leastSpread = 0.035
+export const greatestSpread = 1.31
+
+/** A sensor's own error of phase, fitted or tested: a clock (s) or a path along the leading train (m). */
+export interface PhaseFault {
+  kind: 'clock' | 'path'
+  /** Index in the frame's order. */
+  sensor: number
+}
+
+/** Gaussian prior of one parameter: what is known before the record is seen. Wide, so that the record decides. */
+export interface Prior {
+  mean: number
+  sd: number
+}
+
+export interface SeaModel {
+  bands: BandMatrices
+  /** Sensor positions in the array's frame, m. */
+  x: Float64Array
+  y: Float64Array
+  systems: number
+  gravity: number
+  faults: PhaseFault[]
+  priors: Prior[]
+  /** ln S_jg expected from the shape of the spectrum, with its wide sd; null with a single train. */
+  densityPrior: { mean: Float64Array; sd: number } | null
+}
+
+/** Values of the parameters: systems × 4, then ln N, then the faults; and ln S_jg at [j·groups + g]. */
+export interface SeaState {
+  parameters: Float64Array
+  logDensity: Float64Array
+}
+
+export const noiseIndex = (model: SeaModel): number => model.systems * parametersPerSystem
+export const parameterCount = (model: SeaModel): number => noiseIndex(model) + 1 + model.faults.length
+
+export const copyState = (state: SeaState): SeaState => ({
+  parameters: state.parameters.slice(),
+  logDensity: state.logDensity.slice(),
+})

@@ -1,0 +1,201 @@
+/**
+ * QARTOD tests on the raw samples of one sensor (U.S. IOOS manuals for water level 2021 and in-situ waves 2019): gap,
+ * gross range, spike, flat line, rate of change. Failed samples become missing; the caller's series stays as it was.
+ */
+import type { QualityFlag, QualityTest, SensorFinding } from '../schemas/estimate.ts'
+import type { EstimateSettings } from './window.ts'
+import { robustSpread, median } from './robust.ts'
+
+export interface CheckedSeries {
+  /** The samples with failed ones missing (NaN). */
+  clean: Float64Array
+  findings: SensorFinding[]
+  tests: QualityTest[]
+  flag: QualityFlag
+  /** Share of samples that are left, 0 to 1. */
+  completeness: number
+}
+
+/** Offsets of the neighbours a sample is held against, in quarter seconds: wide enough for a spike of three samples at 4 Hz. */
+const neighbourOffsets = [-4, -3, -2, -1, 1, 2, 3, 4]
+
+/**
+ * Runs the tests. `scale` is the metres of water that one unit stands for (1 for metres, about 1 for dbar).
+ * A share of usable samples below `leastCompleteness` is a fail (4), no sample at all is missing (9).
+ */
+export function checkSeries(
+  id: string,
+  raw: Float64Array,
+  sampleRate: number,
+  waterDepth: number,
+  settings: EstimateSettings,
+): CheckedSeries {
+  const clean = Float64Array.from(raw, (value) => (Number.isFinite(value) ? value : NaN))
+  const findings: SensorFinding[] = []
+  const tests: QualityTest[] = []
+  const note = (
+    test: string,
+    finding: SensorFinding,
+    flag: QualityFlag,
+    value: number,
+    limit: number,
+    detail: string,
+  ) => {
+    tests.push({ test, flag, value, limit, detail: `${id}: ${detail}` })
+    if (flag !== 1) findings.push(finding)
+  }
+  const present = count(clean)
+  if (present === 0) {
+    note('gap', 'missing', 9, 0, settings.leastCompleteness, 'no sample in the window')
+    return { clean, findings, tests, flag: 9, completeness: 0 }
+  }
+  const gap = longestGap(clean) / sampleRate
+  note(
+    'gap',
+    'gap',
+    gap > settings.longestBridgedGap ? 3 : 1,
+    gap,
+    settings.longestBridgedGap,
+    `longest gap ${gap.toFixed(1)} s`,
+  )
+  const reach = settings.rangeShareOfDepth * waterDepth
+  const outside = dropOutside(clean, reach)
+  note(
+    'range',
+    'range',
+    outside > 0 ? 3 : 1,
+    outside,
+    0,
+    `${outside} samples farther than ${reach.toFixed(1)} m from the middle`,
+  )
+  const run = dropFlatRuns(clean, settings.flatFailSamples)
+  const flatFlag = run >= settings.flatFailSamples ? 4 : run >= settings.flatSuspectSamples ? 3 : 1
+  note('flat line', 'flat-line', flatFlag, run, settings.flatFailSamples, `longest run of equal samples ${run}`)
+  const spikes = dropSpikes(clean, sampleRate, settings.spikeSigmas)
+  note(
+    'spike',
+    'spike',
+    spikes > 0 ? 3 : 1,
+    spikes,
+    0,
+    `${spikes} samples more than ${settings.spikeSigmas} sd off their neighbours`,
+  )
+  const fastest = fastestChange(clean)
+  note(
+    'rate',
+    'rate',
+    fastest > rateSigmas ? 3 : 1,
+    fastest,
+    rateSigmas,
+    `fastest change ${fastest.toFixed(1)} sd of the changes`,
+  )
+  const completeness = count(clean) / raw.length
+  const enough = completeness >= settings.leastCompleteness
+  tests.push({
+    test: 'percent good',
+    flag: enough ? 1 : 4,
+    value: completeness,
+    limit: settings.leastCompleteness,
+    detail: `${id}: ${(100 * completeness).toFixed(1)} % usable`,
+  })
+  const flag: QualityFlag = !enough ? (completeness === 0 ? 9 : 4) : findings.length > 0 ? 3 : 1
+  return { clean, findings, tests, flag, completeness }
+}
+
+/** Changes from one sample to the next beyond so many robust standard deviations are of high interest; they are kept. */
+const rateSigmas = 10
+
+function count(series: Float64Array): number {
+  let present = 0
+  for (let i = 0; i < series.length; i++) if (series[i] === series[i]) present++
+  return present
+}
+
+function longestGap(series: Float64Array): number {
+  let longest = 0
+  let run = 0
+  for (let i = 0; i < series.length; i++) {
+    run = series[i] === series[i] ? 0 : run + 1
+    if (run > longest) longest = run
+  }
+  return longest
+}
+
+function dropOutside(series: Float64Array, reach: number): number {
+  const middle = median(series)
+  let dropped = 0
+  for (let i = 0; i < series.length; i++) {
+    if (!(Math.abs(series[i] - middle) > reach)) continue
+    series[i] = NaN
+    dropped++
+  }
+  return dropped
+}
+
+/** Longest run of equal samples; runs of `fail` and more become missing. */
+function dropFlatRuns(series: Float64Array, fail: number): number {
+  let longest = 0
+  let start = 0
+  for (let i = 1; i <= series.length; i++) {
+    if (i < series.length && Math.abs(series[i] - series[start]) < 1e-9) continue
+    if (series[start] === series[start]) {
+      const run = i - start
+      longest = Math.max(longest, run)
+      if (run >= fail) series.fill(NaN, start, i)
+    }
+    start = i
+  }
+  return longest
+}
+
+/**
+ * Spikes: samples farther from the median of their neighbours than so many robust standard deviations of that distance
+ * and than the robust standard deviation of the record. Two passes, so that a spike hides no other.
+ */
+function dropSpikes(series: Float64Array, sampleRate: number, sigmas: number): number {
+  const stride = Math.max(1, Math.round(sampleRate / 4))
+  const off = new Float64Array(series.length)
+  const near = new Float64Array(neighbourOffsets.length)
+  const whole = robustSpread(series)
+  let dropped = 0
+  for (let pass = 0; pass < 2; pass++) {
+    for (let i = 0; i < series.length; i++) off[i] = series[i] - neighbourMedian(series, i, stride, near)
+    const limit = Math.max(sigmas * robustSpread(off), whole)
+    if (!(limit > 0)) return dropped
+    let found = 0
+    for (let i = 0; i < series.length; i++) {
+      if (!(Math.abs(off[i]) > limit)) continue
+      series[i] = NaN
+      found++
+    }
+    dropped += found
+    if (found === 0) break
+  }
+  return dropped
+}
+
+function neighbourMedian(series: Float64Array, at: number, stride: number, near: Float64Array): number {
+  let found = 0
+  for (let n = 0; n < neighbourOffsets.length; n++) {
+    const value = series[at + neighbourOffsets[n] * stride]
+    if (value !== value || value === undefined) continue
+    let place = found++
+    while (place > 0 && near[place - 1] > value) {
+      near[place] = near[place - 1]
+      place--
+    }
+    near[place] = value
+  }
+  if (found < 3) return NaN
+  return found % 2 === 1 ? near[found >> 1] : 0.5 * (near[found / 2 - 1] + near[found / 2])
+}
+
+function fastestChange(series: Float64Array): number {
+  const changes = new Float64Array(series.length - 1)
+  for (let i = 1; i < series.length; i++) changes[i - 1] = series[i] - series[i - 1]
+  const spread = robustSpread(changes)
+  if (!(spread > 0)) return 0
+  let fastest = 0
+  for (let i = 0; i < changes.length; i++) if (Math.abs(changes[i]) > fastest) fastest = Math.abs(changes[i])
+  return fastest / spread
+}
