@@ -199,7 +199,7 @@ module.exports = {
       { path: '^server/services/([^/.]+)' },
       {
         path: '^server/services/',
-        pathNot: ['^server/services/$1(/|\\.ts$)', '^server/services/(bus|audits?|watchLog|problems?)(/|\\.ts$)'],
+        pathNot: ['^server/services/$1(/|\\.ts$)', '^server/services/(bus|audits?|watchLog|problems?|passwords|transaction)(/|\\.ts$)'],
       },
     ),
     forbid(

@@ -4,6 +4,7 @@ import type { Role } from './schemas/session.ts'
 /** Everything that somebody may be allowed or refused. */
 export type Action =
   | 'session.read'
+  | 'session.begin'
   | 'session.end'
   | 'installation.read'
   | 'setUp.complete'
@@ -23,7 +24,8 @@ const anybody = 'anybody'
 
 /** `anybody` needs no session; a list names the roles. An action without a row is refused. */
 const rows: Record<Action, readonly Role[] | typeof anybody> = {
-  'session.read': anybody,
+  'session.read': everyone,
+  'session.begin': anybody,
   'session.end': anybody,
   'installation.read': anybody,
   'setUp.complete': anybody,

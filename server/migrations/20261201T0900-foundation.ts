@@ -53,6 +53,7 @@ const tables: [name: string, columns: string, partition?: string][] = [
     `\`id\` VARCHAR(43) CHARACTER SET ascii COLLATE ascii_bin NOT NULL PRIMARY KEY,
      \`personId\` INT UNSIGNED NOT NULL,
      \`kind\` ENUM('browser', 'wall') NOT NULL,
+     \`tokenId\` VARCHAR(43) CHARACTER SET ascii COLLATE ascii_bin NOT NULL,
      \`createdAt\` DATETIME(3) NOT NULL,
      \`lastSeenAt\` DATETIME(3) NOT NULL,
      \`absoluteUntil\` DATETIME(3) NOT NULL,

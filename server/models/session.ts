@@ -1,11 +1,12 @@
 import { DataTypes, Model } from 'sequelize'
 import type { InferAttributes, InferCreationAttributes, Sequelize } from 'sequelize'
 
-/** One signed-in browser or wall. The token in the cookie names it, and it is asked on every request. */
+/** One signed-in browser or wall. The token in the cookie names it and its `tokenId`, and it is asked on every request. */
 export class Session extends Model<InferAttributes<Session>, InferCreationAttributes<Session>> {
   declare id: string
   declare personId: number
   declare kind: 'browser' | 'wall'
+  declare tokenId: string
   declare createdAt: Date
   declare lastSeenAt: Date
   declare absoluteUntil: Date
@@ -19,6 +20,7 @@ export const defineSession = (sequelize: Sequelize): void => {
       id: { type: DataTypes.STRING(43), primaryKey: true },
       personId: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       kind: { type: DataTypes.ENUM('browser', 'wall'), allowNull: false },
+      tokenId: { type: DataTypes.STRING(43), allowNull: false },
       createdAt: { type: DataTypes.DATE(3), allowNull: false },
       lastSeenAt: { type: DataTypes.DATE(3), allowNull: false },
       absoluteUntil: { type: DataTypes.DATE(3), allowNull: false },

@@ -1,0 +1,24 @@
+/** All routes, one line a feature. */
+import type { Parts } from '../config/parts.ts'
+import { sessionCookieName } from '../config/sessionCookie.ts'
+import { installationRoutes } from './installation.ts'
+import { jobRoutes } from './jobs.ts'
+import { withOpenApi } from './openApi.ts'
+import type { Route } from './registry.ts'
+import { sessionRoutes } from './session.ts'
+import { settingsRoutes } from './settings.ts'
+import { setUpRoutes } from './setUp.ts'
+
+const features: ((parts: Parts) => Route[])[] = [
+  installationRoutes,
+  sessionRoutes,
+  setUpRoutes,
+  settingsRoutes,
+  jobRoutes,
+]
+
+export const allRoutes = (parts: Parts): Route[] =>
+  withOpenApi(
+    features.flatMap((routes) => routes(parts)),
+    sessionCookieName(parts.environment),
+  )

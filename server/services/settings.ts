@@ -1,0 +1,91 @@
+/** Settings of the whole installation, in groups; every change is a new version with its author and reason. */
+import { Op } from 'sequelize'
+import type { Transaction } from 'sequelize'
+import { z } from 'zod'
+import { coast } from '../../shared/schemas/coast.ts'
+import type { PublicSettings } from '../../shared/schemas/coast.ts'
+import type { Parts } from '../config/parts.ts'
+import { SettingVersion } from '../models/index.ts'
+import { recordAudit } from './audit.ts'
+
+/** Every group with the shape of its content. */
+const shapes = {
+  port: z.strictObject({ portName: z.string().min(1).max(80), timeZone: z.string().min(1).max(60) }),
+  watch: z.strictObject({ leadStationId: z.number().int().nullable() }),
+  cautions: z.strictObject({
+    figures: z.string().min(20).max(400),
+    array: z.string().min(20).max(400),
+    traceSpeeds: z.string().min(20).max(400),
+  }),
+  coast: z.strictObject({ plan: coast.nullable() }),
+}
+
+export type SettingGroup = keyof typeof shapes
+export type Settings = { [Group in SettingGroup]: z.infer<(typeof shapes)[Group]> }
+
+/** What holds until somebody has set it. */
+const initial: Settings = {
+  port: { portName: 'Harbour', timeZone: 'Etc/UTC' },
+  watch: { leadStationId: null },
+  cautions: {
+    figures:
+      'Figures support and never replace the judgement of the master, pilot, coxswain or lifeguard, local notices and licensed practice. Waves well above the significant height occur in every sea. Calm figures do not mean safe bathing.',
+    array: 'An array sees the sea where it stands, not the whole coast.',
+    traceSpeeds:
+      'A trace speed is the apparent speed along one pair of sensors, never a component of the wave vector: it reads too high by 1/cos of its angle to the waves.',
+  },
+  coast: { plan: null },
+}
+
+type Shapes = { [Group in SettingGroup]: z.ZodType<Settings[Group]> }
+const shapeOf: Shapes = shapes
+
+/** What is in force now. */
+export async function settingInForce<Group extends SettingGroup>(
+  { clock }: Pick<Parts, 'clock'>,
+  group: Group,
+  transaction?: Transaction,
+): Promise<Settings[Group]> {
+  const version = await SettingVersion.findOne({
+    where: { groupName: group, validFrom: { [Op.lte]: clock.now() } },
+    order: [
+      ['validFrom', 'DESC'],
+      ['id', 'DESC'],
+    ],
+    ...(transaction && { transaction }),
+  })
+  return shapeOf[group].parse(version?.content ?? initial[group])
+}
+
+export async function changeSetting<Group extends SettingGroup>(
+  parts: Pick<Parts, 'clock'>,
+  group: Group,
+  content: Settings[Group],
+  by: { personId: number | null; reason: string },
+  transaction: Transaction,
+): Promise<void> {
+  const before = await settingInForce(parts, group, transaction)
+  const version = await SettingVersion.create(
+    {
+      groupName: group,
+      content: z.record(z.string(), z.unknown()).parse(shapeOf[group].parse(content)),
+      validFrom: parts.clock.now(),
+      authorId: by.personId,
+      reason: by.reason,
+    },
+    { transaction },
+  )
+  const change = { action: 'setting.change', entity: 'settingVersion', entityId: version.id }
+  await recordAudit(parts, { ...change, personId: by.personId, before, after: content }, transaction)
+}
+
+/** What every signed-in person sees: the port's name, the lead station, cautions, the plan of the coast. */
+export async function publicSettings(parts: Pick<Parts, 'clock'>): Promise<PublicSettings> {
+  const [port, watch, cautions, { plan }] = await Promise.all([
+    settingInForce(parts, 'port'),
+    settingInForce(parts, 'watch'),
+    settingInForce(parts, 'cautions'),
+    settingInForce(parts, 'coast'),
+  ])
+  return { ...port, ...watch, cautions, coast: plan }
+}
