@@ -1,10 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import {
-  dueWindows,
-  endsTouchedBy,
-  longestOrderlyCatchUp,
-  untilNextWindow,
-} from '../../server/services/estimates/dueWindows.ts'
+import { dueWindows, longestOrderlyCatchUp } from '../../server/services/estimates/dueWindows.ts'
 
 const minute = 60_000
 const grid = { hopMs: minute, windowMs: 20 * minute, graceMs: 10_000 }
@@ -35,6 +30,12 @@ describe('due windows', () => {
     expect(ahead.live).toEqual([at(1)])
   })
 
+  it('wait for their readings while a buffer is coming in, though their grace has passed', () => {
+    const state = { doneUpTo: at(0), durableUntil: at(2, 30), now: at(25) }
+    expect(dueWindows({ ...state, isBackfilling: true }, grid).live).toEqual([at(1), at(2)])
+    expect(dueWindows(state, grid).live).toHaveLength(24)
+  })
+
   it('are none when all is done, and none when time went back', () => {
     expect(dueWindows({ doneUpTo: at(5), durableUntil: at(5, 30), now: at(5, 31) }, grid).live).toEqual([])
     expect(dueWindows({ doneUpTo: at(5), durableUntil: at(1), now: at(1, 2) }, grid)).toEqual({
@@ -63,20 +64,5 @@ describe('due windows', () => {
   it('lie on multiples of the hop since 1970, whatever the watermark was', () => {
     const { live } = dueWindows({ doneUpTo: at(0, 17), durableUntil: at(2, 5), now: at(2, 6) }, grid)
     expect(live).toEqual([at(1), at(2)])
-  })
-})
-
-describe('windows touched by readings', () => {
-  it('are those that end after the first sample and begin before the last', () => {
-    expect(endsTouchedBy(at(0), at(1), at(60), grid)).toEqual(Array.from({ length: 20 }, (_, n) => at(n + 1)))
-    expect(endsTouchedBy(at(0), at(0) + 1, at(60), grid).at(-1)).toBe(at(20))
-    expect(endsTouchedBy(at(0), at(0, 1), at(3), grid)).toEqual([at(1), at(2), at(3)])
-  })
-})
-
-describe('the next window', () => {
-  it('comes by time at the grace second of the minute', () => {
-    expect(untilNextWindow(at(0, 12), grid)).toBe(58_000)
-    expect(untilNextWindow(at(0, 9), grid)).toBe(1_000)
   })
 })

@@ -21,6 +21,8 @@ export interface DueState {
   /** End of the newest durable sample; null when the station has none. */
   durableUntil: number | null
   now: number
+  /** A buffer of past readings is coming in: windows wait for their readings, not for the clock. */
+  isBackfilling?: boolean
 }
 
 export interface DueWindows {
@@ -43,7 +45,7 @@ export function newestDueEnd(state: Omit<DueState, 'doneUpTo'>, grid: WindowGrid
   const byTime = endAtOrBefore(state.now - grid.graceMs, grid.hopMs)
   if (state.durableUntil === null) return byTime
   const bySamples = endAtOrBefore(Math.min(state.durableUntil, state.now + toleratedLead), grid.hopMs)
-  return Math.max(byTime, bySamples)
+  return state.isBackfilling ? bySamples : Math.max(byTime, bySamples)
 }
 
 export function dueWindows(state: DueState, grid: WindowGrid): DueWindows {
@@ -54,17 +56,4 @@ export function dueWindows(state: DueState, grid: WindowGrid): DueWindows {
     return { live: Array.from({ length: count }, (_, n) => first + n * grid.hopMs), late: null, newest }
   }
   return { live: [newest], late: { first, last: newest - grid.hopMs }, newest }
-}
-
-/** Ends of the windows up to `until` that contain a sample taken at or after `from` and before `to`. */
-export function endsTouchedBy(from: number, to: number, until: number, grid: WindowGrid): number[] {
-  const ends: number[] = []
-  const last = Math.min(until, to - 1 + grid.windowMs)
-  for (let end = endAfter(from, grid.hopMs); end <= last; end += grid.hopMs) ends.push(end)
-  return ends
-}
-
-/** Milliseconds from `now` to the next moment at which time alone makes a window due. */
-export function untilNextWindow(now: number, grid: WindowGrid): number {
-  return endAfter(now - grid.graceMs, grid.hopMs) + grid.graceMs - now
 }

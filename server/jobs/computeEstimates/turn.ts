@@ -1,0 +1,157 @@
+/** One window of one station, from stored readings to a saved estimate. */
+import type { EstimateResult } from '../../../shared/schemas/estimate.ts'
+import type { Track } from '../../../shared/waves/trackSystems.ts'
+import type { ArrayWindow } from '../../../shared/waves/window.ts'
+import { softwareVersion } from '../../config/softwareVersion.ts'
+import type { Parts } from '../../config/parts.ts'
+import * as estimates from '../../services/estimates.ts'
+import type { Mark, Origin, StationTimeline, WindowOutcome } from '../../services/estimates.ts'
+import { linkOf, readWindow } from '../../services/readings.ts'
+import type { StoredWindow } from '../../services/readings.ts'
+import type { EstimateAnswer, EstimateTask } from '../../workers/estimateTask.ts'
+import { EstimationFailed } from '../../workers/estimators.ts'
+import type { Estimators } from '../../workers/estimators.ts'
+import { packDetail } from '../../workers/packDetail.ts'
+
+/** A window whose computation failed is tried once more, then marked. */
+const tries = 2
+
+export interface Turn {
+  timeline: StationTimeline
+  mark: Mark
+  windowEndsAt: number
+  /** Next in order: the watermark moves with it. Otherwise it was noted as late. */
+  isNext: boolean
+  origin: Origin
+  known: { tracks: Track[]; nextKey: number }
+}
+
+/** Answers what is known of the wave systems after it; null when no estimate was made. */
+export async function takeTurn(parts: Parts, estimators: Estimators, turn: Turn): Promise<Turn['known'] | null> {
+  const { timeline, windowEndsAt, mark, isNext } = turn
+  const deployment = estimates.inForce(timeline.deployments, windowEndsAt)
+  const settings = estimates.inForce(timeline.settings, windowEndsAt)
+  const windowMs = (settings?.content.windowSeconds ?? 0) * 1000
+  const windowStartsAt = windowEndsAt - windowMs
+  const unseen: WindowOutcome = { mark, windowStartsAt, windowEndsAt, isNext, inputCommitId: Number.MAX_SAFE_INTEGER }
+  // Without a survey or settings there is nothing to compute with, and nothing that later readings would change.
+  if (!deployment || !settings) return passOver(parts, unseen)
+
+  const readings = await readWindow(
+    timeline.id,
+    windowEndsAt - Math.max(windowMs, estimates.surgeSpanMs),
+    windowEndsAt,
+    {
+      letters: deployment.sensors.map(({ letter }) => letter),
+    },
+  )
+  const outcome = { ...unseen, inputCommitId: readings.newestCommitId }
+  if (!hasSamples(readings, settings.content.windowSeconds)) return passOver(parts, outcome)
+  if (turn.origin === 'late' && (await isKnown(parts, outcome))) return passOver(parts, outcome)
+
+  const [tideLevel, airPressure] = await Promise.all([
+    estimates.tideLevelAt(parts, timeline.id, windowEndsAt),
+    estimates.airPressureAt(parts, timeline.id, windowEndsAt),
+  ])
+  const { clockOffsets } = timeline
+  const question = { windowEndsAt, deployment, settings, clockOffsets, readings, tideLevel, airPressure }
+  const { window, surgeStartsAt } = estimates.arrayWindowOf(question)
+  const clockOffset = clockOffsetOf(turn, readings)
+  const answer = await compute(parts, estimators, turn, { window, windowEndsAt, clockOffset, known: turn.known })
+  const making = {
+    stationId: timeline.id,
+    windowStartsAt,
+    windowEndsAt,
+    surgeStartsAt,
+    computedAt: parts.clock.now().getTime(),
+    origin: originOf(turn, readings),
+    deploymentId: deployment.id,
+    sensorsDeployed: deployment.sensors.length,
+    settingsId: settings.id,
+    softwareVersion,
+    inputCommitId: readings.newestCommitId,
+    resultDigest: answer.digest,
+  }
+  await estimates.saveEstimate(parts, outcome, { figures: answer.figures, making, detail: answer.detail })
+  return answer.known
+}
+
+async function passOver(parts: Parts, outcome: WindowOutcome): Promise<null> {
+  await estimates.passOver(parts, outcome)
+  return null
+}
+
+/** A note can outlive its cause: the window was computed after the readings had come. */
+const isKnown = (parts: Parts, { mark, windowEndsAt, inputCommitId }: WindowOutcome): Promise<boolean> =>
+  estimates.hasSeen(parts, mark.stationId, windowEndsAt, inputCommitId)
+
+function hasSamples({ series, sampleRate, sampleCount }: StoredWindow, windowSeconds: number): boolean {
+  if (sampleCount === 0) return false
+  const length = Math.round(windowSeconds * sampleRate)
+  return series.some((values) => values.subarray(Math.max(0, values.length - length)).some((value) => value === value))
+}
+
+/** Station's clock less the server's: of the link now for a live window, of its readings otherwise. */
+function clockOffsetOf({ origin, timeline }: Turn, { clockOffsetSeconds }: StoredWindow): number | null {
+  const ofReadings = clockOffsetSeconds === null ? null : -clockOffsetSeconds
+  return origin === 'live' ? (linkOf(timeline.id).clockOffsetSeconds ?? ofReadings) : ofReadings
+}
+
+/** Readings that never came over the link are an import, whichever way the window came up. */
+function originOf({ origin, isNext }: Turn, { sources }: StoredWindow): Origin {
+  const isImported = sources.every((source) => source === 'import' || source === 'demonstration')
+  return isImported && (isNext || origin === 'late') ? 'import' : origin
+}
+
+async function compute(parts: Parts, estimators: Estimators, turn: Turn, task: EstimateTask): Promise<EstimateAnswer> {
+  const { code } = turn.timeline
+  for (let count = 1; ; count += 1) {
+    try {
+      return await estimators.run(task)
+    } catch (error) {
+      if (!(error instanceof EstimationFailed) || error.kind === 'stopped') throw error
+      const window = `${code}/${new Date(turn.windowEndsAt).toISOString()}`
+      parts.logger.error({ window, kind: error.kind, detail: error.message, count }, 'estimation failed')
+      if (count >= tries) return notComputed(task, error)
+    }
+  }
+}
+
+/** What is saved of a window whose computation failed twice: that it failed, and why. */
+function notComputed({ window, known }: EstimateTask, failure: EstimationFailed): EstimateAnswer {
+  const [whatFailed] = failure.message.split('\n')
+  const detail = `The computation failed twice (${failure.kind}: ${whatFailed})`
+  const result: EstimateResult = {
+    resolved: false,
+    reason: 'not-computed',
+    qualityFlag: 2,
+    significantWaveHeight: null,
+    significantWaveHeightSd: null,
+    peakPeriod: null,
+    meanPeriod: null,
+    energyPeriod: null,
+    energyFlux: null,
+    surgeHeight: null,
+    waterDepth: window.waterDepth,
+    waterDepthSource: window.waterDepthSource,
+    completeness: presentShare(window),
+    systems: [],
+    sensors: [],
+    traceSpeeds: [],
+    tests: [{ test: 'computation', flag: 2, value: null, limit: null, detail }],
+    subArrays: [],
+    lagResidualRms: null,
+    runnerUp: null,
+    spectrum: null,
+    directionalSpectrum: null,
+  }
+  return { figures: result, known, digest: '', detail: packDetail(result) }
+}
+
+function presentShare({ series }: ArrayWindow): number {
+  let present = 0
+  let all = 0
+  for (const values of series) for (const value of values) present += value === value ? 1 : 0
+  for (const values of series) all += values.length
+  return all === 0 ? 0 : present / all
+}

@@ -1,0 +1,23 @@
+/** Estimates: which windows are due, what is saved of them, and how they are shown. */
+export { dueWindows, longestOrderlyCatchUp } from './estimates/dueWindows.ts'
+export type { WindowGrid } from './estimates/dueWindows.ts'
+export { inForce, readTimelines } from './estimates/timeline.ts'
+export type { DeploymentVersion, SettingsVersion, StationTimeline } from './estimates/timeline.ts'
+export { arrayWindowOf, surgeSpanMs } from './estimates/arrayWindow.ts'
+export { airPressureAt, tideLevelAt } from './estimates/levels.ts'
+export { beginMark, countLate, firstReadingAt, newestLate, noteLate } from './estimates/late.ts'
+export type { LateWindow } from './estimates/late.ts'
+export { Superseded, takeOver } from './estimates/watermark.ts'
+export type { Mark } from './estimates/watermark.ts'
+export { passOver, saveEstimate } from './estimates/save.ts'
+export type { ComputedEstimate, WindowOutcome } from './estimates/save.ts'
+export { estimateRow, inventedNote } from './estimates/row.ts'
+export type { EstimateFigures, EstimateMaking, Origin } from './estimates/row.ts'
+export {
+  currentEstimateOf,
+  estimatesBetween,
+  hasSeen,
+  lastGoodEstimateOf,
+  wholeEstimate,
+  wholeLatestEstimate,
+} from './estimates/read.ts'
