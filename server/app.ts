@@ -1,6 +1,4 @@
 /** The Express app, put together without listening, so that tests use it as it is. */
-import { existsSync } from 'node:fs'
-import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
 import compression from 'compression'
 import cookieParser from 'cookie-parser'
@@ -37,7 +35,8 @@ export function createApp(parts: Parts, readiness: Readiness = createReadiness()
   app.use('/api', authenticate(parts))
   mountRoutes(app, allRoutes(parts))
   app.use('/api', unknownPath)
-  if (existsSync(join(clientFolder, 'index.html'))) app.use(client(clientFolder))
+  // Looked for at each request: the client may still be building when the server begins.
+  app.use(client(clientFolder))
   app.use(unknownPath)
   app.use(errorHandler(logger))
   return app
