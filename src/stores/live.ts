@@ -64,6 +64,12 @@ export const useLive = defineStore('live', () => {
     state.value = 'idle'
   }
 
+  /** A fresh connection under the session that holds now. */
+  function reconnect(): void {
+    disconnect()
+    connect()
+  }
+
   function lose(refused: boolean): void {
     for (const room of rooms.values()) {
       room.seq = null
@@ -151,5 +157,5 @@ export const useLive = defineStore('live', () => {
     }
   }
 
-  return { state, lastHeardMs, contactLost, silentForMs, figuresHeld, connect, disconnect, join }
+  return { state, lastHeardMs, contactLost, silentForMs, figuresHeld, connect, reconnect, disconnect, join }
 })

@@ -1,0 +1,55 @@
+import { onBeforeUnmount, watch } from 'vue'
+import { useJobs } from '../stores/jobs.ts'
+import { useLive } from '../stores/live.ts'
+import { useSettings } from '../stores/settings.ts'
+import { useStations } from '../stores/stations.ts'
+
+const againMs = 4_000
+
+/** What every page of a signed-in person needs: settings, the live connection, stations and jobs. */
+export function useOffice() {
+  const live = useLive()
+  const settings = useSettings()
+  const stations = useStations()
+  const jobs = useJobs()
+  let again: ReturnType<typeof setTimeout> | undefined
+
+  function open(): void {
+    live.connect()
+    stations.watchAll()
+    jobs.watchAll()
+    void readSettings()
+  }
+
+  async function readSettings(): Promise<void> {
+    clearTimeout(again)
+    try {
+      await settings.load()
+    } catch {
+      again = setTimeout(() => void readSettings(), againMs)
+    }
+  }
+
+  function close(): void {
+    clearTimeout(again)
+    stations.leave()
+    jobs.leave()
+    live.disconnect()
+  }
+
+  // Whoever comes back to the tab wants the present at once, not after the pause has run out.
+  function look(): void {
+    if (document.visibilityState === 'visible' && live.contactLost) live.connect()
+  }
+  document.addEventListener('visibilitychange', look)
+  onBeforeUnmount(() => document.removeEventListener('visibilitychange', look))
+
+  watch(
+    () => live.state,
+    (state) => {
+      if (state === 'open' && !settings.loaded) void readSettings()
+    },
+  )
+
+  return { open, close }
+}

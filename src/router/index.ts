@@ -1,0 +1,73 @@
+/** Pages, each fetched when it is first opened, and who must be signed in for them. */
+import { createRouter, createWebHistory } from 'vue-router'
+import type { RouteRecordRaw, Router, RouterHistory } from 'vue-router'
+import WatchLayout from '../layouts/WatchLayout.vue'
+import { useSession } from '../stores/session.ts'
+import { useStations } from '../stores/stations.ts'
+
+const routes: RouteRecordRaw[] = [
+  {
+    path: '/sign-in',
+    name: 'signIn',
+    component: () => import('../pages/SignInPage.vue'),
+    meta: { title: 'Sign in', open: true },
+  },
+  {
+    path: '/set-up',
+    name: 'setUp',
+    component: () => import('../pages/SetUpFirstPage.vue'),
+    meta: { title: 'First administrator', open: true },
+  },
+  {
+    path: '/',
+    component: WatchLayout,
+    children: [
+      { path: '', redirect: { name: 'watch' } },
+      {
+        path: 'watch',
+        name: 'watch',
+        component: () => import('../pages/WatchPage.vue'),
+        meta: { title: 'Watch', page: 'watch' },
+      },
+      {
+        path: 'stations',
+        name: 'stations',
+        component: () => import('../pages/StationsPage.vue'),
+        meta: { title: 'Stations', page: 'stations' },
+      },
+      {
+        path: 'stations/:id([1-9]\\d*)',
+        name: 'station',
+        component: () => import('../pages/StationPage.vue'),
+        meta: { title: 'Station', page: 'stations' },
+      },
+      {
+        path: ':rest(.*)*',
+        name: 'notFound',
+        component: () => import('../pages/NotFoundPage.vue'),
+        meta: { title: 'No page here' },
+      },
+    ],
+  },
+]
+
+export function createOffingRouter(history: RouterHistory = createWebHistory()): Router {
+  const router = createRouter({ history, routes, scrollBehavior: (_to, _from, saved) => saved ?? { top: 0 } })
+
+  router.beforeEach(async (to) => {
+    const session = useSession()
+    if (session.state === 'unknown') await session.restore().catch(() => undefined)
+    const signedIn = session.state === 'in' || session.state === 'ended'
+    if (to.meta.open) return signedIn && session.state === 'in' ? { name: 'watch' } : true
+    if (signedIn) return true
+    return { name: 'signIn', query: to.fullPath === '/' || to.path === '/watch' ? {} : { to: to.fullPath } }
+  })
+
+  router.afterEach((to) => {
+    const station = useStations().byId(Number(to.params.id))
+    const title = station?.name ?? String(to.meta.title ?? '')
+    document.title = title ? `${title} – Offing` : 'Offing'
+  })
+
+  return router
+}
