@@ -14,7 +14,7 @@ async function filesUnder(path: string): Promise<string[]> {
   return entries.filter((entry) => entry.isFile()).map((entry) => join(entry.parentPath, entry.name))
 }
 
-async function fingerprint(root: string): Promise<string> {
+export async function fingerprintOfSources(root: string): Promise<string> {
   const files = (await Promise.all(sources.map((source) => filesUnder(join(root, source))))).flat().sort()
   const hash = createHash('sha256')
   for (const file of files)
@@ -27,7 +27,7 @@ async function fingerprint(root: string): Promise<string> {
 
 /** Answers the fingerprint to build for, or null when the built client is of these sources. */
 export async function staleClient(root: string): Promise<string | null> {
-  const wanted = await fingerprint(root)
+  const wanted = await fingerprintOfSources(root)
   const made = await readFile(join(root, stampName), 'utf8').catch(() => '')
   return made.trim() === wanted ? null : wanted
 }

@@ -47,7 +47,7 @@ function parts(root: string, reports: string) {
       'tests',
     ]),
   }
-  const build: Part = { title: 'client build', args: [tool('vite/bin/vite.js'), 'build', '--logLevel', 'warn'] }
+  const build: Part = { title: 'client build', args: ['--import', 'tsx', 'server/setup/build.ts'] }
   const faults: Part = {
     title: 'fault tests',
     args: ['--import', 'tsx', 'tests/faults/index.ts', '--short', '--report', faultReport],
