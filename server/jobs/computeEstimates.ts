@@ -99,13 +99,15 @@ export async function startComputeEstimates(
           isAskedAgain = false
           await refreshDesks()
         }
-        const turn = inHand.size <= estimators.threads ? await nextTurn() : null
+        const before = inHand.size
+        const turn = before <= estimators.threads ? await nextTurn() : null
         const desk = turn && desks.get(turn.timeline.id)
         if (turn && desk) {
           const done = work(desk, turn).finally(() => inHand.delete(done))
           inHand.add(done)
         } else if (inHand.size > 0) await Promise.race(inHand)
-        else if (!isAskedAgain) break
+        // A window that was finished while the next was looked for may have freed its station for another.
+        else if (before === 0 && !isAskedAgain) break
       }
       if (!isStopped) await progress.report(await countLate(parts, [...desks.keys()]))
     } catch (error) {
