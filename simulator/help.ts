@@ -13,7 +13,8 @@ The sea
   --scenario NAME     what the sea does (default ${scenarios[0].name}):
 ${scenarios.map(({ name, summary }) => `                        ${name.padEnd(width)}  ${summary}`).join('\n')}
   --seed N            the chance in it (default 1): the same seed, scenario, anchor and time give the same readings
-  --anchor MOMENT     the scenario's hour zero; faults begin there (default 2026-01-01T00:00:00Z)
+  --anchor MOMENT     the scenario's hour zero; faults begin there (default 2026-01-01T00:00:00Z;
+                      now with --write-past)
   --continue FILE     go on with the sea of a past written earlier (its manifest.json), from where it ended
   --stations CODES    some of ${demonstrationStations.map(({ code }) => code).join(',')} (default all)
 

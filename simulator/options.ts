@@ -47,7 +47,9 @@ export type Options =
     }
   | { mode: 'replay'; stationFile: string; readingsFile: string; as: string; live: boolean; stream: StreamOptions }
 
-const defaultAnchor = Date.parse('2026-01-01T00:00:00Z')
+/** A past is written as it led up to now; without one the anchor is fixed, so that a stream can be repeated. */
+const defaultAnchorFor = (values: Given, now: number): number =>
+  values['write-past'] === undefined ? Date.parse('2026-01-01T00:00:00Z') : Math.floor(now / 60_000) * 60_000
 
 const known = {
   help: { type: 'boolean', short: 'h' },
@@ -121,7 +123,7 @@ function seaChoice(values: Given, now: number): SeaChoice {
     return {
       scenario: namedScenario(values.scenario ?? scenarios[0].name),
       seed: wholeNumber(values.seed ?? '1', 'seed', 0, 2 ** 31 - 1),
-      anchor: values.anchor === undefined ? defaultAnchor : parseMoment(values.anchor, 'anchor', now),
+      anchor: values.anchor === undefined ? defaultAnchorFor(values, now) : parseMoment(values.anchor, 'anchor', now),
     }
   }
   for (const option of ['scenario', 'seed', 'anchor'] as const) {

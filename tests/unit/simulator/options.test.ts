@@ -59,6 +59,7 @@ describe('the command line', () => {
   it('writes a past that ends where the back-fill begins, at a whole minute', () => {
     expect(readOptions(['--write-past', 'past', '--backfill', '25m', '--hours', '6'], now)).toMatchObject({
       mode: 'write-past',
+      sea: { anchor: Date.parse('2026-11-12T14:30:00Z') },
       directory: 'past',
       hours: 6,
       until: Date.parse('2026-11-12T14:05:00Z'),
