@@ -36,7 +36,7 @@ export async function buildClient(root: string, wanted: string): Promise<void> {
   const { code, tail } = await runProgram(
     process.execPath,
     [join(root, 'node_modules/vite/bin/vite.js'), 'build', '--logLevel', 'warn'],
-    { cwd: root, env: { ...process.env, NODE_ENV: 'production' } },
+    { cwd: root, env: { ...process.env, NODE_ENV: 'production', NO_COLOR: '1' } },
   )
   if (code !== 0) {
     if (/ENOSPC/.test(tail)) throw new PlainFailure('The disk is full: the client could not be built.')

@@ -30,7 +30,15 @@ export function runProgram(command, args, options = {}) {
       if (lines.length > tailLength) lines.shift()
       options.onLine?.(line)
     }
-    child.on('error', (error) => resolve({ code: 127, tail: error.message }))
-    child.on('close', (code) => resolve({ code: code ?? 1, tail: lines.join('\n') }))
+    // Whoever ends before the program takes it along.
+    const takeAlong = () => child.kill()
+    process.once('exit', takeAlong)
+    /** @param {{ code: number, tail: string }} end */
+    const over = (end) => {
+      process.off('exit', takeAlong)
+      resolve(end)
+    }
+    child.on('error', (error) => over({ code: 127, tail: error.message }))
+    child.on('close', (code) => over({ code: code ?? 1, tail: lines.join('\n') }))
   })
 }

@@ -24,8 +24,8 @@ const say = (sentence: string): void => console.log(`  ${sentence}`)
 
 export async function startDemonstration(): Promise<void> {
   const secretFile = join(dataFolder, 'jwt-secret')
-  const settings = readStartSettings(process.env, dataFolder, secretFile)
   await makeSecret(secretFile)
+  const settings = readStartSettings(process.env, dataFolder, secretFile)
   const parts = new RunningParts({ root, dataFolder, say })
   const asked = stopWhenAsked(parts)
   try {
