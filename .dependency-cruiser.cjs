@@ -196,10 +196,19 @@ module.exports = {
     forbid(
       'services-apart',
       'A service calls another only where their writes share one transaction; other news goes over the bus.',
-      { path: '^server/services/([^/.]+)' },
+      { path: '^server/services/([^/.]+)', pathNot: '^server/services/imports\\.ts$' },
       {
         path: '^server/services/',
         pathNot: ['^server/services/$1(/|\\.ts$)', '^server/services/(bus|audits?|watchLog|problems?|passwords|transaction)(/|\\.ts$)'],
+      },
+    ),
+    forbid(
+      'imports-store-readings',
+      'The record of a file and the readings in it are one transaction.',
+      { path: '^server/services/imports\\.ts$' },
+      {
+        path: '^server/services/',
+        pathNot: '^server/services/(readings/|(bus|audit|watchLog|problems|transaction)\\.ts$)',
       },
     ),
     forbid(

@@ -8,6 +8,8 @@ import type { Route } from './registry.ts'
 import { sessionRoutes } from './session.ts'
 import { settingsRoutes } from './settings.ts'
 import { setUpRoutes } from './setUp.ts'
+import { stationHealthRoutes } from './stationHealth.ts'
+import { stationKeyRoutes } from './stationKeys.ts'
 
 const features: ((parts: Parts) => Route[])[] = [
   installationRoutes,
@@ -15,6 +17,8 @@ const features: ((parts: Parts) => Route[])[] = [
   setUpRoutes,
   settingsRoutes,
   jobRoutes,
+  stationKeyRoutes,
+  stationHealthRoutes,
 ]
 
 export const allRoutes = (parts: Parts): Route[] =>

@@ -144,6 +144,9 @@ export const stationKeyView = z.object({
   revokedAt: time.nullable(),
   lastUsedAt: time.nullable(),
 })
+/** What is asked for when a key is issued; null: it holds until it is revoked. */
+export const stationKeyOrder = z.strictObject({ validUntil: time.nullable() })
+/** `key` is shown once and kept by nobody but the station. */
 export const issuedStationKey = stationKeyView.extend({ key: z.string() })
 
 export const healthHour = z.object({

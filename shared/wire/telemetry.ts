@@ -12,6 +12,8 @@ export const heartbeatSeconds = 15
 export const telemetryClose = {
   tooLarge: 1009,
   serverRestarts: 1012,
+  /** The database does not take readings now; nothing that was not acknowledged is stored. */
+  tryAgainLater: 1013,
   malformed: 4400,
   keyRefused: 4401,
   retired: 4403,
