@@ -1,6 +1,7 @@
 import { onBeforeUnmount, watch } from 'vue'
 import { useJobs } from '../stores/jobs.ts'
 import { useLive } from '../stores/live.ts'
+import { useSession } from '../stores/session.ts'
 import { useSettings } from '../stores/settings.ts'
 import { useStations } from '../stores/stations.ts'
 
@@ -9,6 +10,7 @@ const againMs = 4_000
 /** What every page of a signed-in person needs: settings, the live connection, stations and jobs. */
 export function useOffice() {
   const live = useLive()
+  const session = useSession()
   const settings = useSettings()
   const stations = useStations()
   const jobs = useJobs()
@@ -24,6 +26,7 @@ export function useOffice() {
   async function readSettings(): Promise<void> {
     clearTimeout(again)
     try {
+      if (!session.installation) await session.readInstallation()
       await settings.load()
     } catch {
       again = setTimeout(() => void readSettings(), againMs)
