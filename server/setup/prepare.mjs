@@ -3,7 +3,7 @@ import { mkdir, stat, statfs } from 'node:fs/promises'
 import { dirname, join, resolve } from 'node:path'
 import { fileURLToPath } from 'node:url'
 import { initialiseDatabaseFolder } from './databaseFolder.mjs'
-import { debianNeeds, findProgram, installDebianPackages } from './debianPackages.mjs'
+import { findProgram, installDebianPackages } from './debianPackages.mjs'
 import { installPackages, packagesAreAsLocked } from './npmPackages.mjs'
 import { PlainFailure } from './plainFailure.mjs'
 import { step } from './progress.mjs'
@@ -31,28 +31,30 @@ export async function checkDataFolder() {
   }
 }
 
-/**
- * Brings in what is missing, side by side: npm packages, Debian's packages and, as soon as MariaDB is there, the
- * folder of a database of our own.
- * @param {{ chromium: boolean, ownDatabase: boolean }} wanted
- */
-export async function prepare({ chromium, ownDatabase }) {
-  const needs = [...(ownDatabase ? [debianNeeds.mariadb] : []), ...(chromium ? [debianNeeds.chromium] : [])]
-  const missing = needs.filter((need) => need.programs.some((name) => !findProgram(name)))
-  const results = await Promise.allSettled([
-    packagesAreAsLocked(root).then((done) => (done ? undefined : step('npm packages', () => installPackages(root)))),
-    (async () => {
-      if (missing.length)
-        await step(`Debian: ${missing.map((need) => need.package).join(', ')}`, (note) =>
-          installDebianPackages(needs, note),
-        )
-      const folder = join(dataFolder, 'database')
-      if (ownDatabase && !existsSync(join(folder, 'data')))
-        await step('database folder', () => initialiseDatabaseFolder(folder))
-    })(),
-  ])
-  const failures = results.flatMap((result) => (result.status === 'rejected' ? [result.reason] : []))
-  if (failures.length === 0) return
-  const unforeseen = failures.find((failure) => !(failure instanceof PlainFailure))
-  throw unforeseen ?? new PlainFailure(failures.map((failure) => failure.message).join('\n\n'))
+/** npm packages as locked. */
+export async function bringPackages() {
+  if (!(await packagesAreAsLocked(root))) await step('npm packages', () => installPackages(root))
 }
+
+/**
+ * Debian's packages that are missing and, as soon as MariaDB is there, the folder of a database of our own.
+ * @param {{ needs: { package: string, programs: string[] }[], ownDatabase: boolean }} wanted
+ */
+export async function bringPrograms({ needs, ownDatabase }) {
+  const missing = needs.filter((need) => need.programs.some((name) => !findProgram(name)))
+  if (missing.length) {
+    const names = missing.map((need) => need.package).join(', ')
+    await step(`Debian: ${names}`, (note) => installDebianPackages(needs, note))
+  }
+  const folder = join(dataFolder, 'database')
+  if (ownDatabase && !existsSync(join(folder, 'data')))
+    await step('database folder', () => initialiseDatabaseFolder(folder))
+}
+
+/**
+ * Goes on as soon as the packages are there; the programs may still be on their way, but a failure of theirs is told at
+ * once.
+ * @param {Promise<void>} packages
+ * @param {Promise<void>} programs
+ */
+export const packagesUnless = (packages, programs) => Promise.race([packages, programs.then(() => packages)])

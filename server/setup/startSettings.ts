@@ -13,8 +13,10 @@ export interface StartSettings {
   variables: Record<string, string | undefined>
   ownDatabase: boolean
   ownMailCatcher: boolean
-  /** Null: any free one. */
-  databasePort: number | null
+  /** Absent: any free one. */
+  databasePort: number | undefined
+  /** Where the demonstration's past is kept. */
+  pastFolder: string
   scenario: string
   backfill: string
 }
@@ -45,7 +47,8 @@ export function readStartSettings(
       variables,
       ownDatabase: !source.DATABASE_URL,
       ownMailCatcher: !source.SMTP_URL,
-      databasePort: source.DATABASE_PORT ? Number(source.DATABASE_PORT) : null,
+      databasePort: source.DATABASE_PORT ? Number(source.DATABASE_PORT) : undefined,
+      pastFolder: environment.demonstrationPastFolder ?? join(dataFolder, 'past'),
       scenario: source.SCENARIO || 'demonstration',
       backfill: source.BACKFILL || '25m',
     }

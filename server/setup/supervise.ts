@@ -1,4 +1,7 @@
-/** Keeps a program running: what ends unasked is started again, after a pause that grows while it keeps ending. */
+/**
+ * Keeps a program running: what ends unasked is started again, after a pause that grows while it keeps ending. A program
+ * that ends before it has come up is not started again, for it has something to say.
+ */
 import { spawn } from 'node:child_process'
 import type { ChildProcess } from 'node:child_process'
 import { closeSync, openSync } from 'node:fs'
@@ -27,6 +30,8 @@ export interface Program {
 export interface Supervised {
   /** Resolves when the program ends for the first time, with the last lines of its log. */
   firstEnd: Promise<{ how: string; tail: string }>
+  /** It has come up: from now on it is kept running. */
+  keep(): void
   stop(): Promise<void>
   /** Ends it without asking. */
   kill(): void
@@ -43,6 +48,7 @@ export async function supervise(program: Program, say: (sentence: string) => voi
   let child: ChildProcess | null = null
   let timer: NodeJS.Timeout | undefined
   let stopping = false
+  let kept = false
   let pause = firstPause
   let reportFirstEnd: (end: { how: string; tail: string }) => void = () => undefined
   const firstEnd = new Promise<{ how: string; tail: string }>((resolve) => (reportFirstEnd = resolve))
@@ -65,7 +71,7 @@ export async function supervise(program: Program, say: (sentence: string) => voi
       over = true
       child = null
       void lastLines(program.logFile).then((tail) => reportFirstEnd({ how, tail }))
-      if (stopping) return
+      if (stopping || !kept) return
       if (performance.now() - startedAt > soundAfter) pause = firstPause
       say(`${program.name} ended (${how}); it is started again in ${pause / 1000} s. Its words: ${program.logFile}`)
       timer = setTimeout(launch, pause)
@@ -78,6 +84,9 @@ export async function supervise(program: Program, say: (sentence: string) => voi
   launch()
   return {
     firstEnd,
+    keep() {
+      kept = true
+    },
     async stop() {
       stopping = true
       clearTimeout(timer)

@@ -32,14 +32,15 @@ export function sentencesOf(log: string): string {
   return lines.join('\n').trim()
 }
 
-export async function waitForPage(address: string, server: Supervised): Promise<void> {
-  let ended: { how: string; tail: string } | null = null
-  void server.firstEnd.then((end) => (ended = end))
-  const refusal = ({ how, tail }: { how: string; tail: string }) =>
-    new PlainFailure(sentencesOf(tail) || `The server ended before its page answered (${how}).`)
+/** Never resolves; rejects with the server's own words when it ends. */
+export async function earlyEnd(server: Supervised): Promise<never> {
+  const { how, tail } = await server.firstEnd
+  throw new PlainFailure(sentencesOf(tail) || `The server ended before its page answered (${how}).`)
+}
+
+export async function untilPageAnswers(address: string): Promise<void> {
   const until = performance.now() + patienceMilliseconds
   while (!(await answersWithPage(address))) {
-    if (ended) throw refusal(ended)
     if (performance.now() > until)
       throw new PlainFailure(`No page at ${address} after ${patienceMilliseconds / 1000} s.`)
     await pause(pollMilliseconds)

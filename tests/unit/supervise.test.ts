@@ -47,7 +47,8 @@ const newPid = async (old: number) => {
 const stays = 'setInterval(() => undefined, 1000)'
 
 test('a program killed from outside is told of and started again', async () => {
-  await start(stays)
+  const part = await start(stays)
+  part.keep()
   const first = await newPid(0)
   process.kill(first, 'SIGKILL')
   const second = await newPid(first)
@@ -56,9 +57,10 @@ test('a program killed from outside is told of and started again', async () => {
   expect(said[0]).toMatch(/^The part ended \(SIGKILL\); it is started again in 0\.5 s\./)
 })
 
-test('the first end of a program brings the last lines that it wrote', async () => {
+test('a program that ends before it has come up is not started again, and its last words are known', async () => {
   const { firstEnd } = await start("console.error('The port is busy.'); process.exit(1)")
   expect(await firstEnd).toEqual({ how: 'exit 1', tail: 'The port is busy.' })
+  expect(said).toEqual([])
 })
 
 test('a program that is stopped ends, stays ended and leaves no pid file', async () => {
