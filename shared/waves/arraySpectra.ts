@@ -4,14 +4,18 @@ import type { BandMatrices } from './bandMatrices.ts'
 import { groupSpeed, pressureResponse, waveNumber } from './dispersion.ts'
 import type { PreparedArray } from './preparedArray.ts'
 import { fineSpectra } from './recordSpectra.ts'
+import type { FineSpectra } from './recordSpectra.ts'
 import type { ArrayWindow } from './window.ts'
 
 export interface ArraySpectra {
   bands: BandMatrices
   /** Highest frequency up to which the surface is claimed, Hz. */
   cutoff: number
-  /** Widest step between bins, Hz, and the record's length, s. */
+  /** What the taper hid of the energy, about 1. */
+  energyFactor: number
+  /** Length of the record, s. */
   duration: number
+  fine: FineSpectra
 }
 
 /** Share of Nyquist between which the noise floor is read: above the waves, below the anti-alias filter's last part. */
@@ -69,7 +73,14 @@ export function arraySpectra(window: ArrayWindow, prepared: PreparedArray): Arra
   const groups = anyPressure ? groupsOverNoise(all) : all.groups
   const bands = groups === all.groups ? all : bandMatrices(fine, edges.slice(0, groups + 1), gain, noiseFloor)
   if (bands.groups < 4) return null
-  return { bands, cutoff: bands.frequency[bands.groups - 1] + bands.width[bands.groups - 1] / 2, duration }
+  const factor = fine.energyFactor.reduce((sum, f) => sum + f / fine.energyFactor.length, 0)
+  return {
+    bands,
+    cutoff: bands.frequency[bands.groups - 1] + bands.width[bands.groups - 1] / 2,
+    energyFactor: Math.min(1.15, Math.max(0.87, factor)),
+    duration,
+    fine,
+  }
 }
 
 /** A value stamped t was taken at t + offset: turns the spectrum back by ω·offset. */

@@ -117,3 +117,11 @@ export function selectSensors(bands: BandMatrices, kept: readonly number[]): Ban
   }
   return { ...bands, sensors: n, real, imag, density, noise }
 }
+
+/** Mean noise density of the sensors in each group, m²/Hz. */
+export function noiseDensity(bands: BandMatrices): Float64Array {
+  const noise = new Float64Array(bands.groups)
+  const m = bands.sensors
+  for (let g = 0; g < bands.groups; g++) for (let i = 0; i < m; i++) noise[g] += bands.noise[g * m + i] / m
+  return noise
+}

@@ -34,7 +34,7 @@ export function dopplerWaveNumber(
     const groupSpeed = (gravity * (t + k * depth * (1 - t * t))) / (2 * sigma)
     slope = Math.max(groupSpeed + current, 0.1 * groupSpeed)
     const change = (sigma + k * current - omega) / slope
-    k = Math.max(k - change, 0.2 * k)
+    k = Math.min(Math.max(k - change, 0.2 * k), 5 * still)
     if (Math.abs(change) < 1e-15 * k) break
   }
   answer.k = k

@@ -29,9 +29,11 @@ export function fitPeak(
   noise: ArrayLike<number>,
   near: number,
 ): PeakFit {
+  const from = 0.6 * near
+  const to = 1.9 * near
   let best = { cost: Infinity, peak: near, gamma: 3.3, density: 0 }
   const costAt = (peak: number, gamma: number) => {
-    const trial = costOf(frequency, density, averages, noise, peak, gamma)
+    const trial = costOf(frequency, density, averages, noise, peak, gamma, from, to)
     if (trial.cost < best.cost) best = { ...trial, peak, gamma }
     return trial.cost
   }
@@ -49,9 +51,9 @@ export function fitPeak(
   const h = 0.01
   const gamma = best.gamma
   const centre = best.peak
-  const low = costOf(frequency, density, averages, noise, centre * Math.exp(-h), gamma).cost
-  const mid = costOf(frequency, density, averages, noise, centre, gamma).cost
-  const high = costOf(frequency, density, averages, noise, centre * Math.exp(h), gamma).cost
+  const low = costOf(frequency, density, averages, noise, centre * Math.exp(-h), gamma, from, to).cost
+  const mid = costOf(frequency, density, averages, noise, centre, gamma, from, to).cost
+  const high = costOf(frequency, density, averages, noise, centre * Math.exp(h), gamma, from, to).cost
   const bend = low - 2 * mid + high
   const shift = bend > 0 ? Math.max(-1, Math.min(1, (0.5 * (low - high)) / bend)) : 0
   return { peak: centre * Math.exp(shift * h), gamma, density: best.density }
@@ -64,13 +66,14 @@ function costOf(
   noise: ArrayLike<number>,
   peak: number,
   gamma: number,
+  from: number,
+  to: number,
 ): { cost: number; density: number } {
   // Scale in two passes: a weighted ratio, then one step of the likelihood.
   let above = 0
   let below = 0
   for (let g = 0; g < frequency.length; g++) {
-    const ratio = frequency[g] / peak
-    if (ratio < 0.6 || ratio > 2) continue
+    if (frequency[g] < from || frequency[g] > to) continue
     const shape = jonswapShape(frequency[g], peak, gamma)
     above += averages[g] * shape * (density[g] - noise[g])
     below += averages[g] * shape * shape
@@ -83,8 +86,7 @@ function costOf(
     let information = 0
     cost = 0
     for (let g = 0; g < frequency.length; g++) {
-      const ratio = frequency[g] / peak
-      if (ratio < 0.6 || ratio > 2) continue
+      if (frequency[g] < from || frequency[g] > to) continue
       const shape = scale * jonswapShape(frequency[g], peak, gamma)
       const model = shape + noise[g] + 1e-12
       cost += averages[g] * (Math.log(model) + density[g] / model)

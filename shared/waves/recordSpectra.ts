@@ -6,7 +6,7 @@
 import { fourierPlan, powerOfTwoFrom } from './fourier.ts'
 
 /** Share of the record tapered by a cosine at each end (Tukey 1967). */
-const taperShare = 0.05
+const taperShare = 0.04
 
 export interface FineSpectra {
   /** Distance of the bins, Hz. */
@@ -16,6 +16,10 @@ export interface FineSpectra {
   count: number
   /** One array of interleaved real and imaginary parts a series, scaled so that |X|² is a one-sided density in unit²/Hz. */
   series: Float64Array[]
+  /** Mean square of each series over that of the tapered one: what the taper hid of the energy. */
+  energyFactor: number[]
+  /** Bins for one over the length of the record. */
+  padding: number
   /** Independent averages that one bin stands for (below 1 for a zero-padded record). */
   averagesPerBin: number
 }
@@ -46,8 +50,17 @@ export function fineSpectra(
     fourth += taper[i] ** 4
   }
   const scale = Math.sqrt(2 / (sampleRate * power * covered))
+  const energyFactor: number[] = []
   const spectra = series.map((one) => {
-    for (let i = 0; i < length; i++) plan.input[i] = one[i] * taper[i]
+    let whole = 0
+    let tapered = 0
+    for (let i = 0; i < length; i++) {
+      const value = one[i] * taper[i]
+      plan.input[i] = value
+      whole += one[i] * one[i]
+      tapered += value * value
+    }
+    energyFactor.push(tapered > 0 ? whole / length / (tapered / power) : 1)
     plan.input.fill(0, length)
     plan.run()
     const kept = new Float64Array(2 * count)
@@ -56,7 +69,7 @@ export function fineSpectra(
   })
   // Bins within one taper's bandwidth say the same: Σw²² / (N Σw⁴) of a bin of the unpadded record.
   const averagesPerBin = ((power * power) / (length * fourth)) * (length / size) * covered
-  return { step, first: firstBin * step, count, series: spectra, averagesPerBin }
+  return { step, first: firstBin * step, count, series: spectra, energyFactor, padding: size / length, averagesPerBin }
 }
 
 const tapers = new Map<number, Float64Array>()

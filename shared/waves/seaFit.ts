@@ -42,6 +42,8 @@ largestStep[currentAt] = 0.7
 largestStep[depthAt] = 0.25
 largestStep[spreadAt] = 0.6
 const largestOtherStep = 1.5
+/** Strongest current that is believed, m/s. */
+const greatestCurrent = 3
 
 /** Null where the likelihood cannot be evaluated from the start given. */
 export function fitSea(model: SeaModel, start: SeaState, options: FitOptions): SeaFit | null {
@@ -99,6 +101,13 @@ function move(model: SeaModel, from: SeaState, step: Float64Array, densityStep: 
   for (let j = 0; j < model.systems; j++) {
     const at = j * parametersPerSystem + spreadAt
     to.parameters[at] = Math.min(Math.log(greatestSpread), Math.max(Math.log(leastSpread), to.parameters[at]))
+    const base = j * parametersPerSystem
+    const depth = model.priors[base + depthAt].mean
+    to.parameters[base + currentAt] = Math.min(
+      greatestCurrent,
+      Math.max(-greatestCurrent, to.parameters[base + currentAt]),
+    )
+    to.parameters[base + depthAt] = Math.min(depth + 0.8, Math.max(depth - 0.8, to.parameters[base + depthAt]))
   }
   const groups = model.bands.groups
   for (let n = 0; n < densityStep.length; n++) {

@@ -39,8 +39,13 @@ export function judgeStationClock(result: EstimateResult, offset: number | null)
   }
 }
 
-/** The same window with everything that would be read as a wave taken away: what is left are the sensors' verdicts. */
-export function withoutFigures(result: EstimateResult): EstimateResult {
+type Verdicts = Pick<
+  EstimateResult,
+  'reason' | 'qualityFlag' | 'waterDepth' | 'waterDepthSource' | 'completeness' | 'sensors' | 'tests'
+>
+
+/** A window with nothing in it that would be read as a wave: what is left are the verdicts on its readings. */
+export function withoutFigures(result: Verdicts): EstimateResult {
   return {
     ...result,
     resolved: false,

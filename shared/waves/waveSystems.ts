@@ -1,9 +1,10 @@
 /** Finds the trains of waves in the cross-spectral matrices and fits them together by maximum likelihood. */
 import { beamSearch } from './beamSearch.ts'
 import type { BandMatrices } from './bandMatrices.ts'
-import { selectGroups } from './bandMatrices.ts'
+import { noiseDensity, selectGroups } from './bandMatrices.ts'
 import { phaseSpeed } from './dispersion.ts'
 import { fitPeak, jonswapShape } from './jonswap.ts'
+import type { PeakFit } from './jonswap.ts'
 import { fitSea, quick, thorough } from './seaFit.ts'
 import type { SeaFit } from './seaFit.ts'
 import type { SeaModel, SeaState } from './seaModel.ts'
@@ -15,8 +16,8 @@ export interface FoundSystems {
   /** Groups of the whole spectrum that the fit looked at: [from, to). */
   from: number
   to: number
-  /** Peak of each system, Hz. */
-  peaks: number[]
+  /** Peak of each system: Hz, peakedness, m²/Hz. */
+  peaks: PeakFit[]
   /** Best other cycle: direction (rad), speed ratio and its share of the best beam's power, of the strongest system. */
   runnerUp: { direction: number; speedRatio: number; ratio: number; likelihoodLoss: number } | null
 }
@@ -27,13 +28,6 @@ const bandAbove = 1.9
 /** A system with a smaller share of the energy is left out. */
 const leastShare = 0.04
 const mostSystems = 3
-
-export function noiseDensity(bands: BandMatrices): Float64Array {
-  const noise = new Float64Array(bands.groups)
-  const m = bands.sensors
-  for (let g = 0; g < bands.groups; g++) for (let i = 0; i < m; i++) noise[g] += bands.noise[g * m + i] / m
-  return noise
-}
 
 /** Null when nothing stands above the noise. */
 export function findSystems(
@@ -64,7 +58,16 @@ export function findSystems(
   if (starts.some((start) => !start)) return null
   const fit = fitSea(model, { parameters, logDensity: startDensity(model) }, thorough)
   if (!fit) return null
-  return { fit, from, to: from + part.groups, peaks: peaks.map((p) => p.peak), runnerUp: starts[0]?.runnerUp ?? null }
+  const own = peaks.map((peak, j) => (peaks.length === 1 ? peak : ownPeak(fit, j, peak.peak)))
+  return { fit, from, to: from + part.groups, peaks: own, runnerUp: starts[0]?.runnerUp ?? null }
+}
+
+/** Peak of one train's own density, once the fit has told the trains apart. */
+function ownPeak(fit: SeaFit, system: number, near: number): PeakFit {
+  const { bands } = fit.model
+  const noise = noiseDensity(bands)
+  const density = noise.map((n, g) => n + Math.exp(fit.state.logDensity[system * bands.groups + g]))
+  return fitPeak(bands.frequency, density, bands.averages, noise, near)
 }
 
 export function firstGroup(bands: BandMatrices, frequency: number): number {
@@ -73,19 +76,13 @@ export function firstGroup(bands: BandMatrices, frequency: number): number {
   return g
 }
 
-export interface ExpectedPeak {
-  peak: number
-  gamma: number
-  density: number
-}
-
 export function seaModel(
   bands: BandMatrices,
   x: Float64Array,
   y: Float64Array,
   depth: number,
   gravity: number,
-  peaks: readonly ExpectedPeak[],
+  peaks: readonly PeakFit[],
 ): SeaModel {
   const systems = peaks.length
   const priors = peaks.flatMap(() => [

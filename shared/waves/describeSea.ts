@@ -1,0 +1,118 @@
+/** Trains of waves become the answer: systems highest first, errors of survey and clocks added, lags beside them, flags. */
+import { degreesTrue } from '../directions.ts'
+import type { EstimateResult, QualityFlag, QualityTest, WaveSystem } from '../schemas/estimate.ts'
+import type { ArraySpectra } from './arraySpectra.ts'
+import { closureTest, lagFit, subArrayFits, traceSpeeds } from './arrayLags.ts'
+import { selectGroups } from './bandMatrices.ts'
+import { phaseSpeed } from './dispersion.ts'
+import { refuse } from './blankResult.ts'
+import type { PreparedArray } from './preparedArray.ts'
+import { systematicVariance } from './systematicError.ts'
+import { describeTrain } from './trainVector.ts'
+import type { TrainVector } from './trainVector.ts'
+import { firstGroup } from './waveSystems.ts'
+import type { ArrayWindow } from './window.ts'
+
+export interface SeaDoubts {
+  /** Known already for a regular wave; else taken from the lags. */
+  lagResidualRms: number | null
+  runnerUp: { direction: number; speedRatio: number; ratio: number } | null
+  ambiguous: boolean
+}
+
+/** Ratio of measured to linear speed that a current, spread or depth of usual size explains. */
+const usualRatio = { from: 0.85, to: 1.2 }
+/** H_m0 over depth from which waves break over the array (Thornton & Guza 1982). */
+const breakingShare = 0.6
+
+export function describeSea(
+  result: EstimateResult,
+  window: ArrayWindow,
+  prepared: PreparedArray,
+  spectra: ArraySpectra,
+  trains: readonly TrainVector[],
+  doubts: SeaDoubts,
+): EstimateResult {
+  const { frame } = prepared
+  const { gravity } = window.settings
+  const ordered = frame.order.map((n) => window.sensors[prepared.usable[n]])
+  const ids = ordered.map((sensor) => sensor.id)
+  const measured = trains.map((train) => {
+    const band = selectGroups(
+      spectra.bands,
+      firstGroup(spectra.bands, 0.85 * train.peak),
+      Math.max(firstGroup(spectra.bands, 0.85 * train.peak) + 2, firstGroup(spectra.bands, 1.2 * train.peak)),
+    )
+    return lagFit(band, frame, train.direction, train.speed)
+  })
+  const order = trains.map((_, n) => n).sort((a, b) => trains[b].m0 - trains[a].m0)
+  const systems = order.map((n, place): WaveSystem => {
+    const train = trains[n]
+    const extra = systematicVariance(ordered, frame.x, frame.y, frame.aperture, train.direction, train.speed)
+    const lagged = measured[n].fit
+    return describeTrain(
+      {
+        ...train,
+        measuredSpeed: lagged && train.spread !== null ? 1 / Math.hypot(lagged.x, lagged.y) : train.measuredSpeed,
+        directionVariance: train.directionVariance + extra.direction,
+        logSpeedVariance: train.logSpeedVariance + extra.logSpeed,
+        cross: train.cross + extra.cross,
+      },
+      place + 1,
+      frame.axis,
+      window.waterDepth,
+      gravity,
+    )
+  })
+  const lead = order[0]
+  const leading = measured[lead]
+  const tests = [...result.tests, closureTest(leading.lags, ids.length), ...seaTests(result, systems[0])]
+  const other = doubts.runnerUp
+  const described: EstimateResult = {
+    ...result,
+    resolved: true,
+    reason: null,
+    systems,
+    peakPeriod: systems[0].peakPeriod,
+    tests,
+    traceSpeeds: traceSpeeds(leading.lags, frame, ids, trains[lead]),
+    lagResidualRms: doubts.lagResidualRms ?? leading.fit?.residual ?? null,
+    subArrays: leading.fit ? subArrayFits(leading.lags, leading.fit, frame, ids) : [],
+    runnerUp: other && {
+      toward: degreesTrue(other.direction + frame.axis),
+      speed: other.speedRatio * phaseSpeed(systems[0].peakPeriod, window.waterDepth, gravity),
+      ratio: other.ratio,
+    },
+  }
+  if (doubts.ambiguous) return refuse(described, 'ambiguous')
+  return { ...described, qualityFlag: overallFlag(described) }
+}
+
+function seaTests(result: EstimateResult, leading: WaveSystem): QualityTest[] {
+  const ratio = leading.speedRatio
+  const share = (result.significantWaveHeight ?? 0) / result.waterDepth
+  return [
+    {
+      test: 'dispersion ratio',
+      flag: ratio >= usualRatio.from && ratio <= usualRatio.to ? 1 : 3,
+      value: ratio,
+      limit: ratio < 1 ? usualRatio.from : usualRatio.to,
+      detail: `measured speed is ${ratio.toFixed(3)} of linear theory at the present depth`,
+    },
+    {
+      test: 'height over depth',
+      flag: share <= breakingShare ? 1 : 3,
+      value: share,
+      limit: breakingShare,
+      detail:
+        share <= breakingShare ? 'outside the surf zone' : 'waves break over the array: linear theory is doubtful',
+    },
+  ]
+}
+
+/** Suspect (3) when a sensor was left out, a geometry fault was found or a test of the sea is suspect; else good. */
+function overallFlag(result: EstimateResult): QualityFlag {
+  const geometry = ['lag closure', 'dispersion ratio', 'height over depth', 'sensor phases']
+  const doubtful = result.tests.some((test) => geometry.includes(test.test) && test.flag !== 1)
+  return doubtful || result.sensors.some((sensor) => !sensor.used) ? 3 : 1
+}
