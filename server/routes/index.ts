@@ -10,6 +10,7 @@ import { settingsRoutes } from './settings.ts'
 import { setUpRoutes } from './setUp.ts'
 import { stationHealthRoutes } from './stationHealth.ts'
 import { stationKeyRoutes } from './stationKeys.ts'
+import { stationRoutes } from './stations.ts'
 
 const features: ((parts: Parts) => Route[])[] = [
   installationRoutes,
@@ -17,6 +18,7 @@ const features: ((parts: Parts) => Route[])[] = [
   setUpRoutes,
   settingsRoutes,
   jobRoutes,
+  stationRoutes,
   stationKeyRoutes,
   stationHealthRoutes,
 ]

@@ -27,3 +27,12 @@ export const stationSettingsContent = z.strictObject({
   estimate: estimateSettings,
 })
 export type StationSettingsContent = z.infer<typeof stationSettingsContent>
+
+/** One version, as it is shown. */
+export const stationSettingsView = z.object({
+  id: z.number().int(),
+  validFrom: z.iso.datetime(),
+  reason: z.string(),
+  content: stationSettingsContent,
+})
+export type StationSettingsView = z.infer<typeof stationSettingsView>

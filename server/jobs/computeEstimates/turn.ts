@@ -1,5 +1,6 @@
 /** One window of one station, from stored readings to a saved estimate. */
-import type { EstimateResult } from '../../../shared/schemas/estimate.ts'
+import type { QualityTest, UnresolvedReason } from '../../../shared/schemas/estimate.ts'
+import { withoutFigures } from '../../../shared/waves/stationClock.ts'
 import type { Track } from '../../../shared/waves/trackSystems.ts'
 import type { ArrayWindow } from '../../../shared/waves/window.ts'
 import { softwareVersion } from '../../config/softwareVersion.ts'
@@ -46,8 +47,9 @@ export async function takeTurn(parts: Parts, estimators: Estimators, turn: Turn)
     },
   )
   const outcome = { ...unseen, inputCommitId: readings.newestCommitId }
-  if (!hasSamples(readings, settings.content.windowSeconds)) return passOver(parts, outcome)
-  if (turn.origin === 'late' && (await isKnown(parts, outcome))) return passOver(parts, outcome)
+  const isEmpty = !hasSamples(readings, settings.content.windowSeconds)
+  if (isEmpty && (isNext || !(await isEstimated(parts, outcome)))) return passOver(parts, outcome)
+  if (!isNext && turn.origin !== 'recompute' && (await isKnown(parts, outcome))) return passOver(parts, outcome)
 
   const [tideLevel, airPressure] = await Promise.all([
     estimates.tideLevelAt(parts, timeline.id, windowEndsAt),
@@ -57,7 +59,8 @@ export async function takeTurn(parts: Parts, estimators: Estimators, turn: Turn)
   const question = { windowEndsAt, deployment, settings, clockOffsets, readings, tideLevel, airPressure }
   const { window, surgeStartsAt } = estimates.arrayWindowOf(question)
   const clockOffset = clockOffsetOf(turn, readings)
-  const answer = await compute(parts, estimators, turn, { window, windowEndsAt, clockOffset, known: turn.known })
+  const task = { window, windowEndsAt, clockOffset, known: turn.known }
+  const answer = isEmpty ? nothingThere(task) : await compute(parts, estimators, turn, task)
   const making = {
     stationId: timeline.id,
     windowStartsAt,
@@ -80,6 +83,10 @@ async function passOver(parts: Parts, outcome: WindowOutcome): Promise<null> {
   await estimates.passOver(parts, outcome)
   return null
 }
+
+/** Readings were taken out again: what was estimated of them must not stay the last word. */
+const isEstimated = (parts: Parts, { mark, windowEndsAt }: WindowOutcome): Promise<boolean> =>
+  estimates.hasSeen(parts, mark.stationId, windowEndsAt, 0)
 
 /** A note can outlive its cause: the window was computed after the readings had come. */
 const isKnown = (parts: Parts, { mark, windowEndsAt, inputCommitId }: WindowOutcome): Promise<boolean> =>
@@ -118,33 +125,33 @@ async function compute(parts: Parts, estimators: Estimators, turn: Turn, task: E
 }
 
 /** What is saved of a window whose computation failed twice: that it failed, and why. */
-function notComputed({ window, known }: EstimateTask, failure: EstimationFailed): EstimateAnswer {
+function notComputed(task: EstimateTask, failure: EstimationFailed): EstimateAnswer {
   const [whatFailed] = failure.message.split('\n')
-  const detail = `The computation failed twice (${failure.kind}: ${whatFailed})`
-  const result: EstimateResult = {
-    resolved: false,
-    reason: 'not-computed',
-    qualityFlag: 2,
-    significantWaveHeight: null,
-    significantWaveHeightSd: null,
-    peakPeriod: null,
-    meanPeriod: null,
-    energyPeriod: null,
-    energyFlux: null,
-    surgeHeight: null,
+  return withoutEstimate(task, 'not-computed', {
+    test: 'computation',
+    flag: 2,
+    detail: `The computation failed twice (${failure.kind}: ${whatFailed})`,
+  })
+}
+
+/** What is saved of a window that was estimated and has no readings any more. */
+const nothingThere = (task: EstimateTask): EstimateAnswer =>
+  withoutEstimate(task, 'too-little-data', { test: 'gap', flag: 9, detail: 'Its readings were taken out again' })
+
+function withoutEstimate(
+  { window, known }: EstimateTask,
+  reason: UnresolvedReason,
+  test: Pick<QualityTest, 'test' | 'flag' | 'detail'>,
+): EstimateAnswer {
+  const bare = {
+    reason,
+    qualityFlag: test.flag,
     waterDepth: window.waterDepth,
     waterDepthSource: window.waterDepthSource,
     completeness: presentShare(window),
-    systems: [],
     sensors: [],
-    traceSpeeds: [],
-    tests: [{ test: 'computation', flag: 2, value: null, limit: null, detail }],
-    subArrays: [],
-    lagResidualRms: null,
-    runnerUp: null,
-    spectrum: null,
-    directionalSpectrum: null,
   }
+  const result = withoutFigures({ ...bare, tests: [{ ...test, value: null, limit: null }] })
   return { figures: result, known, digest: '', detail: packDetail(result) }
 }
 

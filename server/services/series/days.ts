@@ -1,0 +1,166 @@
+/** Days of a station's series, packed: what history reads. Derived from the operational run and rebuilt at will. */
+import { DateTime } from 'luxon'
+import { seriesPoint } from '../../../shared/schemas/station.ts'
+import type { SeriesPoint } from '../../../shared/schemas/station.ts'
+import type { Parts } from '../../config/parts.ts'
+import { SeriesDay } from '../../models/index.ts'
+import { packDay, unpackDay } from '../../models/seriesDayPayload.ts'
+import type { DayValues } from '../../models/seriesDayPayload.ts'
+import { execute, select } from '../../models/sql.ts'
+import { inTransaction } from '../transaction.ts'
+import { pointRows, presentPoint } from './points.ts'
+
+export const dayMs = 86_400_000
+
+/** Names of the quantities kept, and where each stands in a point. Directions have no extremes and a mean by vectors. */
+const quantities = {
+  significantWaveHeight: 'significantWaveHeight',
+  height: 'height',
+  period: 'period',
+  towardDegrees: 'toward',
+  speed: 'speed',
+  directionalSpread: 'spread',
+} as const
+type Quantity = keyof typeof quantities
+const names = Object.keys(quantities) as Quantity[]
+
+/** `YYYY-MM-DD` of the UTC day that a time lies in. */
+export const dayOf = (time: number): string => DateTime.fromMillis(time, { zone: 'utc' }).toISODate() ?? ''
+const startOf = (day: string): number => Date.parse(`${day}T00:00:00Z`)
+
+/** A window belongs to the day in which it ends, midnight to the day that it begins. */
+export async function rebuildSeriesDay(parts: Parts, stationId: number, day: string): Promise<void> {
+  const start = startOf(day)
+  const points = (await pointRows(parts, stationId, start - 1, start + dayMs - 1)).map(presentPoint)
+  const stepMs = spacingOf(points)
+  await inTransaction(parts.sequelize, async (transaction) => {
+    const subject = { subjectKind: 'station', subjectId: stationId, day }
+    await SeriesDay.destroy({ where: subject, transaction })
+    if (points.length === 0) return
+    const rows = names.map((quantity) => ({
+      ...subject,
+      quantity,
+      stepSeconds: stepMs / 1000,
+      ...packedQuantity(points, quantity, start, stepMs),
+    }))
+    await SeriesDay.bulkCreate(rows, { transaction })
+  })
+}
+
+/** Days from `first` to `last`, both included. */
+export async function rebuildSeriesDays(parts: Parts, stationId: number, first: string, last: string): Promise<void> {
+  for (let start = startOf(first); start <= startOf(last); start += dayMs) {
+    await rebuildSeriesDay(parts, stationId, dayOf(start))
+  }
+}
+
+/** The smallest distance between neighbours: a gap does not change it. A day with one window has steps of a minute. */
+function spacingOf(points: SeriesPoint[]): number {
+  const times = points.map(({ at }) => Date.parse(at))
+  const steps = times.slice(1).map((time, n) => time - times[n])
+  return Math.min(...steps, 60_000 * (steps.length === 0 ? 1 : 60))
+}
+
+function packedQuantity(points: SeriesPoint[], quantity: Quantity, start: number, stepMs: number) {
+  const length = Math.ceil(dayMs / stepMs)
+  const day: DayValues = { values: new Float32Array(length).fill(NaN), flags: new Uint8Array(length) }
+  const good: number[] = []
+  for (const point of points) {
+    const slot = Math.floor((Date.parse(point.at) - start) / stepMs)
+    const value = point[quantities[quantity]]
+    day.flags[slot] = point.qualityFlag
+    if (value === null) continue
+    day.values[slot] = value
+    if (point.qualityFlag === 1 || point.qualityFlag === 3) good.push(value)
+  }
+  return { ...summary(good, quantity), goodCount: good.length, payload: packDay(day) }
+}
+
+function summary(good: number[], quantity: Quantity) {
+  if (good.length === 0) return { minimum: null, maximum: null, mean: null }
+  if (quantity === 'towardDegrees') return { minimum: null, maximum: null, mean: meanBearing(good) }
+  const mean = good.reduce((sum, value) => sum + value, 0) / good.length
+  return { minimum: Math.min(...good), maximum: Math.max(...good), mean }
+}
+
+function meanBearing(degrees: number[]): number {
+  const radians = degrees.map((value) => (value * Math.PI) / 180)
+  const east = radians.reduce((sum, value) => sum + Math.sin(value), 0)
+  const north = radians.reduce((sum, value) => sum + Math.cos(value), 0)
+  return ((Math.atan2(east, north) * 180) / Math.PI + 360) % 360
+}
+
+interface StoredDay {
+  day: string
+  quantity: string
+  stepSeconds: number
+  payload: Buffer
+}
+
+/** Points of the packed days from `first` to `last`, by day; a day that was never packed is missing. */
+export async function packedDays(
+  { sequelize }: Parts,
+  stationId: number,
+  first: string,
+  last: string,
+): Promise<Map<string, SeriesPoint[]>> {
+  const rows = await select<StoredDay>(
+    sequelize,
+    `SELECT DATE_FORMAT(day, '%Y-%m-%d') AS day, quantity, stepSeconds, payload FROM seriesDays
+     WHERE subjectKind = 'station' AND subjectId = :stationId AND day BETWEEN :first AND :last ORDER BY day`,
+    { stationId, first, last },
+  )
+  const days = new Map<string, StoredDay[]>()
+  for (const row of rows) days.set(row.day, [...(days.get(row.day) ?? []), row])
+  return new Map([...days].map(([day, stored]) => [day, pointsOfDay(day, stored)]))
+}
+
+function pointsOfDay(day: string, stored: StoredDay[]): SeriesPoint[] {
+  const unpacked = new Map(stored.map(({ quantity, payload }) => [quantity, unpackDay(payload)]))
+  const flags = unpacked.get('significantWaveHeight')?.flags ?? new Uint8Array()
+  const stepMs = (stored[0]?.stepSeconds ?? 60) * 1000
+  const at = (quantity: Quantity, slot: number): number | null => {
+    const value = unpacked.get(quantity)?.values[slot] ?? NaN
+    return Number.isNaN(value) ? null : value
+  }
+  return [...flags].flatMap((flag, slot) => {
+    if (flag === 0) return []
+    const toward = at('towardDegrees', slot)
+    return {
+      at: new Date(startOf(day) + slot * stepMs).toISOString(),
+      qualityFlag: seriesPoint.shape.qualityFlag.parse(flag),
+      resolved: toward !== null,
+      toward,
+      significantWaveHeight: at('significantWaveHeight', slot),
+      height: at('height', slot),
+      period: at('period', slot),
+      speed: at('speed', slot),
+      spread: at('directionalSpread', slot),
+    }
+  })
+}
+
+const job = { job: 'seriesDays', subjectKind: 'station' }
+
+/** The first day of a station that is not packed yet; null where it has no estimates. */
+export async function firstUnpackedDay({ sequelize }: Parts, stationId: number): Promise<string | null> {
+  const [row] = await select<{ day: string | null }>(
+    sequelize,
+    `SELECT DATE_FORMAT(COALESCE(
+       (SELECT doneUpTo FROM watermarks WHERE job = :job AND subjectKind = :subjectKind AND subjectId = :stationId),
+       (SELECT MIN(windowEndsAt) FROM estimates WHERE stationId = :stationId AND runId = 0)), '%Y-%m-%d') AS day`,
+    { ...job, stationId },
+  )
+  return row?.day ?? null
+}
+
+/** Everything before this day is packed. */
+export async function notePacked({ sequelize, clock }: Parts, stationId: number, nextDay: string): Promise<void> {
+  await execute(
+    sequelize,
+    `INSERT INTO watermarks (job, subjectKind, subjectId, doneUpTo, epoch, updatedAt)
+     VALUES (:job, :subjectKind, :stationId, :nextDay, 0, :now)
+     ON DUPLICATE KEY UPDATE doneUpTo = VALUES(doneUpTo), updatedAt = VALUES(updatedAt)`,
+    { ...job, stationId, nextDay: new Date(startOf(nextDay)), now: clock.now() },
+  )
+}

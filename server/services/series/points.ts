@@ -1,0 +1,55 @@
+/** Points of a station's series out of its current estimates. */
+import { seriesPoint } from '../../../shared/schemas/station.ts'
+import type { SeriesPoint } from '../../../shared/schemas/station.ts'
+import type { Parts } from '../../config/parts.ts'
+import { select } from '../../models/sql.ts'
+
+export interface PointRow {
+  windowEndsAt: Date
+  resolved: number
+  qualityFlag: number
+  towardDegrees: number | null
+  significantWaveHeight: number | null
+  height: number | null
+  period: number | null
+  speed: number | null
+  directionalSpread: number | null
+}
+
+/** Of the windows that end after `from` and not after `to`, rising in time; highest revisions of the operational run. */
+export const pointRows = ({ sequelize }: Parts, stationId: number, from: number, to: number): Promise<PointRow[]> =>
+  select<PointRow>(
+    sequelize,
+    `SELECT e.windowEndsAt, e.resolved, e.qualityFlag, e.towardDegrees, e.significantWaveHeight, e.height, e.period,
+       e.speed, e.directionalSpread
+     FROM estimates e
+     WHERE e.stationId = :stationId AND e.runId = 0 AND e.windowEndsAt > :from AND e.windowEndsAt <= :to
+       AND NOT EXISTS (SELECT 1 FROM estimates newer WHERE newer.stationId = e.stationId
+         AND newer.windowEndsAt = e.windowEndsAt AND newer.runId = 0 AND newer.revision > e.revision)
+     ORDER BY e.windowEndsAt`,
+    { stationId, from: new Date(from), to: new Date(to) },
+  )
+
+/** What is not resolved has a height at most. */
+export function presentPoint(row: PointRow): SeriesPoint {
+  const resolved = Boolean(row.resolved)
+  const ofVector = (value: number | null): number | null => (resolved ? value : null)
+  return {
+    at: row.windowEndsAt.toISOString(),
+    qualityFlag: seriesPoint.shape.qualityFlag.parse(row.qualityFlag),
+    resolved,
+    toward: ofVector(row.towardDegrees),
+    significantWaveHeight: row.significantWaveHeight,
+    height: ofVector(row.height),
+    period: ofVector(row.period),
+    speed: ofVector(row.speed),
+    spread: ofVector(row.directionalSpread),
+  }
+}
+
+/** The newest point of each step; a step without any has none, so that gaps show. */
+export function newestOfEachStep(points: SeriesPoint[], stepMs: number): SeriesPoint[] {
+  const bySteps = new Map<number, SeriesPoint>()
+  for (const point of points) bySteps.set(Math.ceil(Date.parse(point.at) / stepMs), point)
+  return [...bySteps.values()]
+}
