@@ -21,8 +21,8 @@ export default defineConfig({
   server: {
     host: '127.0.0.1',
     proxy: {
-      '/api': server,
-      '/live': { target: server, ws: true },
+      '/api': { target: server, changeOrigin: true, headers: { Origin: server } },
+      '/live': { target: server, changeOrigin: true, ws: true, headers: { Origin: server } },
     },
   },
 })
