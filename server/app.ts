@@ -11,6 +11,7 @@ import { errorHandler } from './middleware/errorHandler.ts'
 import { requestLog } from './middleware/requestLog.ts'
 import { sameOrigin } from './middleware/sameOrigin.ts'
 import { securityHeaders } from './middleware/securityHeaders.ts'
+import { whenStarted } from './middleware/whenStarted.ts'
 import { health } from './routes/health.ts'
 import { allRoutes } from './routes/index.ts'
 import { mountRoutes } from './routes/registry.ts'
@@ -32,7 +33,7 @@ export function createApp(parts: Parts, readiness: Readiness = createReadiness()
   app.use(health(parts, readiness))
   app.use(compression())
   app.use('/api', cookieParser(), sameOrigin(environment), jsonOnly, express.json({ limit: largestBody }))
-  app.use('/api', authenticate(parts))
+  app.use('/api', whenStarted(readiness), authenticate(parts))
   mountRoutes(app, allRoutes(parts))
   app.use('/api', unknownPath)
   // Looked for at each request: the client may still be building when the server begins.

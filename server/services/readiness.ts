@@ -9,6 +9,9 @@ export interface Readiness {
   reasons(): string[]
 }
 
+/** Before the database is held, migrated and filled. */
+export const starting = 'starting'
+
 export function createReadiness(): Readiness {
   const reasons = new Set<string>()
   return {

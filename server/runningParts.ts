@@ -1,0 +1,31 @@
+/** What runs beside the routes, one line a part: started in this order, ended in the opposite one. */
+import type { Server } from 'node:http'
+import type { Parts, RunningPart } from './config/parts.ts'
+import { startCompactReadings } from './jobs/compactReadings.ts'
+import { startRetention } from './jobs/retention.ts'
+import { startSealAudits } from './jobs/sealAudits.ts'
+import { startTelemetry } from './sockets/telemetry.ts'
+import { createUpgradeDispatcher } from './sockets/upgrade.ts'
+
+export type StoppableParts = RunningPart
+
+export async function startRunningParts(parts: Parts, server: Server): Promise<StoppableParts> {
+  const started: RunningPart[] = []
+  const stop = async (): Promise<void> => {
+    for (const part of started.splice(0).reverse()) {
+      await part.stop().catch((error: unknown) => parts.logger.error({ error }, 'a part did not end well'))
+    }
+  }
+  const upgrades = createUpgradeDispatcher(server)
+  try {
+    started.push(await startRetention(parts))
+    started.push(await startSealAudits(parts))
+    const telemetry = await startTelemetry({ ...parts, upgrades })
+    started.push(telemetry)
+    started.push(await startCompactReadings(parts, telemetry.store))
+  } catch (error) {
+    await stop()
+    throw error
+  }
+  return { stop }
+}

@@ -1,0 +1,35 @@
+/** Fills an empty database with the demonstration: an invented port, its people, its stations. May be run again. */
+import { demonstrationCoast } from '../../shared/demonstration/coast.ts'
+import { demonstrationPort, demonstrationStations } from '../../shared/demonstration/stations.ts'
+import type { Parts } from '../config/parts.ts'
+import { Person, Station } from '../models/index.ts'
+import { changeSetting } from '../services/settings.ts'
+import { inTransaction } from '../services/transaction.ts'
+import { writeSystemLine } from '../services/watchLog.ts'
+import { prepareDemonstrationPeople } from './demonstrationPeople.ts'
+import { demonstrationKeys, seedStation } from './demonstrationStations.ts'
+
+/**
+ * Everything in one transaction, after the files with the secrets: a stop in between leaves nothing half done, and
+ * lost files are made anew. Answers whether the database was empty.
+ */
+export async function seedDemonstration(parts: Parts): Promise<boolean> {
+  const isFirst = (await Person.count()) === 0 && (await Station.count()) === 0
+  const keys = await demonstrationKeys(parts)
+  const addPeople = await prepareDemonstrationPeople(parts)
+  await inTransaction(parts.sequelize, async (transaction) => {
+    await addPeople(transaction)
+    const stations: Station[] = []
+    for (const described of demonstrationStations) {
+      stations.push(await seedStation(parts, described, keys[described.code] ?? '', transaction))
+    }
+    if (!isFirst) return
+    const by = { personId: null, reason: 'Demonstration' }
+    await changeSetting(parts, 'port', demonstrationPort, by, transaction)
+    await changeSetting(parts, 'watch', { leadStationId: stations[0]?.id ?? null }, by, transaction)
+    await changeSetting(parts, 'coast', { plan: demonstrationCoast }, by, transaction)
+    const text = `Demonstration set up: ${demonstrationPort.portName} and its ${stations.length} stations are invented.`
+    await writeSystemLine(parts, { kind: 'system', text }, transaction)
+  })
+  return isFirst
+}
