@@ -18,6 +18,8 @@ import { earlyEnd, untilPageAnswers } from './waitForPage.ts'
 
 const serverScript = 'server/index.ts'
 const simulatorScript = 'simulator/index.ts'
+/** Readings of the past that are younger than this reach into the first live windows. */
+const backfillMilliseconds = 25 * 60_000
 const say = (sentence: string): void => console.log(`  ${sentence}`)
 
 /** `databaseIsThere`: MariaDB and the folder for it may still be on their way. */
@@ -34,7 +36,6 @@ export async function startDemonstration(databaseIsThere: Promise<void>): Promis
     await parts.stop()
     throw error
   }
-  console.log('\nCtrl-C stops all of it in order; a second Ctrl-C at once.')
 }
 
 async function bringUp(settings: StartSettings, parts: RunningParts, databaseIsThere: Promise<void>): Promise<void> {
@@ -44,18 +45,25 @@ async function bringUp(settings: StartSettings, parts: RunningParts, databaseIsT
   await parts.endOrphan('server', serverScript)
   await requirePort(port, host, 'PORT')
   // Building and making the past take seconds, and the server needs neither to begin: all side by side.
-  const made = Promise.all([makeClient(root), makePast(root, settings.pastFolder, simulatorScript, settings.scenario)])
-  const server = await Promise.race([
-    made.then(() => new Promise<never>(() => undefined)),
-    startServer(settings, parts, { ...settings.variables, PUBLIC_URL: publicUrl }, databaseIsThere),
-  ])
-  await Promise.race([made, earlyEnd(server)])
-  await step('page', () => Promise.race([untilPageAnswers(address), earlyEnd(server)]))
+  const client = makeClient(root)
+  const past = makePast(root, settings.pastFolder, simulatorScript, settings.scenario)
+  const failure = Promise.race([failureOf(client), failureOf(past)])
+  const variables = { ...settings.variables, PUBLIC_URL: publicUrl }
+  const server = await Promise.race([startServer(settings, parts, variables, databaseIsThere), failure])
+  const trouble = Promise.race([failure, earlyEnd(server)])
+  await Promise.race([client, trouble])
+  await step('page', () => Promise.race([untilPageAnswers(address), trouble]))
   server.keep()
-  await startSimulator(settings, parts, address)
   console.log(`\nOffing, demonstration: ${publicUrl}\n`)
   for (const line of peopleLines(await readDemonstrationPeople(dataFolder))) console.log(line)
+  console.log('\nCtrl-C stops all of it in order; a second Ctrl-C at once.\n')
+  await past
+  await startSimulator(settings, parts, address)
+  say(`The stations send. What the parts write down: ${join(dataFolder, 'log')}`)
 }
+
+/** Never resolves; rejects as the work does. */
+const failureOf = (work: Promise<void>): Promise<never> => work.then(() => new Promise<never>(() => undefined))
 
 async function startServer(
   settings: StartSettings,
@@ -100,6 +108,3 @@ async function startSimulator(
   )
   simulator.keep()
 }
-
-/** Readings of the past that are younger than this reach into the first live windows. */
-const backfillMilliseconds = 25 * 60_000
