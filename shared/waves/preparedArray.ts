@@ -32,7 +32,14 @@ export interface PreparedArray {
 /** Share of the record that must be free of long gaps for all sensors to be cut alike. */
 const leastCommonShare = 0.7
 
-export function prepareArray(window: ArrayWindow): PreparedArray {
+export interface CheckedArray {
+  sensors: SensorState[]
+  tests: QualityTest[]
+  /** Samples with failed ones missing, in the window's order. */
+  clean: Float64Array[]
+}
+
+export function checkArray(window: ArrayWindow): CheckedArray {
   const { settings, sampleRate } = window
   const tests: QualityTest[] = []
   const clean: Float64Array[] = []
@@ -48,6 +55,18 @@ export function prepareArray(window: ArrayWindow): PreparedArray {
       completeness: checked.completeness,
     }
   })
+  return { sensors, tests, clean }
+}
+
+/** `leftOut` names sensors that are not to be used although their samples are good. */
+export function prepareArray(
+  window: ArrayWindow,
+  checked: CheckedArray,
+  leftOut: readonly number[] = [],
+): PreparedArray {
+  const { settings, sampleRate } = window
+  const { tests, clean } = checked
+  const sensors = checked.sensors.map((s, n) => (leftOut.includes(n) ? { ...s, used: false } : s))
   const usable = sensors.flatMap((sensor, index) => (sensor.used ? [index] : []))
   const frame = arrayFrame(usable.map((index) => window.sensors[index]))
   const longest = Math.round(settings.longestBridgedGap * sampleRate)

@@ -4,6 +4,7 @@ import { noiseDensity } from './bandMatrices.ts'
 import type { ArrayFrame } from './arrayGeometry.ts'
 import { sandwichCovariance } from './fitCovariance.ts'
 import { systemVector } from './systemVector.ts'
+import type { SeaDoubts } from './describeSea.ts'
 import type { TrainVector } from './trainVector.ts'
 import { findSystems } from './waveSystems.ts'
 import type { FoundSystems } from './waveSystems.ts'
@@ -13,6 +14,7 @@ export interface RandomSea {
   trains: TrainVector[]
   /** ln L of the fit over that of unrelated sensors with the same energies. */
   gain: number
+  doubts: SeaDoubts
 }
 
 export function findRandomSea(
@@ -44,8 +46,19 @@ export function findRandomSea(
       band: energies[j].band,
     }
   })
-  return { found, trains, gain: found.fit.evaluation.dataValue - unrelatedLikelihood(found) }
+  const { runnerUp } = found
+  const ambiguous = runnerUp !== null && runnerUp.ratio > ambiguousRatio && runnerUp.likelihoodLoss < ambiguousLoss
+  return {
+    found,
+    trains,
+    gain: found.fit.evaluation.dataValue - unrelatedLikelihood(found),
+    doubts: { lagResidualRms: null, runnerUp, ambiguous },
+  }
 }
+
+/** Another cycle whose beam is so nearly as strong and whose fit loses so little ln L cannot be told from the best. */
+const ambiguousRatio = 0.87
+const ambiguousLoss = 6
 
 /** ln L of sensors that share nothing but have their own energies. */
 function unrelatedLikelihood({ fit }: FoundSystems): number {

@@ -6,6 +6,7 @@ import type { PreparedArray } from './preparedArray.ts'
 import { metresPerDecibar } from './arraySpectra.ts'
 import { regularWave } from './regularWave.ts'
 import { fitSinusoid } from './sinusoid.ts'
+import type { SeaDoubts } from './describeSea.ts'
 import type { TrainVector } from './trainVector.ts'
 import type { ArrayWindow } from './window.ts'
 
@@ -14,11 +15,11 @@ const leastLineShare = 0.75
 
 export interface RegularSea {
   train: TrainVector
-  /** Root mean square of lag less fit, s. */
-  residual: number
-  /** Power of the next best cycle over the best. */
-  runnerUp: number
+  doubts: SeaDoubts
 }
+
+/** Another cycle that fits nearly as well makes the vector a guess: one frequency alone cannot decide. */
+const ambiguousFrom = 0.97
 
 /** Null where the sea is not regular. */
 export function findRegularSea(window: ArrayWindow, prepared: PreparedArray, spectra: ArraySpectra): RegularSea | null {
@@ -70,7 +71,7 @@ export function findRegularSea(window: ArrayWindow, prepared: PreparedArray, spe
     samplingError: null,
     band: { from: line.frequency - 1 / duration, to: line.frequency + 1 / duration },
   }
-  return { train, residual: wave.residual, runnerUp: wave.runnerUp }
+  return { train, doubts: { lagResidualRms: wave.residual, runnerUp: null, ambiguous: wave.runnerUp > ambiguousFrom } }
 }
 
 function turnBack(real: Float64Array, imag: Float64Array, m: number, angle: number): void {

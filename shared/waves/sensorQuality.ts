@@ -3,6 +3,7 @@
  * gross range, spike, flat line, rate of change. Failed samples become missing; the caller's series stays as it was.
  */
 import type { QualityFlag, QualityTest, SensorFinding } from '../schemas/estimate.ts'
+import { detrend } from './detrend.ts'
 import type { EstimateSettings } from './window.ts'
 import { robustSpread, median } from './robust.ts'
 
@@ -150,13 +151,13 @@ function dropFlatRuns(series: Float64Array, fail: number): number {
 
 /**
  * Spikes: samples farther from the median of their neighbours than so many robust standard deviations of that distance
- * and than the robust standard deviation of the record. Two passes, so that a spike hides no other.
+ * and than half the robust standard deviation of the record. Two passes, so that a spike hides no other.
  */
 function dropSpikes(series: Float64Array, sampleRate: number, sigmas: number): number {
   const stride = Math.max(1, Math.round(sampleRate / 4))
   const off = new Float64Array(series.length)
   const near = new Float64Array(neighbourOffsets.length)
-  const whole = robustSpread(series)
+  const whole = 0.5 * robustSpread(detrend(series))
   let dropped = 0
   for (let pass = 0; pass < 2; pass++) {
     for (let i = 0; i < series.length; i++) off[i] = series[i] - neighbourMedian(series, i, stride, near)
@@ -176,9 +177,11 @@ function dropSpikes(series: Float64Array, sampleRate: number, sigmas: number): n
 
 function neighbourMedian(series: Float64Array, at: number, stride: number, near: Float64Array): number {
   let found = 0
+  let before = 0
   for (let n = 0; n < neighbourOffsets.length; n++) {
     const value = series[at + neighbourOffsets[n] * stride]
     if (value !== value || value === undefined) continue
+    if (neighbourOffsets[n] < 0) before++
     let place = found++
     while (place > 0 && near[place - 1] > value) {
       near[place] = near[place - 1]
@@ -186,7 +189,8 @@ function neighbourMedian(series: Float64Array, at: number, stride: number, near:
     }
     near[place] = value
   }
-  if (found < 3) return NaN
+  // A sample at the edge of a gap has neighbours on one side only and cannot be judged.
+  if (before < 2 || found - before < 2) return NaN
   return found % 2 === 1 ? near[found >> 1] : 0.5 * (near[found / 2 - 1] + near[found / 2])
 }
 

@@ -63,14 +63,14 @@ export interface EstimateSettings {
 
 export const defaultEstimateSettings: EstimateSettings = {
   bandFrom: 0.04,
-  bandTo: 0.5,
+  bandTo: 1,
   gravity: 9.81,
   density: 1025,
   leastCompleteness: 0.8,
   leastHeight: 0.05,
   leastPressureResponse: 0.15,
   longestBridgedGap: 2,
-  spikeSigmas: 6,
+  spikeSigmas: 8,
   flatSuspectSamples: 10,
   flatFailSamples: 30,
   rangeShareOfDepth: 0.8,
