@@ -12,7 +12,7 @@ export interface CoastLayout {
   moles: string[]
   names: { name: string; at: Point }[]
   places: { name: string; at: Point; labelAt: Point; leader: string }[]
-  axes: { banks: string; words: string; at: Point; turn: number }[]
+  axes: { line: [Point, Point]; banks: string; words: string; at: Point; turn: number }[]
 }
 
 export function coastLayout(coast: Coast, frame: PlanFrame): CoastLayout {
@@ -73,6 +73,7 @@ function axis(points: readonly Point[], bearing: number | null): CoastLayout['ax
   const along: Point = [start[0] + (end[0] - start[0]) * 0.25, start[1] + (end[1] - start[1]) * 0.25]
   const upright = course > 0 ? course - 90 : course + 90
   return {
+    line: [start, end],
     banks: banks.join(''),
     words: bearing === null ? '' : `inbound ${String(Math.round(bearing)).padStart(3, '0')}° T`,
     at: polar(...along, course - 90, 16),

@@ -45,23 +45,22 @@ export function ribbonPoints(
     .sort((a, b) => a.hoursAgo - b.hoursAgo)
 }
 
-/** The usual time between points, hours: the median of the differences; 1/60 for fewer than two. */
-export function usualStep(points: readonly RibbonPoint[]): number {
-  const steps = points.slice(1).map((point, index) => point.hoursAgo - points[index].hoursAgo)
-  steps.sort((a, b) => a - b)
-  return steps[Math.floor(steps.length / 2)] ?? 1 / 60
-}
+/** Median of an odd or even number of values, the lower one of two. */
+const median = (values: readonly number[]): number => [...values].sort((a, b) => a - b)[(values.length - 1) >> 1] ?? 0
 
-/** Stretches without a gap: a gap is more than two and a half usual steps, and at least three minutes. */
+/**
+ * Stretches without a gap. A gap is more than two and a half times the usual step about it, and more than three
+ * minutes; the steps may differ between older and newer points.
+ */
 export function stretches(points: readonly RibbonPoint[]): RibbonPoint[][] {
-  const longest = Math.max(2.5 * usualStep(points), 0.05)
+  const steps = points.slice(1).map((point, index) => point.hoursAgo - points[index].hoursAgo)
   const found: RibbonPoint[][] = []
-  for (const point of points) {
-    const current = found.at(-1)
-    const before = current?.at(-1)
-    if (!current || !before || point.hoursAgo - before.hoursAgo > longest) found.push([point])
-    else current.push(point)
-  }
+  points.forEach((point, index) => {
+    const usual = median(steps.slice(Math.max(0, index - 4), index + 3))
+    const isGap = index === 0 || steps[index - 1] > Math.max(2.5 * usual, 0.05)
+    if (isGap) found.push([point])
+    else found[found.length - 1].push(point)
+  })
   return found
 }
 

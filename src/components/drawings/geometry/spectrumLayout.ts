@@ -19,9 +19,8 @@ export function frequencyTicks(last: number): number[] {
 /** 0, half and whole of the density axis. */
 export const densityTicks = (highest: number): number[] => [0, highest / 2, highest]
 
-/** Decimals that write half and whole of the density axis exactly, three at most. */
-export function tickPlaces(highest: number): number {
-  const exact = (places: number): boolean =>
-    Math.abs((highest / 2) * 10 ** places - Math.round((highest / 2) * 10 ** places)) < 1e-9
+/** Fewest decimals, three at most, that write a tick exactly. */
+export function tickPlaces(tick: number): number {
+  const exact = (places: number): boolean => Math.abs(tick * 10 ** places - Math.round(tick * 10 ** places)) < 1e-9
   return [0, 1, 2].find(exact) ?? 3
 }
