@@ -2,8 +2,12 @@
 import type { Server } from 'node:http'
 import type { Parts, RunningPart } from './config/parts.ts'
 import { startCompactReadings } from './jobs/compactReadings.ts'
+import { startComputeEstimates } from './jobs/computeEstimates.ts'
+import { startDemonstrationPast } from './jobs/demonstrationPast.ts'
+import { startKeepSeriesDays } from './jobs/keepSeriesDays.ts'
 import { startRetention } from './jobs/retention.ts'
 import { startSealAudits } from './jobs/sealAudits.ts'
+import { startLive } from './sockets/live.ts'
 import { startTelemetry } from './sockets/telemetry.ts'
 import { createUpgradeDispatcher } from './sockets/upgrade.ts'
 
@@ -20,9 +24,14 @@ export async function startRunningParts(parts: Parts, server: Server): Promise<S
   try {
     started.push(await startRetention(parts))
     started.push(await startSealAudits(parts))
+    // First, for it knows how far each station's readings reach.
     const telemetry = await startTelemetry({ ...parts, upgrades })
     started.push(telemetry)
+    started.push(await startLive(parts, { upgrades }))
+    started.push(await startComputeEstimates(parts))
+    started.push(startKeepSeriesDays(parts))
     started.push(await startCompactReadings(parts, telemetry.store))
+    started.push(startDemonstrationPast(parts))
   } catch (error) {
     await stop()
     throw error
