@@ -38,7 +38,7 @@ const afterwards = (name: string, fault: (scene: Scene) => Promise<FaultReport['
 })
 
 function cases(seed: number): Case[] {
-  if (values.short) return [kills(seed, 1, 4_500)]
+  if (values.short) return [kills(seed, 1, 2_500)]
   return [
     kills(seed, Number(values.rounds ?? 10), 6_000),
     afterwards('database absent at the start', databaseAbsentAtStart),
