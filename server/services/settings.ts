@@ -8,6 +8,8 @@ import type { Parts } from '../config/parts.ts'
 import { SettingVersion } from '../models/index.ts'
 import { recordAudit } from './audit.ts'
 
+const monthsKept = z.number().int().min(1).max(1200).nullable()
+
 /** Every group with the shape of its content. */
 const shapes = {
   port: z.strictObject({ portName: z.string().min(1).max(80), timeZone: z.string().min(1).max(60) }),
@@ -18,6 +20,13 @@ const shapes = {
     traceSpeeds: z.string().min(20).max(400),
   }),
   coast: z.strictObject({ plan: coast.nullable() }),
+  /** Months kept besides the current one; null keeps all. */
+  retention: z.strictObject({
+    readingBlocks: monthsKept,
+    stationHealthHours: monthsKept,
+    estimates: monthsKept,
+    estimateDetails: monthsKept,
+  }),
 }
 
 export type SettingGroup = keyof typeof shapes
@@ -35,6 +44,7 @@ const initial: Settings = {
       'A trace speed is the apparent speed along one pair of sensors, never a component of the wave vector: it reads too high by 1/cos of its angle to the waves.',
   },
   coast: { plan: null },
+  retention: { readingBlocks: 25, stationHealthHours: 25, estimates: null, estimateDetails: 25 },
 }
 
 type Shapes = { [Group in SettingGroup]: z.ZodType<Settings[Group]> }

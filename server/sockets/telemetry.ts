@@ -9,6 +9,8 @@ import { createReadingStore, noteConnected } from '../services/readings.ts'
 import type { ReadingStore } from '../services/readings.ts'
 import { holderOfKey } from '../services/stationKeys.ts'
 import { Connection } from './telemetry/connection.ts'
+import { createPace } from './telemetry/pace.ts'
+import type { Pace } from './telemetry/pace.ts'
 import type { Surroundings } from './telemetry/surroundings.ts'
 import { refuseUpgrade } from './upgrade.ts'
 import type { UpgradeDispatcher } from './upgrade.ts'
@@ -24,6 +26,7 @@ const closeWithinMs = 2_000
 export interface TelemetryOptions extends Pick<Parts, 'bus' | 'clock' | 'logger'> {
   upgrades: UpgradeDispatcher
   heartbeatMs?: number
+  betweenCommitsMs?: number
 }
 
 export interface Telemetry {
@@ -33,15 +36,22 @@ export interface Telemetry {
 
 export async function startTelemetry(options: TelemetryOptions): Promise<Telemetry> {
   const { bus, clock, logger, upgrades, heartbeatMs = heartbeatSeconds * 1000 } = options
-  const store = await createReadingStore({ bus, clock, logger })
+  const { betweenCommitsMs } = options
+  const store = await createReadingStore({ bus, clock, logger, betweenCommitsMs })
   const sockets = new WebSocketServer({ noServer: true, maxPayload: maxFrameBytes, perMessageDeflate: false })
   const connections = new Map<WebSocket, Connection>()
   const streaming = new Map<number, Connection>()
+  const paces = new Map<number, Pace>()
 
   const around: Surroundings = {
     clock,
     bus,
     store,
+    paceOf(stationId) {
+      const pace = paces.get(stationId) ?? createPace()
+      paces.set(stationId, pace)
+      return pace
+    },
     welcomed(connection) {
       streaming.get(connection.stationId)?.close(telemetryClose.replaced, 'replaced by a newer connection')
       streaming.set(connection.stationId, connection)
@@ -67,7 +77,7 @@ export async function startTelemetry(options: TelemetryOptions): Promise<Telemet
     let early = 0
     const inTurn = (work: () => Promise<void>): void => {
       turn = turn.then(work).catch((error: unknown) => {
-        logger.warn({ err: error, stationId: connection?.stationId }, 'a station could not be served')
+        logger.warn({ error, stationId: connection?.stationId }, 'a station could not be served')
         socket.close(telemetryClose.tryAgainLater, 'not now')
       })
     }
@@ -111,7 +121,7 @@ export async function startTelemetry(options: TelemetryOptions): Promise<Telemet
     for (const connection of connections.values()) {
       connection.beat()
       if (beats % beatsBetweenChecks > 0) continue
-      connection.checkStation().catch((error: unknown) => logger.warn({ err: error }, 'a station could not be checked'))
+      connection.checkStation().catch((error: unknown) => logger.warn({ error }, 'a station could not be checked'))
     }
   }, heartbeatMs)
 

@@ -26,25 +26,37 @@ export interface CompactionOptions {
   settledCommitId: number
 }
 
-/** Answers how many frames were moved. */
+/** Answers how many frames were moved. A station that fails does not keep the others: its fault is thrown at the end. */
 export async function compactReadings({ before, settledCommitId }: CompactionOptions): Promise<number> {
   const until = Math.floor(before / minuteMs) * minuteMs
-  const values = { until: new Date(until), settledCommitId }
+  const faults = new Map<number, unknown>()
   let moved = 0
   for (;;) {
-    const oldest = await select<{ stationId: number; startsAt: Date }>(
-      database(),
-      `SELECT stationId, MIN(startsAt) AS startsAt FROM frames
-       WHERE startsAt < :until AND commitId <= :settledCommitId GROUP BY stationId`,
-      values,
+    const stations = (await stationsWithFrames(until, settledCommitId)).filter(
+      ({ stationId }) => !faults.has(stationId),
     )
-    if (oldest.length === 0) return moved
-    for (const { stationId, startsAt } of oldest) {
+    if (stations.length === 0) break
+    for (const { stationId, startsAt } of stations) {
       const start = Math.floor(startsAt.getTime() / minuteMs) * minuteMs
-      moved += await compactStation(stationId, start, Math.min(until, start + atOnceMs), settledCommitId)
+      try {
+        moved += await compactStation(stationId, start, Math.min(until, start + atOnceMs), settledCommitId)
+      } catch (error) {
+        faults.set(stationId, error)
+      }
     }
   }
+  if (faults.size > 0)
+    throw new AggregateError(faults.values(), `frames of stations ${[...faults.keys()].join(', ')} stay`)
+  return moved
 }
+
+const stationsWithFrames = (until: number, settledCommitId: number): Promise<{ stationId: number; startsAt: Date }[]> =>
+  select(
+    database(),
+    `SELECT stationId, MIN(startsAt) AS startsAt FROM frames
+     WHERE startsAt < :until AND commitId <= :settledCommitId GROUP BY stationId`,
+    { until: new Date(until), settledCommitId },
+  )
 
 interface FrameRow {
   streamId: number

@@ -13,13 +13,14 @@ import { takeCommitId } from './commitIds.ts'
 import type { CommitTimes } from './commitIds.ts'
 import { commitArrivals } from './commit.ts'
 import type { Committed } from './commit.ts'
+import { database } from './database.ts'
 import { createHealthCounts } from './healthCounts.ts'
 import { createKeepAsideLimit } from './keepAsideLimit.ts'
 import { durableUntil } from './links.ts'
 import { groupBy } from './groupBy.ts'
 import { isHeld, joinLanes, nextRelease } from './lanes.ts'
 
-const betweenCommitsMs = 250
+const usuallyBetweenCommitsMs = 250
 const mostArrivals = 2000
 const mostBytes = 4 * 1024 * 1024
 const betweenHealthMs = 10_000
@@ -43,9 +44,11 @@ export interface GroupCommitOptions {
   clock: Clock
   logger: Logger
   commitTimes: CommitTimes
+  betweenCommitsMs?: number | undefined
 }
 
-export function createGroupCommit({ bus, clock, logger, commitTimes }: GroupCommitOptions): GroupCommit {
+export function createGroupCommit(options: GroupCommitOptions): GroupCommit {
+  const { bus, clock, logger, commitTimes, betweenCommitsMs = usuallyBetweenCommitsMs } = options
   let waiting: Arrival[] = []
   const counts = new Map<number, number>()
   /** Stations whose last commit may have happened though it failed: what is stored is looked up, not remembered. */
@@ -108,8 +111,8 @@ export function createGroupCommit({ bus, clock, logger, commitTimes }: GroupComm
     } catch (error) {
       failures += 1
       waiting = [...group, ...waiting]
-      if (mayPass(error)) return logger.warn({ err: error, waiting: waiting.length }, 'readings wait')
-      logger.error({ err: error }, 'a group of readings was refused by the database')
+      if (mayPass(error)) return logger.warn({ error, waiting: waiting.length }, 'readings wait')
+      logger.error({ error }, 'a group of readings was refused by the database')
       await commitByStation(takeGroup())
     }
   }
@@ -123,7 +126,7 @@ export function createGroupCommit({ bus, clock, logger, commitTimes }: GroupComm
       } catch (error) {
         if (mayPass(error)) waiting = [...ofStation, ...waiting]
         else {
-          logger.error({ err: error, stationId }, 'readings of a station were refused by the database')
+          logger.error({ error, stationId }, 'readings of a station were refused by the database')
           for (const arrival of ofStation) leave(arrival, () => arrival.settled({ kind: 'failed' }, arrival.stream.ledger.contiguous)) // prettier-ignore
         }
       }
@@ -169,7 +172,7 @@ export function createGroupCommit({ bus, clock, logger, commitTimes }: GroupComm
     try {
       tell()
     } catch (error) {
-      logger.error({ err: error, stationId: station.id }, 'a sender could not be told')
+      logger.error({ error, stationId: station.id }, 'a sender could not be told')
     }
   }
 
@@ -179,6 +182,16 @@ export function createGroupCommit({ bus, clock, logger, commitTimes }: GroupComm
       else if (waiting.every(({ station }) => isHeld(station.id))) await nextRelease()
       else await run()
       if (failures > 0) return
+    }
+  }
+
+  /** The counts since the last time; without them the hour would show less than came. */
+  async function writeHealth(): Promise<void> {
+    try {
+      const { written } = await database().transaction((transaction) => health.write(transaction))
+      written()
+    } catch (error) {
+      logger.warn({ error }, 'the last counts of health were not written')
     }
   }
 
@@ -198,6 +211,7 @@ export function createGroupCommit({ bus, clock, logger, commitTimes }: GroupComm
       await flush()
       stopped = true
       leaveLanes()
+      if (failures === 0) await writeHealth()
     },
   }
 }

@@ -29,7 +29,7 @@ export async function loadStationFacts(stationId: number, at: Date): Promise<Sta
   return {
     id: station.id,
     code: station.code,
-    state: station.state,
+    state: station.retiredAt ? 'retired' : station.state,
     sampleRate: station.sampleRate,
     deployment: deployment && { id: deployment.id, sensors: await sensorsOf(deployment.id) },
     windowMs: (settings?.content.windowSeconds ?? 1200) * 1000,

@@ -18,8 +18,16 @@ export interface ReadingStore extends GroupCommit {
 /** A computation that takes longer than this has been ended. */
 const computationEndsWithinMs = 120_000
 
+export interface ReadingStoreOptions {
+  bus: Bus
+  clock: Clock
+  logger: Logger
+  /** How long frames wait for others to be committed with, ms. */
+  betweenCommitsMs?: number | undefined
+}
+
 /** One in a process. Rebuilds what is known of the links first. */
-export async function createReadingStore(options: { bus: Bus; clock: Clock; logger: Logger }): Promise<ReadingStore> {
+export async function createReadingStore(options: ReadingStoreOptions): Promise<ReadingStore> {
   const { clock } = options
   await restoreLinks(clock)
   const commitTimes = createCommitTimes(await takeCommitId(), clock.monotonic())

@@ -7,7 +7,7 @@ import type { OpenStream, Outcome, StationFacts } from '../../services/readings.
 import type { KeyHolder } from '../../services/stationKeys.ts'
 import { createClockWatch } from './clockWatch.ts'
 import { differenceOfHello } from './fitHello.ts'
-import { createPace } from './pace.ts'
+import type { Pace } from './pace.ts'
 import { placeFrame } from './placeFrame.ts'
 import { readMessage } from './readMessage.ts'
 import type { Surroundings } from './surroundings.ts'
@@ -26,7 +26,7 @@ export class Connection {
   readonly key: KeyHolder
   private readonly socket: WebSocket
   private readonly around: Surroundings
-  private readonly pace = createPace()
+  private readonly pace: Pace
   private readonly clockWatch = createClockWatch()
   private streaming: Streaming | null = null
   private malformed = 0
@@ -38,6 +38,7 @@ export class Connection {
     this.socket = socket
     this.key = key
     this.around = around
+    this.pace = around.paceOf(key.stationId)
     socket.on('pong', () => (this.answered = true))
   }
 
@@ -203,17 +204,15 @@ export class Connection {
     if (this.socket.readyState === this.socket.OPEN) this.socket.send(JSON.stringify(message))
   }
 
-  /** Every 15 s: the last ping must have been answered, the key must still hold. */
+  /** Every 15 s: the last ping must have been answered, the key must still hold. Who does not answer a close is cut off. */
   beat(): void {
-    const now = this.around.clock.now()
-    if (this.key.validUntil && this.key.validUntil <= now) return this.close(telemetryClose.keyRefused, 'the key has expired') // prettier-ignore
+    const { validUntil } = this.key
+    if (this.socket.readyState !== this.socket.OPEN) return this.socket.terminate()
+    if (validUntil && validUntil <= this.around.clock.now()) return this.close(telemetryClose.keyRefused, 'the key has expired') // prettier-ignore
     if (this.heldBack) return
-    if (!this.answered) {
-      this.close(telemetryClose.noPong, 'no pong')
-      return this.socket.terminate()
-    }
+    if (!this.answered) return this.close(telemetryClose.noPong, 'no pong')
     this.answered = false
-    if (this.socket.readyState === this.socket.OPEN) this.socket.ping()
+    this.socket.ping()
   }
 
   /** Every minute: the station may have been retired, its array moved. */
