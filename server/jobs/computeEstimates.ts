@@ -132,6 +132,9 @@ export async function startComputeEstimates(
     ? null
     : schedule(`${wakeAtSecond} * * * * *`, () => void wake(), { timezone: 'UTC', name: 'computeEstimates' })
 
+  // What became due while the program was not running.
+  if (!options.isUnscheduled) void wake()
+
   return {
     wake,
     async stop() {

@@ -54,6 +54,8 @@ export function startKeepSeriesDays(parts: Parts, { isUnscheduled = false } = {}
     ? null
     : schedule('40 7,22,37,52 * * * *', () => void wake(), { timezone: 'UTC', name: 'keepSeriesDays' })
 
+  if (!isUnscheduled) void wake()
+
   return {
     wake,
     async stop() {

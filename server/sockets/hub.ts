@@ -34,6 +34,8 @@ export interface Hub {
   isHeard(room: string): boolean
   /** `subject` tells apart what of one kind stands beside each other: the latest of each is kept. */
   publish(room: string, kind: string, body: unknown, subject?: string | number): void
+  /** An event that could not be made: the room counts on, so that its listeners see the hole and fetch. */
+  skip(room: string): void
   /** Sends what was held back where there is room again, and closes those who stay slow. Called by a timer. */
   relieve(): void
 }
@@ -123,6 +125,9 @@ export function createHub({ epoch, clock }: { epoch: string; clock: Pick<Clock, 
       const event: LiveServerMessage = { type: 'event', room: name, seq: room.seq, kind, body }
       const text = JSON.stringify(event)
       for (const listener of room.listeners) deliver(listener, `${name} ${kind} ${subject}`, text)
+    },
+    skip(name) {
+      roomNamed(name).seq += 1
     },
     relieve() {
       for (const [listener, seat] of [...seats]) {

@@ -1,0 +1,85 @@
+/** Turns the news of the process into events of rooms. Bodies are what REST gives, made by the same functions. */
+import { currentEstimate, seriesPoint, stationView, tracesChunk } from '../../../shared/schemas/station.ts'
+import { liveEventKinds as kinds } from '../../../shared/wire/live.ts'
+import type { Parts } from '../../config/parts.ts'
+import { presentStation } from '../../presenters/station.ts'
+import { currentEstimateOf } from '../../services/estimates.ts'
+import { readPoint } from '../../services/series.ts'
+import { listStations } from '../../services/stations.ts'
+import type { Hub } from '../hub.ts'
+
+/** Readings come every second; what they change of a station is told this often. */
+const stationEveryMs = 5_000
+
+export interface Newscast {
+  /** Tells all stations anew: ages and shares change though nothing arrives. */
+  tellStations(): Promise<void>
+  /** Resolves when all news so far has been told. */
+  settled(): Promise<void>
+  stop(): void
+}
+
+export function startNewscast(parts: Parts, hub: Hub): Newscast {
+  const { bus, clock, logger } = parts
+  const turns = new Map<number, Promise<void>>()
+  const toldAt = new Map<number, number>()
+
+  /** In the order of the news of each station, for each event is read from the database. */
+  function inTurn(stationId: number, rooms: string[], work: () => Promise<void>): void {
+    const heard = rooms.filter((room) => hub.isHeard(room))
+    if (heard.length === 0) return
+    const turn = (turns.get(stationId) ?? Promise.resolve()).then(work).catch((error: unknown) => {
+      logger.warn({ error, stationId }, 'an event could not be made')
+      for (const room of heard) hub.skip(room)
+    })
+    turns.set(stationId, turn)
+  }
+
+  const roomsOf = (stationId: number): string[] => ['stations', `station:${stationId}`]
+
+  function tellStation(stationId: number): void {
+    toldAt.set(stationId, clock.monotonic())
+    inTurn(stationId, roomsOf(stationId), async () => {
+      const body = stationView.parse(await presentStation(parts, stationId))
+      for (const room of roomsOf(stationId)) hub.publish(room, kinds.station, body, stationId)
+    })
+  }
+
+  /** A late window of long ago is news for the series alone. */
+  function tellEstimate(stationId: number, windowEndsAt: number): void {
+    inTurn(stationId, roomsOf(stationId), async () => {
+      const current = await currentEstimateOf(parts, stationId)
+      if (current && Date.parse(current.windowEndsAt) === windowEndsAt) {
+        const body = currentEstimate.parse(current)
+        for (const room of roomsOf(stationId)) hub.publish(room, kinds.estimate, body, stationId)
+      }
+      const point = hub.isHeard(`station:${stationId}`) ? await readPoint(parts, stationId, windowEndsAt) : null
+      // Each window is a point of its own: none of them stands for another.
+      if (point) hub.publish(`station:${stationId}`, kinds.seriesPoint, seriesPoint.parse(point), windowEndsAt)
+    })
+  }
+
+  const subscriptions = [
+    bus.subscribe('traces.arrived', (chunk) => {
+      const room = `traces:${chunk.stationId}`
+      if (hub.isHeard(room)) hub.publish(room, kinds.traces, tracesChunk.parse(chunk))
+    }),
+    bus.subscribe('link.changed', ({ stationId }) => tellStation(stationId)),
+    bus.subscribe('readings.stored', ({ stationId }) => {
+      if (clock.monotonic() - (toldAt.get(stationId) ?? -Infinity) >= stationEveryMs) tellStation(stationId)
+    }),
+    bus.subscribe('estimate.saved', ({ stationId, windowEndsAt }) => tellEstimate(stationId, windowEndsAt)),
+    bus.subscribe('job.progressed', (job) => hub.publish('system', kinds.job, job, job.id)),
+  ]
+
+  return {
+    async tellStations() {
+      const stations = hub.isHeard('stations') ? await listStations(parts) : []
+      for (const { id } of stations) tellStation(id)
+    },
+    settled: async () => void (await Promise.all(turns.values())),
+    stop() {
+      for (const unsubscribe of subscriptions) unsubscribe()
+    },
+  }
+}
