@@ -8,12 +8,23 @@ import { PlainFailure } from './plainFailure.mjs'
 import { runProgram } from './runProgram.mjs'
 
 /**
+ * A server that starts clears temporary tables away, those of other servers too where they share a folder: ours has one
+ * of its own.
+ * @param {string} folder
+ */
+export const temporaryFolder = (folder) => join(folder, 'tmp')
+
+/** @param {string} folder */
+const makeTemporaryFolder = (folder) => mkdir(temporaryFolder(folder), { recursive: true, mode: 0o700 })
+
+/**
  * Makes the folder of a database of our own, once: tables of MariaDB itself and a password for our user. A run that
  * was cut short leaves only `unfinished`, never half a database.
  * @param {string} folder
  */
 export async function initialiseDatabaseFolder(folder) {
   await mkdir(folder, { recursive: true, mode: 0o700 })
+  await makeTemporaryFolder(folder)
   await makeSecret(join(folder, 'password'))
   if (existsSync(join(folder, 'data'))) return
   const unfinished = join(folder, 'unfinished')
@@ -23,6 +34,7 @@ export async function initialiseDatabaseFolder(folder) {
     '--no-defaults',
     ...(process.getuid?.() === 0 ? ['--user=root'] : []),
     `--datadir=${unfinished}`,
+    `--tmpdir=${temporaryFolder(folder)}`,
     '--auth-root-authentication-method=socket',
     `--auth-root-socket-user=${user}`,
     '--skip-test-db',

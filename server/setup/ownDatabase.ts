@@ -4,7 +4,7 @@ import { tmpdir } from 'node:os'
 import { connect } from 'node:net'
 import { basename, join } from 'node:path'
 import { findProgram } from './debianPackages.mjs'
-import { initialiseDatabaseFolder } from './databaseFolder.mjs'
+import { initialiseDatabaseFolder, temporaryFolder } from './databaseFolder.mjs'
 import { freePort } from './freePort.ts'
 import { PlainFailure } from './plainFailure.mjs'
 import { endOrphan } from './processes.ts'
@@ -74,6 +74,7 @@ export async function startOwnDatabase(
         '--no-defaults',
         ...(process.getuid?.() === 0 ? ['--user=root'] : []),
         `--datadir=${dataFolder}`,
+        `--tmpdir=${temporaryFolder(folder)}`,
         `--socket=${join(socketFolder, 'db.sock')}`,
         `--pid-file=${join(socketFolder, 'db.pid')}`,
         `--init-file=${accounts}`,

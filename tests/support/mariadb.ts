@@ -3,7 +3,7 @@ import { spawn, spawnSync } from 'node:child_process'
 import type { ChildProcess } from 'node:child_process'
 import { randomBytes } from 'node:crypto'
 import { existsSync } from 'node:fs'
-import { mkdtemp, readFile, rm } from 'node:fs/promises'
+import { mkdir, mkdtemp, readFile, rm } from 'node:fs/promises'
 import { createServer } from 'node:net'
 import type { AddressInfo } from 'node:net'
 import { tmpdir } from 'node:os'
@@ -51,10 +51,20 @@ const delay = (milliseconds: number): Promise<void> => new Promise((resolve) => 
 export async function startMariadb({ durable = false } = {}): Promise<DatabaseServer> {
   const folder = await mkdtemp(join(tmpdir(), 'offing-db-'))
   const data = join(folder, 'data')
+  // A server that starts clears temporary tables away, those of its neighbours too where they share a folder.
+  const temporary = join(folder, 'tmp')
+  await mkdir(temporary)
   const asRoot = process.getuid?.() === 0 ? ['--user=root'] : []
   const made = spawnSync(
     locate('mariadb-install-db'),
-    ['--no-defaults', ...asRoot, `--datadir=${data}`, '--auth-root-authentication-method=normal', '--skip-test-db'],
+    [
+      '--no-defaults',
+      ...asRoot,
+      `--datadir=${data}`,
+      `--tmpdir=${temporary}`,
+      '--auth-root-authentication-method=normal',
+      '--skip-test-db',
+    ],
     { encoding: 'utf8' },
   )
   if (made.status !== 0) throw new Error(`mariadb-install-db failed: ${made.stderr || made.stdout}`)
@@ -74,6 +84,7 @@ export async function startMariadb({ durable = false } = {}): Promise<DatabaseSe
         '--no-defaults',
         ...asRoot,
         `--datadir=${data}`,
+        `--tmpdir=${temporary}`,
         `--socket=${socket}`,
         `--pid-file=${join(folder, 'm.pid')}`,
         '--bind-address=127.0.0.1',

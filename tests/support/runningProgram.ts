@@ -60,7 +60,8 @@ async function serveControl(parts: Record<string, Killable>, program: Program) {
 export default async function setup(project: TestProject): Promise<() => Promise<void>> {
   const stale = await staleClient(root)
   if (stale !== null) await buildClient(root, stale)
-  const [program, browser] = await Promise.all([startProgram(), launchBrowser()])
+  const program = await startProgram()
+  const browser = await launchBrowser()
   const simulator = await program.simulator(['--scenario', 'quiet', '--backfill', '25m'])
   await simulator.start()
   const control = await serveControl({ server: program.server, simulator }, program)
