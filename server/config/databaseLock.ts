@@ -7,7 +7,7 @@ export interface DatabaseLock {
   release(): Promise<void>
 }
 
-const waitSeconds = 3
+const waitSeconds = 1
 const lookMilliseconds = 1_000
 const looksAPing = 10
 
