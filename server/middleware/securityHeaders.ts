@@ -6,7 +6,10 @@ import { ownOrigins } from '../config/origins.ts'
 
 export function securityHeaders(environment: Environment): RequestHandler {
   const secure = environment.publicUrl.startsWith('https:')
-  const sockets = ownOrigins(environment).map((origin) => origin.replace(/^http/, 'ws'))
+  // A source list cannot name an IPv6 address; 'self' covers the page's own.
+  const sockets = ownOrigins(environment)
+    .filter((origin) => !origin.includes('['))
+    .map((origin) => origin.replace(/^http/, 'ws'))
   return helmet({
     contentSecurityPolicy: {
       useDefaults: false,
