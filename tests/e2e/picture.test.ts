@@ -30,8 +30,8 @@ async function readRow(station: StationView) {
   const figure = (pattern: RegExp) => Number(pattern.exec(text)?.[1] ?? NaN)
   return {
     text,
-    from: figure(/from (\d{3}) T/),
-    toward: figure(/toward (\d{3}) T/),
+    from: figure(/from (\d{3})° T/),
+    toward: figure(/toward (\d{3})° T/),
     speed: figure(/([\d.]+) ± [\d.]+ m\/s/),
     height: figure(/([\d.]+) m all/),
   }

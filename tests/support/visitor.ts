@@ -44,7 +44,11 @@ export async function newVisitor(options: { width?: number; height?: number } = 
   }
   page.on('request', (request) => note(request.url()))
   page.on('websocket', (socket) => note(socket.url()))
-  page.on('console', (message) => message.type() === 'error' && complaints.push(message.text()))
+  page.on('console', (message) => {
+    // Whether somebody is signed in is asked first thing, and "nobody" is a 401 that every browser notes.
+    const isFirstQuestion = /401/.test(message.text()) && message.location().url.endsWith('/api/session')
+    if (message.type() === 'error' && !isFirstQuestion) complaints.push(message.text())
+  })
   page.on('pageerror', (error) => complaints.push(error.message))
   return { context, page, foreign, complaints }
 }
