@@ -160,7 +160,7 @@ export function frameOf(
   const count = Math.round(seconds * station.sampleRate)
   const timeOf = (n: number) => start.getTime() + n * interval * 1000
   return {
-    type: 'frame',
+    type: 'frame' as const,
     seq,
     start: start.toISOString(),
     interval,
