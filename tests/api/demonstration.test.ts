@@ -26,9 +26,14 @@ beforeAll(async () => {
 })
 
 const rows = () =>
-  Promise.all(
-    [Person, Station, StationKey, StationSettings, Deployment, DeploymentSensor].map((model) => model.count()),
-  )
+  Promise.all([
+    Person.count(),
+    Station.count(),
+    StationKey.count(),
+    StationSettings.count(),
+    Deployment.count(),
+    DeploymentSensor.count(),
+  ])
 
 describe('the demonstration', () => {
   test('killed between its files and its rows is made whole by the next start, with the same secrets', async () => {
