@@ -20,7 +20,8 @@ const gammas = [1, 1.6, 2.4, 3.3, 4.5, 6.5, 10]
 
 /**
  * Peak frequency by Whittle's likelihood of a JONSWAP shape over noise: Σ ν [ln s + d/s]. Steadier than the highest bin of a
- * 20-minute record, which wanders by several per cent. Looks within ±22 % of `near`.
+ * 20-minute record, which wanders by several per cent. Looks within
+ * ±22 % of `near`, at the frequencies of `range` alone.
  */
 export function fitPeak(
   frequency: ArrayLike<number>,
@@ -28,9 +29,10 @@ export function fitPeak(
   averages: ArrayLike<number>,
   noise: ArrayLike<number>,
   near: number,
+  range: { from: number; to: number } = { from: 0, to: Infinity },
 ): PeakFit {
-  const from = 0.6 * near
-  const to = 1.9 * near
+  const from = Math.max(0.6 * near, range.from)
+  const to = Math.min(1.9 * near, range.to)
   let best = { cost: Infinity, peak: near, gamma: 3.3, density: 0 }
   const costAt = (peak: number, gamma: number) => {
     const trial = costOf(frequency, density, averages, noise, peak, gamma, from, to)

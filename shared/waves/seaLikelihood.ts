@@ -24,11 +24,15 @@ export interface Evaluation {
   value: number
   /** ln L of the data alone. */
   dataValue: number
+  /** Each group's share of it. */
+  groupValue: Float64Array
   /** Gradient and information of the parameters after elimination of the densities. */
   gradient: Float64Array
   information: Float64Array
   /** Each group's own share of the gradient (data alone), groups × parameters: its scatter is the honest uncertainty. */
   groupGradient: Float64Array
+  /** Each group's own information of each parameter (diagonal), groups × parameters. */
+  groupInformation: Float64Array
   /** What `densityStep` needs. */
   densityInverse: Float64Array
   densityGradient: Float64Array
@@ -64,17 +68,21 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
   const wave = Array.from({ length: systems }, () => ({ k: 0, dkByCurrent: 0, dkByLogDepth: 0 }))
   const aperture = Math.max(...Array.from(x, (xi, i) => 2 * Math.hypot(xi, y[i])))
   const topFrequency = groups > 0 ? bands.frequency[groups - 1] : 0
-  // Global index and factor of each local change, filled per group (wave number feeds current and depth).
-  const toGlobal = new Float64Array(locals * count)
+  // Which local change each parameter acts through (current and depth both through the wave number), and by how much.
+  const linkLocal = Int32Array.from({ length: count }, (_, a) => localOf(a, systems))
+  const linkFactor = new Float64Array(count).fill(1)
+  const block = new Float64Array(count * count)
 
   function evaluate(state: SeaState): Evaluation {
     const p = state.parameters
     const evaluation: Evaluation = {
       value: 0,
       dataValue: 0,
+      groupValue: new Float64Array(groups),
       gradient: new Float64Array(count),
       information: new Float64Array(count * count),
       groupGradient: new Float64Array(groups * count),
+      groupInformation: new Float64Array(groups * count),
       densityInverse: new Float64Array(groups * systems * systems),
       densityGradient: new Float64Array(groups * systems),
       densityCross: new Float64Array(groups * systems * count),
@@ -96,7 +104,6 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
       const nu = bands.averages[g]
       r.real.fill(0)
       r.imag.fill(0)
-      toGlobal.fill(0)
       for (let j = 0; j < systems; j++) {
         const base = j * parametersPerSystem
         dopplerWaveNumber(omega, Math.exp(p[base + depthAt]), p[base + currentAt], model.gravity, wave[j])
@@ -111,10 +118,8 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
           r.real[n] += change[j].real[n]
           r.imag[n] += change[j].imag[n]
         }
-        toGlobal[local * count + base + directionAt] = 1
-        toGlobal[(local + 1) * count + base + currentAt] = wave[j].dkByCurrent
-        toGlobal[(local + 1) * count + base + depthAt] = wave[j].dkByLogDepth
-        toGlobal[(local + 2) * count + base + spreadAt] = 1
+        linkFactor[base + currentAt] = wave[j].dkByCurrent
+        linkFactor[base + depthAt] = wave[j].dkByLogDepth
       }
       const noiseLocal = systems * 4
       change[noiseLocal].real.fill(0)
@@ -124,7 +129,6 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
         r.real[i * m + i] += own
         change[noiseLocal].real[i * m + i] = own
       }
-      toGlobal[noiseLocal * count + noiseAt] = 1
       for (let n = 0; n < mm; n++) {
         c.real[n] = bands.real[g * mm + n]
         c.imag[n] = bands.imag[g * mm + n]
@@ -134,7 +138,6 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
         const rate = fault.kind === 'clock' ? omega : -wave[0].k
         unturn(c, fault.sensor, rate * p[noiseAt + 1 + f])
         turnRate(r, fault.sensor, rate, change[noiseLocal + 1 + f])
-        toGlobal[(noiseLocal + 1 + f) * count + noiseAt + 1 + f] = 1
       }
       const logDeterminant = invertHermitian(m, r.real, r.imag, w.real, w.imag, work)
       if (!(logDeterminant === logDeterminant)) {
@@ -145,7 +148,8 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
       multiply(m, w, c, product[0])
       let trace = 0
       for (let i = 0; i < m; i++) trace += product[0].real[i * m + i]
-      evaluation.dataValue -= nu * (logDeterminant + trace)
+      evaluation.groupValue[g] = -nu * (logDeterminant + trace)
+      evaluation.dataValue += evaluation.groupValue[g]
       multiply(m, product[0], w, e)
       for (let n = 0; n < mm; n++) {
         e.real[n] -= w.real[n]
@@ -194,21 +198,15 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
     }
     const inverse = invertSmall(systems, inner)
     evaluation.densityInverse.set(inverse, g * systems * systems)
+    // One link leads from a local change to a parameter, so links and parameters are numbered alike.
+    const own = g * count
     for (let a = 0; a < count; a++) {
-      for (let local = systems; local < locals; local++) {
-        const factor = toGlobal[local * count + a]
-        if (factor === 0) continue
-        evaluation.groupGradient[g * count + a] += factor * score[local]
-        for (let j = 0; j < systems; j++)
-          evaluation.densityCross[(g * systems + j) * count + a] += factor * fisher[local * locals + j]
-        for (let b = 0; b < count; b++) {
-          for (let other = systems; other < locals; other++) {
-            const factorB = toGlobal[other * count + b]
-            if (factorB !== 0)
-              evaluation.information[a * count + b] += factor * factorB * fisher[local * locals + other]
-          }
-        }
-      }
+      const factor = linkFactor[a]
+      const row = linkLocal[a] * locals
+      evaluation.groupGradient[own + a] += factor * score[linkLocal[a]]
+      for (let j = 0; j < systems; j++)
+        evaluation.densityCross[(g * systems + j) * count + a] = factor * fisher[row + j]
+      for (let b = 0; b <= a; b++) block[a * count + b] = factor * linkFactor[b] * fisher[row + linkLocal[b]]
     }
     for (let i = 0; i < systems; i++) {
       for (let j = 0; j < systems; j++) {
@@ -217,11 +215,16 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
         const crossJ = (g * systems + j) * count
         for (let a = 0; a < count; a++) {
           const left = evaluation.densityCross[crossI + a] * weight
-          if (left === 0) continue
-          evaluation.groupGradient[g * count + a] -= left * innerGradient[g * systems + j]
-          for (let b = 0; b < count; b++)
-            evaluation.information[a * count + b] -= left * evaluation.densityCross[crossJ + b]
+          evaluation.groupGradient[own + a] -= left * innerGradient[g * systems + j]
+          for (let b = 0; b <= a; b++) block[a * count + b] -= left * evaluation.densityCross[crossJ + b]
         }
+      }
+    }
+    for (let a = 0; a < count; a++) {
+      evaluation.groupInformation[own + a] = block[a * count + a]
+      for (let b = 0; b <= a; b++) {
+        evaluation.information[a * count + b] += block[a * count + b]
+        if (b < a) evaluation.information[b * count + a] += block[a * count + b]
       }
     }
     for (let a = 0; a < count; a++) evaluation.gradient[a] += evaluation.groupGradient[g * count + a]
@@ -243,6 +246,13 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
   }
 
   return { evaluate, densityStep }
+}
+
+/** S_j come first; then direction, wave number and spread of each system; then noise and faults, as in the parameters. */
+function localOf(parameter: number, systems: number): number {
+  const system = Math.floor(parameter / parametersPerSystem)
+  if (system >= systems) return systems * 4 + parameter - systems * parametersPerSystem
+  return systems + 3 * system + [0, 1, 1, 2][parameter % parametersPerSystem]
 }
 
 function scaled(matrix: ComplexMatrix, factor: number, out: ComplexMatrix): void {

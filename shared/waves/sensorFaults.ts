@@ -50,7 +50,7 @@ export function suspicions(fit: SeaFit): SensorSuspicion[] {
   const parameters = new Float64Array(count)
   parameters.set(fit.state.parameters)
   const evaluation = seaLikelihood(widened).evaluate({ parameters, logDensity: fit.state.logDensity })
-  const { information, gradient, groupGradient } = evaluation
+  const { information, gradient } = evaluation
   return Array.from({ length: sensors }, (_, sensor) => {
     const at = own + sensor
     const cross = information.slice(at * count, at * count + own)
@@ -62,14 +62,8 @@ export function suspicions(fit: SeaFit): SensorSuspicion[] {
       effective -= weights[a] * cross[a]
       score -= weights[a] * gradient[a]
     }
-    let scatter = 0
-    for (let g = 0; g < model.bands.groups; g++) {
-      let share = groupGradient[g * count + at]
-      for (let a = 0; a < own; a++) share -= weights[a] * groupGradient[g * count + a]
-      scatter += share * share
-    }
     if (!(effective > 0)) return { offset: 0, sd: Infinity }
-    return { offset: score / effective, sd: Math.sqrt(Math.max(effective, scatter)) / effective }
+    return { offset: score / effective, sd: 1 / Math.sqrt(effective) }
   })
 }
 

@@ -7,8 +7,8 @@ import { fitPeak, jonswapShape } from './jonswap.ts'
 import type { PeakFit } from './jonswap.ts'
 import { fitSea, quick, thorough } from './seaFit.ts'
 import type { SeaFit } from './seaFit.ts'
-import type { SeaModel, SeaState } from './seaModel.ts'
-import { currentAt, depthAt, directionAt, parametersPerSystem, spreadAt } from './seaModel.ts'
+import type { SeaModel } from './seaModel.ts'
+import { currentAt, depthAt, directionAt, parameterCount, parametersPerSystem, spreadAt } from './seaModel.ts'
 import { spectralPeaks } from './spectralPeaks.ts'
 
 export interface FoundSystems {
@@ -37,37 +37,146 @@ export function findSystems(
   depth: number,
   gravity: number,
 ): FoundSystems | null {
+  const sea: SeaSetting = { bands, x, y, depth, gravity }
   const noise = noiseDensity(bands)
   const surface = bands.density.map((d, g) => d - noise[g])
-  const peaks = spectralPeaks(bands.frequency, bands.width, surface, bands.averages)
+  const ranges = spectralPeaks(bands.frequency, bands.width, surface, bands.averages)
     .filter((peak) => peak.share >= leastShare)
     .slice(0, mostSystems)
-    .map((peak) => fitPeak(bands.frequency, bands.density, bands.averages, noise, peak.frequency))
-  if (peaks.length === 0) return null
-  const starts = peaks.map((peak) => bestStart(bands, x, y, depth, gravity, peak.peak))
-  const lowest = Math.min(...peaks.map((p) => p.peak))
-  const highest = Math.max(...peaks.map((p) => p.peak))
-  const from = firstGroup(bands, bandBelow * lowest)
-  const to = Math.max(from + 4, firstGroup(bands, bandAbove * highest))
-  const part = selectGroups(bands, from, Math.min(to, bands.groups))
-  const model = seaModel(part, x, y, depth, gravity, peaks)
+  if (ranges.length === 0) return null
+  const peaks = ranges.map((range) =>
+    fitPeak(bands.frequency, bands.density, bands.averages, noise, range.frequency, range),
+  )
+  const starts = peaks.flatMap((peak) => bestStart(sea, peak.peak, 0.82 * peak.peak, 1.35 * peak.peak) ?? [])
+  if (starts.length < peaks.length) return null
+  const first = fitTogether(
+    sea,
+    peaks,
+    ranges,
+    starts.map((start) => start.parameters),
+  )
+  if (!first) return null
+  const split = peaks.length < mostSystems ? splitByHeading(sea, first) : null
+  return { ...(split ?? first), runnerUp: starts[0].runnerUp }
+}
+
+interface SeaSetting {
+  bands: BandMatrices
+  x: Float64Array
+  y: Float64Array
+  depth: number
+  gravity: number
+}
+
+interface Range {
+  from: number
+  to: number
+}
+
+type FittedTogether = Omit<FoundSystems, 'runnerUp'> & { ranges: Range[] }
+
+function fitTogether(
+  sea: SeaSetting,
+  peaks: readonly PeakFit[],
+  ranges: Range[],
+  starts: readonly Float64Array[],
+): FittedTogether | null {
+  const { bands, x, y, depth, gravity } = sea
+  const from = firstGroup(bands, bandBelow * Math.min(...peaks.map((p) => p.peak)))
+  const to = Math.min(
+    bands.groups,
+    Math.max(from + 4, firstGroup(bands, bandAbove * Math.max(...peaks.map((p) => p.peak)))),
+  )
+  const model = seaModel(selectGroups(bands, from, to), x, y, depth, gravity, peaks)
   const parameters = new Float64Array(model.systems * parametersPerSystem + 1)
-  starts.forEach((start, j) => {
-    if (start) parameters.set(start.fit.state.parameters.subarray(0, parametersPerSystem), j * parametersPerSystem)
-  })
-  if (starts.some((start) => !start)) return null
+  starts.forEach((start, j) => parameters.set(start.subarray(0, parametersPerSystem), j * parametersPerSystem))
   const fit = fitSea(model, { parameters, logDensity: startDensity(model) }, thorough)
   if (!fit) return null
-  const own = peaks.map((peak, j) => (peaks.length === 1 ? peak : ownPeak(fit, j, peak.peak)))
-  return { fit, from, to: from + part.groups, peaks: own, runnerUp: starts[0]?.runnerUp ?? null }
+  const own = peaks.map((peak, j) => (peaks.length === 1 ? peak : ownPeak(fit, j, peak.peak, ranges[j])))
+  return { fit, from, to, peaks: own, ranges }
+}
+
+/** Score of a turn of heading at a frequency, in standard deviations, from which a hidden second train is looked for. */
+const turningScore = 4.5
+/** ln L that a hidden train must gain, and the least difference of heading, rad. */
+const leastTrainGain = 15
+const leastTurn = 0.2
+
+/**
+ * A swell and a wind sea whose peaks run together in the spectrum still differ in heading: where the heading of a fitted train
+ * turns with frequency, the band is split there and both parts are fitted together.
+ */
+function splitByHeading(sea: SeaSetting, found: FittedTogether): FittedTogether | null {
+  const { fit, peaks, ranges } = found
+  const { bands } = fit.model
+  let best = { score: turningScore, system: -1, group: 0 }
+  peaks.forEach((_, j) => {
+    const turning = turnOfHeading(fit, j)
+    if (turning.score > best.score) best = { ...turning, system: j }
+  })
+  if (best.system < 0) return null
+  const border = bands.frequency[best.group]
+  const peak = peaks[best.system].peak
+  const low = { from: Math.min(0.6 * peak, 0.7 * border), to: border }
+  const high = { from: border, to: Math.min(ranges[best.system].to, 2.2 * border) }
+  const parts = [low, high]
+  const noise = noiseDensity(sea.bands)
+  const places = [Math.min(peak, 0.85 * border), Math.max(1.15 * border, peak)]
+  const parted = parts.map((range, n) =>
+    fitPeak(sea.bands.frequency, sea.bands.density, sea.bands.averages, noise, places[n], range),
+  )
+  const starts = parts.flatMap((range, n) => bestStart(sea, parted[n].peak, range.from, range.to) ?? [])
+  if (starts.length < 2) return null
+  const others = peaks.map((_, j) => j).filter((j) => j !== best.system)
+  const kept = others.map((j) => fit.state.parameters.slice(j * parametersPerSystem, (j + 1) * parametersPerSystem))
+  const joint = fitTogether(
+    sea,
+    [...others.map((j) => peaks[j]), ...parted],
+    [...others.map((j) => ranges[j]), ...parts],
+    [...kept, ...starts.map((start) => start.parameters)],
+  )
+  if (!joint) return null
+  const at = others.length * parametersPerSystem + directionAt
+  const turn = joint.fit.state.parameters[at] - joint.fit.state.parameters[at + parametersPerSystem]
+  const gain = likelihoodOn(joint, found) - fit.evaluation.dataValue
+  return gain > leastTrainGain && 2 * Math.abs(Math.sin(turn / 2)) > leastTurn ? joint : null
+}
+
+/** ln L of a fit over the groups that another fit looked at: only comparable where the groups are the same. */
+function likelihoodOn(joint: FittedTogether, other: FittedTogether): number {
+  let value = 0
+  for (let g = Math.max(joint.from, other.from); g < Math.min(joint.to, other.to); g++)
+    value += joint.fit.evaluation.groupValue[g - joint.from]
+  return value
+}
+
+/** Where the heading of a train turns most: |Σ scores below| over its standard deviation. */
+function turnOfHeading(fit: SeaFit, system: number): { score: number; group: number } {
+  const groups = fit.model.bands.groups
+  const count = parameterCount(fit.model)
+  const at = system * parametersPerSystem + directionAt
+  const { groupGradient, groupInformation } = fit.evaluation
+  let total = 0
+  for (let g = 0; g < groups; g++) total += groupInformation[g * count + at]
+  let sum = 0
+  let below = 0
+  let best = { score: 0, group: 0 }
+  for (let g = 0; g + 2 < groups; g++) {
+    sum += groupGradient[g * count + at]
+    below += groupInformation[g * count + at]
+    const variance = (below * (total - below)) / total
+    const score = variance > 0 ? Math.abs(sum) / Math.sqrt(variance) : 0
+    if (g >= 2 && score > best.score) best = { score, group: g + 1 }
+  }
+  return best
 }
 
 /** Peak of one train's own density, once the fit has told the trains apart. */
-function ownPeak(fit: SeaFit, system: number, near: number): PeakFit {
+function ownPeak(fit: SeaFit, system: number, near: number, range: { from: number; to: number }): PeakFit {
   const { bands } = fit.model
   const noise = noiseDensity(bands)
   const density = noise.map((n, g) => n + Math.exp(fit.state.logDensity[system * bands.groups + g]))
-  return fitPeak(bands.frequency, density, bands.averages, noise, near)
+  return fitPeak(bands.frequency, density, bands.averages, noise, near, range)
 }
 
 export function firstGroup(bands: BandMatrices, frequency: number): number {
@@ -124,22 +233,18 @@ export function startDensity(model: SeaModel): Float64Array {
 }
 
 interface Start {
-  fit: SeaFit
+  /** Direction, current, ln depth, ln spread. */
+  parameters: Float64Array
   runnerUp: FoundSystems['runnerUp']
 }
 
 /** Single-train fits of the band about one peak from the best beams; the likeliest wins. */
-function bestStart(
-  bands: BandMatrices,
-  x: Float64Array,
-  y: Float64Array,
-  depth: number,
-  gravity: number,
-  peak: number,
-): Start | null {
-  const from = firstGroup(bands, 0.82 * peak)
-  const to = Math.max(from + 3, firstGroup(bands, 1.35 * peak))
+function bestStart(sea: SeaSetting, peak: number, low: number, high: number): Start | null {
+  const { bands, x, y, depth, gravity } = sea
+  const from = firstGroup(bands, low)
+  const to = Math.max(from + 3, firstGroup(bands, high))
   const part = selectGroups(bands, from, Math.min(bands.groups, to))
+  if (part.groups < 2) return null
   const beams = beamSearch(part, x, y, depth, gravity)
   const model = seaModel(part, x, y, depth, gravity, [{ peak, gamma: 3.3, density: 1 }])
   const speed = phaseSpeed(1 / peak, depth, gravity)
@@ -147,35 +252,29 @@ function bestStart(
     .filter((beam) => beam.power > 0.5 * beams[0].power)
     .slice(0, 4)
     .flatMap((beam) => {
-      const parameters = Float64Array.of(0, 0, 0, 0, 0)
+      const parameters = new Float64Array(parametersPerSystem + 1)
       parameters[directionAt] = beam.direction
       parameters[currentAt] = Math.max(-1.5, Math.min(1.5, (beam.speedRatio - 1) * speed))
       parameters[depthAt] = Math.log(depth)
       parameters[spreadAt] = Math.log(0.25)
-      const state: SeaState = { parameters, logDensity: startDensity(model) }
-      const fit = fitSea(model, state, quick)
+      const fit = fitSea(model, { parameters, logDensity: startDensity(model) }, quick)
       return fit ? [{ fit, beam }] : []
     })
     .sort((a, b) => b.fit.evaluation.value - a.fit.evaluation.value)
   if (fits.length === 0) return null
   const best = fits[0]
-  const bestDirection = best.fit.state.parameters[directionAt]
-  const other = fits.slice(1).find((f) => {
-    const turn = Math.abs(f.fit.state.parameters[directionAt] - bestDirection) % (2 * Math.PI)
-    const angle = Math.min(turn, 2 * Math.PI - turn)
+  const found = best.fit.state.parameters
+  const other = fits.slice(1).find(({ fit }) => {
+    const turn = fit.state.parameters[directionAt] - found[directionAt]
     return (
-      angle > 0.1 || Math.abs(f.fit.state.parameters[currentAt] - best.fit.state.parameters[currentAt]) > 0.05 * speed
+      Math.abs(Math.sin(turn / 2)) > 0.05 || Math.abs(fit.state.parameters[currentAt] - found[currentAt]) > 0.05 * speed
     )
   })
-  return {
-    fit: best.fit,
-    runnerUp: other
-      ? {
-          direction: other.fit.state.parameters[directionAt],
-          speedRatio: other.beam.speedRatio,
-          ratio: Math.min(1, other.beam.power / best.beam.power),
-          likelihoodLoss: best.fit.evaluation.value - other.fit.evaluation.value,
-        }
-      : null,
+  const runnerUp = other && {
+    direction: other.fit.state.parameters[directionAt],
+    speedRatio: other.beam.speedRatio,
+    ratio: Math.min(1, other.beam.power / best.beam.power),
+    likelihoodLoss: best.fit.evaluation.value - other.fit.evaluation.value,
   }
+  return { parameters: found, runnerUp: runnerUp ?? null }
 }
