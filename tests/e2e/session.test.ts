@@ -41,10 +41,7 @@ test('after signing out the session is over for the browser and for its cookie',
   await signIn(visitor, 'operator')
   expect(await sessionStatus()).toBe(200)
   const cookies = await context.cookies()
-  await page
-    .getByRole('button', { name: /▾|account/i })
-    .first()
-    .click()
+  await page.locator('button[aria-haspopup=dialog]').first().click()
   await page.getByRole('button', { name: 'Sign out' }).click()
   await page.waitForURL(/\/sign-in/)
   await context.addCookies(cookies)
