@@ -3,10 +3,11 @@
  * year of estimates that were invented and say so. The ordinary job computes what the readings give.
  */
 import { setTimeout as pause } from 'node:timers/promises'
+import { dateUtc } from '../../shared/times.ts'
 import type { Parts } from '../config/parts.ts'
 import { LongJob } from '../models/index.ts'
-import { insertInvented } from './demonstrationPast/insertInvented.ts'
-import { readPast, readSeaStates, readStretches, rowsOf } from './demonstrationPast/manifest.ts'
+import { insertInvented, rowsAtOnce } from './demonstrationPast/insertInvented.ts'
+import { readPast, readStretches, rowsOf, seaStateBatches } from './demonstrationPast/manifest.ts'
 import type { Past } from './demonstrationPast/manifest.ts'
 import { forgetMarks, markTakenIn, takenInFrom } from './demonstrationPast/marks.ts'
 import { readTimelines } from './estimates.ts'
@@ -24,7 +25,7 @@ const stretchMs = 2 * 3_600_000
 /** What of the whole the readings are, in the progress that is shown. */
 const readingsShare = 0.4
 /** The live path gets its turn between days that are packed. */
-const pauseMilliseconds = 10
+const pauseMilliseconds = 5
 
 /** Done, or called off by a person. */
 export async function isTakenIn({ hash }: Past): Promise<boolean> {
@@ -127,16 +128,15 @@ async function invent(parts: Parts, past: Past, stations: PastStation[], report:
   const madeAt = Date.parse(past.manifest.madeAt)
   for (const [index, { timeline, file, readingsFrom }] of work.entries()) {
     if (isHalted()) return
-    const from = await takenInFrom(parts, 'seaStates', timeline.id)
-    const states = (await readSeaStates(past, file)).filter(({ at }) => Date.parse(at) < from)
-    const [oldest, newest] = [states[0], states.at(-1)]
-    if (!oldest || !newest) continue
-    const order = { timeline, states, madeAt, hash: past.hash }
-    if (!(await insertInvented(parts, order, isHalted))) return
-    await packDays(parts, timeline.id, oldest.at, newest.at < readingsFrom ? newest.at : readingsFrom)
-    await markTakenIn(parts, 'seaStates', timeline.id, Date.parse(oldest.at))
+    const before = await takenInFrom(parts, 'seaStates', timeline.id)
+    const batches = seaStateBatches(past, file, rowsAtOnce)
+    const span = await insertInvented(parts, { timeline, batches, before, madeAt, hash: past.hash }, isHalted)
+    if (span === 'halted') return
+    if (!span) continue
+    await packDays(parts, timeline.id, span.oldest, Math.min(span.newest, Date.parse(readingsFrom)))
+    await markTakenIn(parts, 'seaStates', timeline.id, span.oldest)
     const progress = readingsShare + ((1 - readingsShare) * (index + 1)) / work.length
-    await report(progress, `estimates of ${timeline.code} back to ${oldest.at.slice(0, 10)}`)
+    await report(progress, `estimates of ${timeline.code} back to ${dateUtc(span.oldest)}`)
   }
 }
 
@@ -146,8 +146,8 @@ async function claimDays(parts: Parts, stationId: number, firstOther: string): P
   if (unpacked === null || unpacked < firstOther) await notePacked(parts, stationId, firstOther)
 }
 
-async function packDays(parts: Parts, stationId: number, oldest: string, newest: string): Promise<void> {
-  for (let time = Date.parse(oldest); dayOf(time) <= dayOf(Date.parse(newest)); time += dayMs) {
+async function packDays(parts: Parts, stationId: number, oldest: number, newest: number): Promise<void> {
+  for (let time = oldest; dayOf(time) <= dayOf(newest); time += dayMs) {
     await rebuildSeriesDay(parts, stationId, dayOf(time))
     await pause(pauseMilliseconds)
   }
