@@ -14,8 +14,8 @@ export interface DatabaseOptions {
 }
 
 /** Opens nothing yet: the pool connects at the first query, and again by itself after the database was lost. */
-export function createDatabase({ url, poolSize = 10, onStatement }: DatabaseOptions): Sequelize {
-  const sequelize = new Sequelize(url, {
+export function connectDatabase({ url, poolSize = 10, onStatement }: DatabaseOptions): Sequelize {
+  return new Sequelize(url, {
     dialect: 'mariadb',
     timezone: '+00:00',
     benchmark: true,
@@ -31,6 +31,11 @@ export function createDatabase({ url, poolSize = 10, onStatement }: DatabaseOpti
       ],
     },
   })
+}
+
+/** The database that the models work on: one for the whole process, the latest one made. */
+export function createDatabase(options: DatabaseOptions): Sequelize {
+  const sequelize = connectDatabase(options)
   defineModels(sequelize)
   return sequelize
 }

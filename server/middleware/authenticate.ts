@@ -4,6 +4,9 @@ import type { Parts } from '../config/parts.ts'
 import { sessionCookieName } from '../config/sessionCookie.ts'
 import { identify } from '../services/sessions.ts'
 import type { Caller } from '../services/sessions.ts'
+import { withDeadline } from './deadline.ts'
+
+const patienceMilliseconds = 4_000
 
 declare module 'express-serve-static-core' {
   interface Request {
@@ -16,6 +19,7 @@ export const authenticate =
   (parts: Parts): RequestHandler =>
   async (request, _response, next) => {
     const token: unknown = request.cookies?.[sessionCookieName(parts.environment)]
-    request.visitor = typeof token === 'string' ? await identify(parts, token) : null
+    request.visitor =
+      typeof token === 'string' ? await withDeadline(identify(parts, token), patienceMilliseconds) : null
     next()
   }

@@ -1,15 +1,20 @@
 import { randomBytes } from 'node:crypto'
+import { readdir } from 'node:fs/promises'
 import { beforeAll, describe, expect, test } from 'vitest'
 import type { Sequelize } from 'sequelize'
-import { migrate, pendingMigrations } from '../../server/config/database.ts'
+import { connectDatabase, migrate, pendingMigrations } from '../../server/config/database.ts'
+import { up as makePeopleTables } from '../../server/migrations/20261201T0900-people.ts'
 import * as models from '../../server/models/index.ts'
 import { execute, select } from '../../server/models/sql.ts'
-import { freshDatabase } from '../support/database.ts'
+import { createSchema, freshDatabase } from '../support/database.ts'
 
 let sequelize: Sequelize
 beforeAll(async () => {
   ;({ sequelize } = await freshDatabase())
 })
+
+const migrationNames = async () =>
+  (await readdir(new URL('../../server/migrations/', import.meta.url))).filter((name) => name.endsWith('.ts'))
 
 const at = new Date('2026-03-29T01:30:00.123Z')
 
@@ -17,6 +22,14 @@ describe('the schema', () => {
   test('migrating a migrated schema does nothing', async () => {
     expect(await pendingMigrations(sequelize)).toEqual([])
     expect(await migrate(sequelize)).toEqual([])
+  })
+
+  test('half made when a migration was stopped is completed by the next start', async () => {
+    const half = connectDatabase({ url: await createSchema() })
+    await makePeopleTables(half)
+    await expect(migrate(half)).resolves.toHaveLength((await migrationNames()).length)
+    expect(await pendingMigrations(half)).toEqual([])
+    await half.close()
   })
 
   test('every model names the columns its table has, and no other', async () => {

@@ -6,7 +6,7 @@ import { fileURLToPath } from 'node:url'
 import request from 'supertest'
 import { afterEach, beforeAll, describe, expect, inject, test } from 'vitest'
 import { systemClock } from '../../server/config/clock.ts'
-import { createDatabase } from '../../server/config/database.ts'
+import { connectDatabase } from '../../server/config/database.ts'
 import { readEnvironment } from '../../server/config/environment.ts'
 import { createLogger } from '../../server/config/logger.ts'
 import { execute } from '../../server/models/sql.ts'
@@ -93,7 +93,7 @@ describe('the server', () => {
 
   test('leaves a database alone that holds something else', async () => {
     const other = await createSchema()
-    const database = createDatabase({ url: other })
+    const database = connectDatabase({ url: other })
     stops.push(() => database.close())
     await execute(database, 'CREATE TABLE ships (id INT)')
     await expect(start({ DATABASE_URL: other })).rejects.toThrow('already holds other tables (ships)')

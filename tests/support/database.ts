@@ -2,7 +2,7 @@
 import { randomBytes } from 'node:crypto'
 import type { Sequelize } from 'sequelize'
 import { afterAll, inject } from 'vitest'
-import { createDatabase, migrate } from '../../server/config/database.ts'
+import { connectDatabase, createDatabase, migrate } from '../../server/config/database.ts'
 import { execute } from '../../server/models/sql.ts'
 
 export interface TestDatabase {
@@ -14,7 +14,7 @@ export interface TestDatabase {
 export async function createSchema(): Promise<string> {
   const server = inject('databaseServerUrl')
   const name = `offing_${randomBytes(6).toString('hex')}`
-  const outside = createDatabase({ url: server, poolSize: 1 })
+  const outside = connectDatabase({ url: server, poolSize: 1 })
   await execute(outside, `CREATE DATABASE \`${name}\``)
   await outside.close()
   return `${server}${name}`
