@@ -154,6 +154,13 @@ export async function endSession(parts: Parts, sessionId: string, reason: 'signe
   if (ended) parts.bus.publish('session.ended', { sessionId })
 }
 
+/** Sessions that nobody used for so long are of no more use to anybody. */
+const keptMilliseconds = 90 * 24 * 3600_000
+
+export function forgetOldSessions({ clock }: Pick<Parts, 'clock'>): Promise<number> {
+  return Session.destroy({ where: { lastSeenAt: { [Op.lt]: new Date(clock.now().getTime() - keptMilliseconds) } } })
+}
+
 export function presentSession(parts: Parts, { person, readOnly, absoluteUntil }: Caller): SessionView {
   return {
     person,
