@@ -4,66 +4,73 @@ import type { PastSeaState } from '../../../shared/demonstration/past.ts'
 import type { Parts } from '../../config/parts.ts'
 import { softwareVersion } from '../../config/softwareVersion.ts'
 import { execute } from '../../models/sql.ts'
-import type { SqlValue } from '../../models/sql.ts'
-import { estimateRow, inForce } from '../estimates.ts'
+import { inForce } from '../estimates.ts'
 import type { StationTimeline } from '../estimates.ts'
 import { inventEstimate } from './inventedEstimate.ts'
+import { columns, rowText, sharedText } from './inventedRow.ts'
 
-const rowsAtOnce = 400
+export const rowsAtOnce = 400
 /** The live path gets its turn for so long after each statement. */
-const pauseMilliseconds = 15
+const pauseMilliseconds = 10
 
 export interface Invention {
   timeline: StationTimeline
-  states: PastSeaState[]
-  /** ms since 1970 UTC. */
+  /** Rising in time. */
+  batches: AsyncIterable<PastSeaState[]>
+  /** What is as late or later stands already. ms since 1970 UTC, as all times here. */
+  before: number
   madeAt: number
   /** Of the manifest: stands where other estimates have the digest of their result. */
   hash: string
 }
 
-/** What stands already is left as it is, so that it may be done again. Stops early when asked to; answers whether it did all. */
-export async function insertInvented(parts: Parts, invention: Invention, isStopped: () => boolean): Promise<boolean> {
-  const { states } = invention
-  for (let n = 0; n < states.length; n += rowsAtOnce) {
-    if (isStopped()) return false
-    const rows = states.slice(n, n + rowsAtOnce).flatMap((state) => rowOf(invention, state) ?? [])
-    const [first] = rows
-    if (first) {
-      const columns = Object.keys(first)
-      await execute(parts.sequelize, `INSERT IGNORE INTO estimates (${columns.join(', ')}) VALUES :rows`, {
-        rows: rows.map((row) => Object.values(row).map(asSql)),
-      })
-    }
+/**
+ * What stands already is left as it is, so that it may be done again. Answers the span that was inserted, null for
+ * nothing; stops early, with an answer of `halted`, when asked to.
+ */
+export async function insertInvented(
+  parts: Parts,
+  invention: Invention,
+  isStopped: () => boolean,
+): Promise<{ oldest: number; newest: number } | 'halted' | null> {
+  const span = { oldest: Infinity, newest: -Infinity }
+  for await (const batch of invention.batches) {
+    if (isStopped()) return 'halted'
+    const states = batch.filter(({ at }) => Date.parse(at) < invention.before)
+    const [oldest, newest] = [states[0], states.at(-1)]
+    if (!oldest || !newest) continue
+    await insert(parts, invention, states)
+    span.oldest = Math.min(span.oldest, Date.parse(oldest.at))
+    span.newest = Date.parse(newest.at)
     await pause(pauseMilliseconds)
   }
-  return true
+  return Number.isFinite(span.oldest) ? span : null
 }
 
-/** Null before the station had an array or settings. */
-function rowOf({ timeline, madeAt, hash }: Invention, state: PastSeaState) {
-  const windowEndsAt = Date.parse(state.at)
-  const settings = inForce(timeline.settings, windowEndsAt)
-  const deployment = inForce(timeline.deployments, windowEndsAt)
-  if (!settings || !deployment) return null
-  const sensorsDeployed = deployment.sensors.length
-  const row = estimateRow(inventEstimate(timeline.code, state), {
-    stationId: timeline.id,
-    windowStartsAt: windowEndsAt - settings.content.windowSeconds * 1000,
-    windowEndsAt,
-    surgeStartsAt: null,
-    computedAt: madeAt,
-    origin: 'demonstration',
-    deploymentId: deployment.id,
-    sensorsDeployed,
-    settingsId: settings.id,
-    softwareVersion,
-    inputCommitId: null,
-    resultDigest: hash,
-  })
-  return { ...row, revision: 1, sensorsUsed: sensorsDeployed }
+/** What stands before the station had an array or settings is left out. */
+async function insert({ sequelize }: Parts, invention: Invention, states: PastSeaState[]): Promise<void> {
+  const { timeline, madeAt, hash } = invention
+  const escape = (text: string) => sequelize.escape(text)
+  const rows: string[] = []
+  for (const state of states) {
+    const windowEndsAt = Date.parse(state.at)
+    const settings = inForce(timeline.settings, windowEndsAt)
+    const deployment = inForce(timeline.deployments, windowEndsAt)
+    if (!settings || !deployment) continue
+    const shared = sharedText(
+      {
+        stationId: timeline.id,
+        computedAt: madeAt,
+        deploymentId: deployment.id,
+        settingsId: settings.id,
+        softwareVersion,
+        resultDigest: hash,
+        sensorsDeployed: deployment.sensors.length,
+      },
+      escape,
+    )
+    const figures = inventEstimate(timeline.code, state)
+    rows.push(rowText(shared, windowEndsAt, settings.content.windowSeconds, figures, escape))
+  }
+  if (rows.length > 0) await execute(sequelize, `INSERT IGNORE INTO estimates (${columns}) VALUES ${rows.join(',')}`)
 }
-
-/** Times as text: turning a quarter of a million dates into text is cheap here and dear in the driver. */
-const asSql = (value: string | number | boolean | Date | null): SqlValue =>
-  value instanceof Date ? value.toISOString().slice(0, 23).replace('T', ' ') : value

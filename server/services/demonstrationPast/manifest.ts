@@ -28,10 +28,13 @@ export async function readPast(folder: string): Promise<Past | null> {
   return { folder, manifest: pastManifest.parse(JSON.parse(text)), hash }
 }
 
-const seaStates = z.array(pastSeaState)
-
-export const readSeaStates = async ({ folder }: Past, file: string): Promise<PastSeaState[]> =>
-  seaStates.parse(JSON.parse(await readFile(join(folder, file), 'utf8')))
+/** The sea states of a file, so many at once, rising in time: checked when their turn comes, so that nothing waits long. */
+export async function* seaStateBatches({ folder }: Past, file: string, atOnce: number): AsyncGenerator<PastSeaState[]> {
+  const states = z.array(z.unknown()).parse(JSON.parse(await readFile(join(folder, file), 'utf8')))
+  for (let n = 0; n < states.length; n += atOnce) {
+    yield states.slice(n, n + atOnce).map((state) => pastSeaState.parse(state))
+  }
+}
 
 export interface Stretch {
   /** ms since 1970 UTC. */
