@@ -4,6 +4,7 @@ import type { Parts, RunningPart } from './config/parts.ts'
 import { startCompactReadings } from './jobs/compactReadings.ts'
 import { startComputeEstimates } from './jobs/computeEstimates.ts'
 import { startDemonstrationPast } from './jobs/demonstrationPast.ts'
+import { startForgetSessions } from './jobs/forgetSessions.ts'
 import { startKeepSeriesDays } from './jobs/keepSeriesDays.ts'
 import { startRetention } from './jobs/retention.ts'
 import { startSealAudits } from './jobs/sealAudits.ts'
@@ -24,6 +25,7 @@ export async function startRunningParts(parts: Parts, server: Server): Promise<S
   try {
     started.push(await startRetention(parts))
     started.push(await startSealAudits(parts))
+    started.push(await startForgetSessions(parts))
     // First, for it knows how far each station's readings reach.
     const telemetry = await startTelemetry({ ...parts, upgrades })
     started.push(telemetry)

@@ -1,6 +1,7 @@
 /** One JSON line an event. Secrets never reach it: what carries them is cut out by name. */
 import pino from 'pino'
 import type { DestinationStream, Logger } from 'pino'
+import { loggedError } from './loggedError.ts'
 
 export type { Logger }
 
@@ -20,7 +21,7 @@ export function createLogger(level: string, destination?: DestinationStream): Lo
     timestamp: pino.stdTimeFunctions.isoTime,
     formatters: { level: (label: string) => ({ level: label }) },
     redact: { paths: redactedPaths, censor: '[cut out]' },
-    serializers: { error: pino.stdSerializers.err, err: pino.stdSerializers.err },
+    serializers: { error: loggedError, err: loggedError },
   }
   return destination ? pino(options, destination) : pino(options)
 }

@@ -50,7 +50,13 @@ export const hasAdministrator = async (): Promise<boolean> =>
 
 /** What anybody may know before signing in. */
 export async function presentInstallation({ clock, environment }: Parts): Promise<InstallationView> {
-  const port = await SettingVersion.findOne({ where: { groupName: 'port' }, order: [['id', 'DESC']] })
+  const port = await SettingVersion.findOne({
+    where: { groupName: 'port', validFrom: { [Op.lte]: clock.now() } },
+    order: [
+      ['validFrom', 'DESC'],
+      ['id', 'DESC'],
+    ],
+  })
   const { portName, timeZone } = port?.content ?? {}
   return {
     kind: environment.installationKind,
