@@ -7,16 +7,20 @@ const pollMilliseconds = 100
 
 const pause = (milliseconds: number): Promise<void> => new Promise((resolve) => setTimeout(resolve, milliseconds))
 
-async function answersWithPage(address: string): Promise<boolean> {
+async function answers(address: string, contentType: string): Promise<boolean> {
   try {
-    const answer = await fetch(`${address}/`, { headers: { accept: 'text/html' }, signal: AbortSignal.timeout(2_000) })
-    const isPage = answer.ok && (answer.headers.get('content-type') ?? '').startsWith('text/html')
+    const answer = await fetch(address, { headers: { accept: contentType }, signal: AbortSignal.timeout(2_000) })
+    const fits = answer.ok && (answer.headers.get('content-type') ?? '').startsWith(contentType)
     await answer.body?.cancel()
-    return isPage
+    return fits
   } catch {
     return false
   }
 }
+
+/** A page that is served while the server cannot work yet is no live page. */
+const isLive = async (address: string): Promise<boolean> =>
+  (await answers(`${address}/`, 'text/html')) && (await answers(`${address}/readyz`, 'application/json'))
 
 /** The sentences of a log: lines that are not JSON, and the messages of those that report a fatal fault. */
 export function sentencesOf(log: string): string {
@@ -40,7 +44,7 @@ export async function earlyEnd(server: Supervised): Promise<never> {
 
 export async function untilPageAnswers(address: string): Promise<void> {
   const until = performance.now() + patienceMilliseconds
-  while (!(await answersWithPage(address))) {
+  while (!(await isLive(address))) {
     if (performance.now() > until)
       throw new PlainFailure(`No page at ${address} after ${patienceMilliseconds / 1000} s.`)
     await pause(pollMilliseconds)
