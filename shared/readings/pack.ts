@@ -40,7 +40,7 @@ export function unpackSamples(bytes: Uint8Array): SampleSpan {
   const letters = Array.from({ length: sensors }, () => reader.text())
   const series = letters.map(() => new Float64Array(length))
   unpackMissing(reader, series)
-  for (const values of series) unpackDifferences(reader, values)
+  for (const values of series) reader.running(values)
   if (!reader.atEnd) throw new RangeError('packed readings are followed by something else')
   return { sampleRate, firstSlot, letters, series }
 }
@@ -84,14 +84,5 @@ function packDifferences(writer: ByteWriter, values: Float64Array): void {
     if (Number.isNaN(value)) continue
     writer.signed(value - before)
     before = value
-  }
-}
-
-function unpackDifferences(reader: ByteReader, values: Float64Array): void {
-  let before = 0
-  for (let n = 0; n < values.length; n++) {
-    if (Number.isNaN(values[n])) continue
-    before += reader.signed()
-    values[n] = before
   }
 }

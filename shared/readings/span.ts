@@ -22,12 +22,21 @@ export const toStored = (value: number | null): number =>
 /** Whole ten-thousandths to metres or decibars. */
 export const fromStored = (stored: number): number => stored / unitsPerStoredUnit
 
+/** A series of whole ten-thousandths in metres or decibars. */
+export function seriesFromStored(stored: Float64Array): Float64Array {
+  const values = new Float64Array(stored.length)
+  for (let n = 0; n < stored.length; n++) values[n] = (stored[n] ?? NaN) / unitsPerStoredUnit
+  return values
+}
+
 export const lengthOf = (span: SampleSpan): number => span.series[0]?.length ?? 0
 
 /** Samples that are there, over all sensors. */
 export function countPresent(span: SampleSpan): number {
   let count = 0
-  for (const series of span.series) for (const value of series) if (value === value) count++
+  for (const series of span.series) {
+    for (let n = 0; n < series.length; n++) if (series[n] === series[n]) count++
+  }
   return count
 }
 

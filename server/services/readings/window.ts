@@ -1,7 +1,7 @@
 /** Stored readings of a span of time, joined from hot frames and packed minutes. */
 import type { Transaction } from 'sequelize'
 import { firstSlotFrom, timeOfSlot } from '../../../shared/readings/slots.ts'
-import { countPresent, emptySpan, fillFrom, fromStored } from '../../../shared/readings/span.ts'
+import { countPresent, emptySpan, fillFrom, seriesFromStored } from '../../../shared/readings/span.ts'
 import type { SampleSpan } from '../../../shared/readings/span.ts'
 import { select } from '../../models/sql.ts'
 import { database } from './database.ts'
@@ -124,7 +124,7 @@ export async function readWindow(
     sampleRate: window.sampleRate,
     startMs: timeOfSlot(window.firstSlot, window.sampleRate),
     letters: window.letters,
-    series: window.series.map((series) => series.map(fromStored)),
+    series: window.series.map(seriesFromStored),
     sampleCount: countPresent(window),
     newestCommitId: parts.length === 0 ? null : Math.max(...parts.map(({ lastCommitId }) => lastCommitId)),
     sources: [...new Set(parts.map(({ source }) => source))],

@@ -1,0 +1,6 @@
+/** Measures what the program does in earnest. Run by `npm run bench`; the figures go to the screen. */
+import { benchStorage } from './storage.ts'
+
+for (const { what, value, unit } of await benchStorage()) {
+  process.stdout.write(`${what.padEnd(44)} ${Number(value.toPrecision(4)).toString().padStart(10)} ${unit}\n`)
+}
