@@ -33,7 +33,7 @@ export function trustGrounds(detail: EstimateResult): TrustGround[] {
   const grounds: TrustGround[] = []
   grounds.push({
     key: 'residual',
-    flag: judged(tests, /residual|misfit|closure/i),
+    flag: judged(tests, /closure/),
     words: 'Lag residual, rms',
     figure: seconds(detail.lagResidualRms, 2),
   })
@@ -41,7 +41,7 @@ export function trustGrounds(detail: EstimateResult): TrustGround[] {
     const off = Math.round((lead.speedRatio - 1) * 100)
     grounds.push({
       key: 'theory',
-      flag: judged(tests, /dispersion|theory|speed/i),
+      flag: judged(tests, /dispersion/),
       words: 'Corrected speed over linear theory',
       figure: `${decimals(lead.speedRatio, 2)}, ${off === 0 ? 'equal' : `${percent(Math.abs(off) / 100)} ${off > 0 ? 'above' : 'below'}`}`,
     })
@@ -50,7 +50,8 @@ export function trustGrounds(detail: EstimateResult): TrustGround[] {
   if (detail.runnerUp) {
     grounds.push({
       key: 'runnerUp',
-      flag: judged(tests, /ambig|alias|runner|cycle/i),
+      // A cycle that fits nearly as well is refused as ambiguous, so one that stands has been decided.
+      flag: detail.reason === 'ambiguous' ? 4 : 1,
       words: `Best other cycle: ${metresPerSecond(detail.runnerUp.speed)}, fit compared with this one`,
       figure: decimals(detail.runnerUp.ratio, 2),
     })
