@@ -13,6 +13,10 @@ export const requestLog = (logger: Logger): RequestHandler =>
     logger,
     genReqId: () => randomUUID(),
     quietReqLogger: true,
+    // Asked every few seconds by whatever watches over the process; what is amiss is in the log already.
+    autoLogging: { ignore: (request) => request.url === '/healthz' || request.url === '/readyz' },
+    // The error handler has logged the cause; what stands here would only be made up from the status.
+    customErrorObject: (_request, _response, _error, { err: _madeUp, ...line }: { err?: unknown }) => line,
     customLogLevel: (_request, response, error) =>
       error || response.statusCode >= 500 ? 'error' : response.statusCode >= 400 ? 'info' : 'debug',
     serializers: {

@@ -23,7 +23,7 @@ describe('every answer', () => {
       const { headers } = await request(app).get(path)
       expect(headers['content-security-policy']).toBe(
         "default-src 'self';script-src 'self';style-src 'self';style-src-attr 'none';img-src 'self' data:;" +
-          "font-src 'self';connect-src 'self' ws://127.0.0.1:8470 ws://localhost:8470 ws://[::1]:8470;" +
+          "font-src 'self';connect-src 'self' ws://127.0.0.1:8470 ws://localhost:8470;" +
           "object-src 'none';base-uri 'none';form-action 'self';frame-ancestors 'none'",
       )
       expect(headers).toMatchObject({
