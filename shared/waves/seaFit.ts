@@ -11,7 +11,7 @@ import {
   parameterCount,
   parametersPerSystem,
 } from './seaModel.ts'
-import { depthAt, directionAt, spreadAt } from './seaModel.ts'
+import { crossCurrentAt, depthAt, directionAt, spreadAt } from './seaModel.ts'
 import { invertSymmetric, times } from './symmetric.ts'
 
 export interface SeaFit {
@@ -41,6 +41,7 @@ largestStep[directionAt] = 0.25
 largestStep[currentAt] = 0.7
 largestStep[depthAt] = 0.25
 largestStep[spreadAt] = 0.6
+largestStep[crossCurrentAt] = 0.7
 const largestOtherStep = 1.5
 /** Strongest current that is believed, m/s. */
 const greatestCurrent = 3

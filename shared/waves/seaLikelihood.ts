@@ -7,6 +7,7 @@ import { dopplerWaveNumber } from './dopplerDispersion.ts'
 import { invertHermitian } from './hermitian.ts'
 import type { SeaModel, SeaState } from './seaModel.ts'
 import {
+  crossCurrentAt,
   currentAt,
   depthAt,
   directionAt,
@@ -53,7 +54,7 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
   const count = parameterCount(model)
   const noiseAt = noiseIndex(model)
   // Local directions of change in a group: S_j, then per system direction, wave number, spread, then noise and faults.
-  const locals = systems * 4 + 1 + model.faults.length
+  const locals = systems * 5 + 1 + model.faults.length
   const waves = Array.from({ length: systems }, () => waveMatrices(m))
   const nodes = Array.from({ length: systems }, makeSpreadingNodes)
   const r = complexMatrix(m)
@@ -72,6 +73,12 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
   const linkLocal = Int32Array.from({ length: count }, (_, a) => localOf(a, systems))
   const linkFactor = new Float64Array(count).fill(1)
   const block = new Float64Array(count * count)
+  // −k / C_g in still water of the depth expected: how a current across tilts the wave number (first order in U / C_g).
+  const bend = bands.frequency.map((f) => {
+    const wave = { k: 0, dkByCurrent: 0, dkByLogDepth: 0 }
+    dopplerWaveNumber(2 * Math.PI * f, Math.exp(model.priors[depthAt].mean), 0, model.gravity, wave)
+    return wave.dkByCurrent
+  })
 
   function evaluate(state: SeaState): Evaluation {
     const p = state.parameters
@@ -107,21 +114,24 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
       for (let j = 0; j < systems; j++) {
         const base = j * parametersPerSystem
         dopplerWaveNumber(omega, Math.exp(p[base + depthAt]), p[base + currentAt], model.gravity, wave[j])
-        fillWaveMatrices(x, y, p[base + directionAt], wave[j].k, nodes[j], waves[j])
+        const tilt = bend[g] * p[base + crossCurrentAt]
+        fillWaveMatrices(x, y, p[base + directionAt], wave[j].k, tilt, nodes[j], waves[j])
         const density = Math.exp(state.logDensity[j * groups + g])
-        const local = systems + 3 * j
+        const local = systems + 4 * j
         scaled(waves[j].gamma, density, change[j])
         scaled(waves[j].byDirection, density, change[local])
         scaled(waves[j].byWaveNumber, density, change[local + 1])
         scaled(waves[j].byLogSpread, density, change[local + 2])
+        scaled(waves[j].byTilt, density, change[local + 3])
         for (let n = 0; n < mm; n++) {
           r.real[n] += change[j].real[n]
           r.imag[n] += change[j].imag[n]
         }
         linkFactor[base + currentAt] = wave[j].dkByCurrent
         linkFactor[base + depthAt] = wave[j].dkByLogDepth
+        linkFactor[base + crossCurrentAt] = bend[g]
       }
-      const noiseLocal = systems * 4
+      const noiseLocal = systems * 5
       change[noiseLocal].real.fill(0)
       change[noiseLocal].imag.fill(0)
       for (let i = 0; i < m; i++) {
@@ -251,8 +261,8 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
 /** S_j come first; then direction, wave number and spread of each system; then noise and faults, as in the parameters. */
 function localOf(parameter: number, systems: number): number {
   const system = Math.floor(parameter / parametersPerSystem)
-  if (system >= systems) return systems * 4 + parameter - systems * parametersPerSystem
-  return systems + 3 * system + [0, 1, 1, 2][parameter % parametersPerSystem]
+  if (system >= systems) return systems * 5 + parameter - systems * parametersPerSystem
+  return systems + 4 * system + [0, 1, 1, 2, 3][parameter % parametersPerSystem]
 }
 
 function scaled(matrix: ComplexMatrix, factor: number, out: ComplexMatrix): void {

@@ -4,12 +4,16 @@
  */
 import type { BandMatrices } from './bandMatrices.ts'
 
-/** Parameters of one train, in this order in the vector: direction (rad), current (m/s), ln depth, ln spread (rad). */
-export const parametersPerSystem = 4
+/**
+ * Parameters of one train, in this order in the vector: direction (rad), current along it (m/s), ln depth, ln spread (rad), current
+ * across it to the left (m/s). A current across bends the wave numbers of a spread sea one way and would turn the heading.
+ */
+export const parametersPerSystem = 5
 export const directionAt = 0
 export const currentAt = 1
 export const depthAt = 2
 export const spreadAt = 3
+export const crossCurrentAt = 4
 
 /** Narrowest and widest spread that is fitted, rad (2° and 75°). */
 export const leastSpread = 0.035
@@ -41,7 +45,7 @@ export interface SeaModel {
   densityPrior: { mean: Float64Array; sd: number } | null
 }
 
-/** Values of the parameters: systems × 4, then ln N, then the faults; and ln S_jg at [j·groups + g]. */
+/** Values of the parameters: systems × 5, then ln N, then the faults; and ln S_jg at [j·groups + g]. */
 export interface SeaState {
   parameters: Float64Array
   logDensity: Float64Array

@@ -20,6 +20,8 @@ export interface WaveMatrices {
   byDirection: ComplexMatrix
   byWaveNumber: ComplexMatrix
   byLogSpread: ComplexMatrix
+  /** To the slope of the wave number with the sine of the offset from the mean direction. */
+  byTilt: ComplexMatrix
 }
 
 export const waveMatrices = (sensors: number): WaveMatrices => ({
@@ -27,6 +29,7 @@ export const waveMatrices = (sensors: number): WaveMatrices => ({
   byDirection: complexMatrix(sensors),
   byWaveNumber: complexMatrix(sensors),
   byLogSpread: complexMatrix(sensors),
+  byTilt: complexMatrix(sensors),
 })
 
 const maxSensors = 64
@@ -35,18 +38,22 @@ const steerImag = new Float64Array(maxSensors)
 const along = new Float64Array(maxSensors)
 const across = new Float64Array(maxSensors)
 
-/** Fills `out`. `x`, `y` in m, `direction` in radians of travel in the frame of x and y, `k` in rad/m. */
+/**
+ * Fills `out`. `x`, `y` in m, `direction` in radians of travel in the frame of x and y. The wave number at an offset δ is
+ * `k + tilt sin δ`, rad/m.
+ */
 export function fillWaveMatrices(
   x: Float64Array,
   y: Float64Array,
   direction: number,
   k: number,
+  tilt: number,
   nodes: SpreadingNodes,
   out: WaveMatrices,
 ): void {
   const m = x.length
-  const { gamma, byDirection, byWaveNumber, byLogSpread } = out
-  for (const matrix of [gamma, byDirection, byWaveNumber, byLogSpread]) {
+  const { gamma, byDirection, byWaveNumber, byLogSpread, byTilt } = out
+  for (const matrix of [gamma, byDirection, byWaveNumber, byLogSpread, byTilt]) {
     matrix.real.fill(0)
     matrix.imag.fill(0)
   }
@@ -55,13 +62,15 @@ export function fillWaveMatrices(
   for (let node = 0; node < nodes.count; node++) {
     const c = cosDirection * nodes.cos[node] - sinDirection * nodes.sin[node]
     const s = sinDirection * nodes.cos[node] + cosDirection * nodes.sin[node]
+    const kHere = k + tilt * nodes.sin[node]
+    const sine = nodes.sin[node]
     const weight = nodes.weight[node]
     const weightByLogSpread = nodes.weightByLogSpread[node]
     for (let i = 0; i < m; i++) {
       along[i] = x[i] * c + y[i] * s
       across[i] = y[i] * c - x[i] * s
-      steerReal[i] = Math.cos(k * along[i])
-      steerImag[i] = -Math.sin(k * along[i])
+      steerReal[i] = Math.cos(kHere * along[i])
+      steerImag[i] = -Math.sin(kHere * along[i])
     }
     for (let i = 1; i < m; i++) {
       const ir = steerReal[i]
@@ -72,12 +81,14 @@ export function fillWaveMatrices(
         const at = i * m + j
         gamma.real[at] += weight * er
         gamma.imag[at] += weight * ei
-        const turn = weight * k * (across[i] - across[j])
+        const turn = weight * kHere * (across[i] - across[j])
         byDirection.real[at] += turn * ei
         byDirection.imag[at] -= turn * er
         const stretch = weight * (along[i] - along[j])
         byWaveNumber.real[at] += stretch * ei
         byWaveNumber.imag[at] -= stretch * er
+        byTilt.real[at] += sine * stretch * ei
+        byTilt.imag[at] -= sine * stretch * er
         byLogSpread.real[at] += weightByLogSpread * er
         byLogSpread.imag[at] += weightByLogSpread * ei
       }
@@ -88,7 +99,7 @@ export function fillWaveMatrices(
     for (let j = 0; j < i; j++) {
       const at = i * m + j
       const mirrored = j * m + i
-      for (const matrix of [gamma, byDirection, byWaveNumber, byLogSpread]) {
+      for (const matrix of [gamma, byDirection, byWaveNumber, byLogSpread, byTilt]) {
         matrix.real[mirrored] = matrix.real[at]
         matrix.imag[mirrored] = -matrix.imag[at]
       }

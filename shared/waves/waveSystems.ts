@@ -28,6 +28,8 @@ const bandAbove = 1.9
 /** A system with a smaller share of the energy is left out. */
 const leastShare = 0.04
 const mostSystems = 3
+/** Usual current across the waves at a nearshore array, m/s: the record must speak clearly for more. */
+const usualCrossCurrent = 0.25
 
 /** Null when nothing stands above the noise. */
 export function findSystems(
@@ -199,6 +201,7 @@ export function seaModel(
     { mean: 0, sd: 1 },
     { mean: Math.log(depth), sd: 0.25 },
     { mean: Math.log(0.3), sd: 1 },
+    { mean: 0, sd: usualCrossCurrent },
   ])
   priors.push({ mean: 0, sd: 0.7 })
   let densityPrior = null
