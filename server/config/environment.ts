@@ -133,7 +133,7 @@ export function readEnvironment(source: Record<string, string | undefined>): Env
     trustProxy: value.TRUST_PROXY,
     smtpUrl: value.SMTP_URL ?? null,
     mailFrom: value.MAIL_FROM ?? null,
-    workers: value.WORKERS ?? Math.max(1, Math.min(4, availableParallelism() - 1)),
+    workers: value.WORKERS ?? Math.min(4, availableParallelism()),
     demonstrationPastFolder: value.DEMONSTRATION_PAST_DIR ? resolve(value.DEMONSTRATION_PAST_DIR) : null,
   }
 }

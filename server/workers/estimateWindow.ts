@@ -18,7 +18,7 @@ function answer({ window, windowEndsAt, clockOffset, known }: EstimateTask): Est
 }
 
 /** Linux keeps a priority for each thread: readings and pages go before estimates. Elsewhere it is the process's. */
-if (process.platform === 'linux') setPriority(0, 5)
+if (process.platform === 'linux') setPriority(0, 2)
 
 parentPort?.on('message', ({ id, task }: WorkerRequest) => {
   let reply: WorkerReply
