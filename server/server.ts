@@ -1,4 +1,5 @@
 /** Starts everything in order and ends it in the opposite one. */
+import { access, constants, mkdir } from 'node:fs/promises'
 import { createServer } from 'node:http'
 import type { AddressInfo } from 'node:net'
 import type { Sequelize } from 'sequelize'
@@ -55,6 +56,7 @@ export async function startServer({ environment, clock, logger, onFatal }: Start
     await lock?.release()
   })
   try {
+    await prepareDataFolder(environment)
     await listen(server, environment)
     lock = await patiently(logger, () => holdDatabase(environment, logger, onFatal))
     await patiently(logger, () => prepareDatabase(parts))
@@ -67,6 +69,15 @@ export async function startServer({ environment, clock, logger, onFatal }: Start
   const { port } = server.address() as AddressInfo
   logger.info({ host: environment.host, port, kind: environment.installationKind }, 'ready')
   return { port, stop }
+}
+
+async function prepareDataFolder({ dataFolder }: Environment): Promise<void> {
+  try {
+    await mkdir(dataFolder, { recursive: true, mode: 0o700 })
+    await access(dataFolder, constants.W_OK)
+  } catch {
+    throw new StartRefused(`The folder ${dataFolder} cannot be made or written: set DATA_DIR to one that can.`)
+  }
 }
 
 /** While the database does not answer, asks again: it may be starting too. */

@@ -5,6 +5,7 @@
 import bcrypt from 'bcryptjs'
 import { longestPasswordBytes, shortestPassword } from '../../shared/schemas/session.ts'
 import { commonWords } from './passwords/commonWords.ts'
+import { Refused } from './problems.ts'
 
 /** One code point is one character, however it was typed. */
 export const normalisedPassword = (password: string): string => password.normalize('NFC')
@@ -53,12 +54,26 @@ export function faultOfPassword(given: string, ownWords: string[] = []): string 
 
 /** bcryptjs computes on the main thread in slices: one at a time, so that many sign-ins do not starve the live feed. */
 let lastInLine: Promise<unknown> = Promise.resolve()
+let waiting = 0
+/** At the usual cost the last in line waits about ten seconds. */
+const longestLine = 32
 
 function inLine<Result>(work: () => Promise<Result>): Promise<Result> {
-  const turn = lastInLine.then(work, work)
+  if (waiting >= longestLine) return Promise.reject(tooManyAtOnce())
+  waiting += 1
+  const turn = lastInLine.then(work, work).finally(() => (waiting -= 1))
   lastInLine = turn.catch(() => undefined)
   return turn
 }
+
+const tooManyAtOnce = (): Refused =>
+  new Refused({
+    status: 503,
+    code: 'session.tooManyAtOnce',
+    title: 'Too many sign-ins at once',
+    detail: 'Try again in a few seconds.',
+    retryAfterSeconds: 5,
+  })
 
 export const hashPassword = (password: string, cost: number): Promise<string> =>
   inLine(() => bcrypt.hash(normalisedPassword(password), cost))

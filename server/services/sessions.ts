@@ -56,6 +56,9 @@ export async function signIn(
   const session = await inTransaction(parts.sequelize, (transaction) =>
     beginOrRenew(parts, person, from.visitor, transaction),
   )
+  if (from.visitor && from.visitor.sessionId !== session.id) {
+    await endSession(parts, from.visitor.sessionId, 'another person')
+  }
   parts.logger.info({ personId: person.id, address: from.address }, 'signed in')
   const { id: sessionId, tokenId } = session
   return {
@@ -137,8 +140,10 @@ function callerOf(parts: Parts, person: Person, session: Session): Caller {
   }
 }
 
+type EndReason = 'signed out' | 'idle' | 'another person'
+
 /** Ends it at once, on open sockets too. Ending an ended session changes nothing. */
-export async function endSession(parts: Parts, sessionId: string, reason: 'signed out' | 'idle'): Promise<void> {
+export async function endSession(parts: Parts, sessionId: string, reason: EndReason): Promise<void> {
   const ended = await inTransaction(parts.sequelize, async (transaction) => {
     const session = await Session.findByPk(sessionId, { lock: true, transaction })
     if (!session || session.endedAt) return false

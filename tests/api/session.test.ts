@@ -173,6 +173,14 @@ describe('a session', () => {
     expect(await Session.count({ where: { personId: fresh.id } })).toBe(1)
   })
 
+  test('is over when another person signs in at the same browser', async () => {
+    const [first, second] = [await makePerson(parts.clock), await makePerson(parts.clock)]
+    const browser = await signedIn(app, first.email)
+    await browser.post('/api/session').send({ email: second.email, password: usualPassword }).expect(200)
+    expect((await browser.get('/api/session')).body.person.id).toBe(second.id)
+    expect(await Session.count({ where: { personId: first.id, endedAt: null } })).toBe(0)
+  })
+
   test('ends after twelve hours without a request', async () => {
     const person = await makePerson(parts.clock)
     const browser = await signedIn(app, person.email)

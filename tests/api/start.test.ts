@@ -91,6 +91,11 @@ describe('the server', () => {
     expect(log.join()).not.toContain((await readFile(file, 'utf8')).trim())
   })
 
+  test('says in one sentence that its folder cannot be made', async () => {
+    const DATA_DIR = join(root, 'package.json', 'inside')
+    await expect(start({ DATA_DIR })).rejects.toThrow(`The folder ${DATA_DIR} cannot be made or written`)
+  })
+
   test('leaves a database alone that holds something else', async () => {
     const other = await createSchema()
     const database = connectDatabase({ url: other })

@@ -55,6 +55,12 @@ describe('a stored password', () => {
     expect(await passwordFits('zwolf Boote im Hafen', hash, 4)).toBe(false)
   })
 
+  test('is checked for so many at once and no more, and for others again afterwards', async () => {
+    const answers = await Promise.allSettled(Array.from({ length: 40 }, () => passwordFits('any', null, 4)))
+    expect(answers.filter(({ status }) => status === 'fulfilled')).toHaveLength(32)
+    expect(await passwordFits('any', null, 4)).toBe(false)
+  })
+
   test('of nobody never fits, though it is computed', async () => {
     expect(await passwordFits('the password of nobody', null, 4)).toBe(false)
   })
