@@ -47,12 +47,17 @@ export function pointOf(estimate: CurrentEstimate): SeriesPoint {
 
 export const seriesHours = 12
 
-/** Points rising in time, one for each time, none older than the ribbon. */
+/** Steps of the ribbon: windows overlap by nineteen parts of twenty, so that more points would show nothing more. */
+const seriesStepMs = 300_000
+
+/** Points rising in time, one for each step and the newest of all, none older than the ribbon. */
 export function withPoints(held: SeriesPoint[], arriving: SeriesPoint[]): SeriesPoint[] {
   const byTime = new Map<number, SeriesPoint>()
   for (const point of [...held, ...arriving]) byTime.set(Date.parse(point.at), point)
   const times = [...byTime.keys()].sort((a, b) => a - b)
   const newest = times.at(-1) ?? 0
   const oldest = newest - seriesHours * 3_600_000
-  return times.filter((at) => at >= oldest).flatMap((at) => byTime.get(at) ?? [])
+  return times
+    .filter((at) => at >= oldest && (at % seriesStepMs === 0 || at === newest))
+    .flatMap((at) => byTime.get(at) ?? [])
 }

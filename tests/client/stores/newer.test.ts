@@ -45,6 +45,12 @@ describe('the series of a station', () => {
     expect(points.map(({ height }) => height)).toEqual([2, 4, 5])
   })
 
+  it('keeps one point each five minutes, and the newest whenever it is', () => {
+    const at = (minute: number) => ({ ...pointOf(estimate()), at: `2026-11-12T14:${minute}:00.000Z` })
+    const points = withPoints([at(25), at(26), at(29)], [at(30), at(31), at(32)])
+    expect(points.map((point) => point.at.slice(14, 16))).toEqual(['25', '30', '32'])
+  })
+
   it('has no direction where an estimate has none', () => {
     const refused = estimate({ resolved: false, reason: 'no-resolvable-wave' })
     expect(pointOf(refused)).toMatchObject({ toward: null, height: null, speed: null, significantWaveHeight: 2.4 })
