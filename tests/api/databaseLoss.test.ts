@@ -2,9 +2,12 @@ import type { Express } from 'express'
 import request from 'supertest'
 import { afterAll, beforeAll, describe, expect, test } from 'vitest'
 import { createApp } from '../../server/app.ts'
+import { systemClock } from '../../server/config/clock.ts'
 import { connectDatabase, createDatabase, migrate } from '../../server/config/database.ts'
 import { lockDatabase } from '../../server/config/databaseLock.ts'
 import { execute } from '../../server/models/sql.ts'
+import { startServer } from '../../server/server.ts'
+import { freePort } from '../../server/setup/freePort.ts'
 import type { Browser } from '../support/browser.ts'
 import { signedIn } from '../support/browser.ts'
 import { makePerson } from '../support/factories.ts'
@@ -75,5 +78,29 @@ describe('while the database is lost', () => {
     database.process().kill('SIGCONT')
     await until('the server is ready again', isReady, 5_000)
     await browser.get('/api/settings').expect(200)
+  })
+
+  test('at the start, the server is alive, says why it is not ready, and goes on when the database is there', async () => {
+    await database.kill()
+    const port = await freePort()
+    const environment = { ...parts.environment, databaseUrl: url, port }
+    const starting = startServer({ environment, clock: systemClock, logger: parts.logger, onFatal: () => undefined })
+    const at = request(`http://127.0.0.1:${port}`)
+    await until(
+      'the server answers',
+      () =>
+        at.get('/healthz').then(
+          () => true,
+          () => false,
+        ),
+      5_000,
+    )
+    await at.get('/readyz').expect(503, { ready: false, reasons: ['starting', 'the database does not answer'] })
+    expect((await at.get('/api/installation').expect(503)).body.code).toBe('server.starting')
+    await database.start()
+    const server = await starting
+    await at.get('/readyz').expect(200)
+    expect((await at.get('/api/installation').expect(200)).body.needsSetUp).toBe(true)
+    await server.stop()
   })
 })
