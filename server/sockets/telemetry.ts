@@ -11,7 +11,7 @@ import { holderOfKey } from '../services/stationKeys.ts'
 import { Connection } from './telemetry/connection.ts'
 import { createPace } from './telemetry/pace.ts'
 import type { Pace } from './telemetry/pace.ts'
-import type { Surroundings } from './telemetry/surroundings.ts'
+import type { StreamingStation, Surroundings } from './telemetry/surroundings.ts'
 import { refuseUpgrade } from './upgrade.ts'
 import type { UpgradeDispatcher } from './upgrade.ts'
 
@@ -40,7 +40,7 @@ export async function startTelemetry(options: TelemetryOptions): Promise<Telemet
   const store = await createReadingStore({ bus, clock, logger, betweenCommitsMs })
   const sockets = new WebSocketServer({ noServer: true, maxPayload: maxFrameBytes, perMessageDeflate: false })
   const connections = new Map<WebSocket, Connection>()
-  const streaming = new Map<number, Connection>()
+  const streaming = new Map<number, StreamingStation>()
   const paces = new Map<number, Pace>()
 
   const around: Surroundings = {

@@ -115,12 +115,24 @@ describe('the health of a station', () => {
       latencyP95: 1.2,
     })
     await StationHealthHour.bulkCreate([row('2026-12-01T06:00:00Z', 14_000), row('2026-12-01T07:00:00Z', 3_500)])
-    const answer = await admin.get(healthPath('2026-12-01T06:00:00Z', '2026-12-01T08:00:00Z')).expect(200)
-    const common = { letter: made.sensors[0]?.letter, late: 3, repeated: 2, conflicting: 1, clockOffset: 0.25, latencyP95: 1.2 } // prettier-ignore
-    expect(answer.body).toEqual([
+    const { body } = await admin.get(healthPath('2026-12-01T04:00:00Z', '2026-12-01T12:00:00Z')).expect(200)
+    const [letter, other] = made.sensors.map((sensor) => sensor.letter)
+    const common = { letter, late: 3, repeated: 2, conflicting: 1, clockOffset: 0.25, latencyP95: 1.2 }
+    const of = (wanted: string | undefined) => body.filter((hour: { letter: string }) => hour.letter === wanted)
+    expect(of(letter)).toEqual([
       { ...common, hour: '2026-12-01T06:00:00.000Z', expected: 14_400, received: 14_000 },
       { ...common, hour: '2026-12-01T07:00:00.000Z', expected: 3_600, received: 3_500 },
     ])
+    const nothing = { late: 0, repeated: 0, conflicting: 0, clockOffset: null, latencyP95: null }
+    expect(of(other)).toEqual([
+      { ...nothing, letter: other, hour: '2026-12-01T06:00:00.000Z', expected: 14_400, received: 0 },
+      { ...nothing, letter: other, hour: '2026-12-01T07:00:00.000Z', expected: 3_600, received: 0 },
+    ])
+  })
+
+  it('of a station that never sent anything is empty', async () => {
+    const { body } = await admin.get(healthPath('2026-12-01T06:00:00Z', '2026-12-01T08:00:00Z')).expect(200)
+    expect(body).toEqual([])
   })
 
   it.each([

@@ -7,6 +7,7 @@ import { firstSlotFrom, minuteOfSlot, timeOfSlot } from '../../../shared/reading
 import { lengthOf, sliceSpan } from '../../../shared/readings/span.ts'
 import type { SampleSpan } from '../../../shared/readings/span.ts'
 import { execute, select } from '../../models/sql.ts'
+import { inTransaction } from '../transaction.ts'
 import { insertBlocks, newestParts } from './blocks.ts'
 import { blocksOfMinute } from './compactedMinute.ts'
 import type { EstimateView, FramePiece } from './compactedMinute.ts'
@@ -69,7 +70,7 @@ interface FrameRow {
 
 async function compactStation(stationId: number, from: number, to: number, settledCommitId: number): Promise<number> {
   const deployments = await loadDeployments(stationId)
-  return database().transaction(async (transaction) => {
+  return inTransaction(database(), async (transaction) => {
     const frames = await select<FrameRow>(
       database(),
       `SELECT streamId, seq, commitId, sentAt, arrivedAt, payload FROM frames

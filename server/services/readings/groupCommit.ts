@@ -3,6 +3,7 @@
  * then is it acknowledged. While the database is away everything waits, in order; senders are held back by
  * `waitingOf`, and what they were not told of they send again.
  */
+import { setTimeout as pause } from 'node:timers/promises'
 import type { Logger } from 'pino'
 import type { Clock } from '../../config/clock.ts'
 import { isDatabaseUnavailable, isRepeatable } from '../../config/databaseFaults.ts'
@@ -23,6 +24,7 @@ import { isHeld, joinLanes, nextRelease } from './lanes.ts'
 const usuallyBetweenCommitsMs = 250
 const mostArrivals = 2000
 const mostBytes = 4 * 1024 * 1024
+const stopWithinMs = 3_000
 const betweenHealthMs = 10_000
 const retriesMs = [50, 250, 1000, 2000, 5000]
 
@@ -208,10 +210,11 @@ export function createGroupCommit(options: GroupCommitOptions): GroupCommit {
     async stop() {
       if (timer) clearTimeout(timer)
       timer = null
-      await flush()
+      // A database that hangs must not keep the server from stopping: what was not acknowledged is sent again.
+      await Promise.race([flush(), pause(stopWithinMs, undefined, { ref: false })])
       stopped = true
       leaveLanes()
-      if (failures === 0) await writeHealth()
+      if (failures === 0 && !running) await writeHealth()
     },
   }
 }

@@ -7,7 +7,7 @@ import { select } from '../../models/sql.ts'
 import { database } from './database.ts'
 import { unpackReadings } from './payload.ts'
 
-/** A frame holds at most a minute, and its first slot may lie half a slot before its stored start. */
+/** A frame holds at most a minute; its stored start is that of its first slot, rounded to a millisecond. */
 const longestFrameMs = 61_000
 const minuteMs = 60_000
 
@@ -54,7 +54,7 @@ const partsOfSpan = `
   WHERE stationId = :stationId AND startsAt >= :minuteFrom AND startsAt < :to AND lastCommitId <= :upTo
   UNION ALL
   SELECT 'live', commitId, commitId, TIMESTAMPDIFF(MICROSECOND, sentAt, arrivedAt) / 1e6, payload FROM frames
-  WHERE stationId = :stationId AND startsAt >= :frameFrom AND startsAt < :to AND commitId <= :upTo`
+  WHERE stationId = :stationId AND startsAt >= :frameFrom AND startsAt <= :to AND commitId <= :upTo`
 
 /** Parts that may hold samples from `fromMs` up to `toMs`, of commits up to `upToCommitId`; oldest commit first. */
 export async function loadParts(
@@ -71,7 +71,7 @@ export async function loadParts(
       stationId,
       minuteFrom: new Date(Math.floor(fromMs / minuteMs) * minuteMs),
       frameFrom: new Date(fromMs - longestFrameMs),
-      to: new Date(toMs + 500),
+      to: new Date(toMs),
       upTo: upToCommitId,
     },
     transaction,
