@@ -35,7 +35,7 @@ export function trustGrounds(detail: EstimateResult): TrustGround[] {
     key: 'residual',
     flag: judged(tests, /closure/),
     words: 'Lag residual, rms',
-    figure: seconds(detail.lagResidualRms, 2),
+    figure: seconds(detail.lagResidualRms, (detail.lagResidualRms ?? 1) < 0.02 ? 3 : 2),
   })
   if (lead) {
     const off = Math.round((lead.speedRatio - 1) * 100)

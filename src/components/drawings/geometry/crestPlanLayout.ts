@@ -33,8 +33,15 @@ export function aperture(sensors: readonly Pick<PlannedSensor, 'east' | 'north'>
   return greatest
 }
 
-export function squarePlan(sensors: readonly PlannedSensor[], size: number, margin = 30, band = 20): SquarePlan {
-  const side = Math.max(10, 2.05 * aperture(sensors))
+/** `spacing` of the crests, m: a small array is drawn on at least half of it, or crests would rarely be seen. */
+export function squarePlan(
+  sensors: readonly PlannedSensor[],
+  size: number,
+  spacing = 0,
+  margin = 30,
+  band = 20,
+): SquarePlan {
+  const side = Math.max(10, 2.05 * aperture(sensors), 0.5 * spacing)
   const centre = size / 2
   const outer = centre - margin
   const inner = outer - band
