@@ -1,13 +1,13 @@
 import { onBeforeUnmount, ref } from 'vue'
 import type { Ref } from 'vue'
 
-/** The forms a page takes: wide from 1400, narrow from 1024, column from 768, phone below. */
+/** The forms a page takes: wide from 1400, narrow from 1024, column from 768, phone below; in em, so that large text counts. */
 export type Screen = 'wide' | 'narrow' | 'column' | 'phone'
 
 const steps: [Screen, string][] = [
-  ['wide', '(min-width: 1400px)'],
-  ['narrow', '(min-width: 1024px)'],
-  ['column', '(min-width: 768px)'],
+  ['wide', '(min-width: 87.5em)'],
+  ['narrow', '(min-width: 64em)'],
+  ['column', '(min-width: 48em)'],
 ]
 
 export function useScreen(): Ref<Screen> {
