@@ -7,6 +7,7 @@ const kept = z.object({
   mode: z.enum(['day', 'night']).default('day'),
   still: z.boolean().default(false),
   keys: z.boolean().default(true),
+  bySun: z.boolean().default(false),
 })
 export type DisplayMode = z.infer<typeof kept>['mode']
 
@@ -23,6 +24,8 @@ function recall(): z.infer<typeof kept> {
 export const useDisplay = defineStore('display', () => {
   const before = recall()
   const mode = ref<DisplayMode>(before.mode)
+  /** Night begins half an hour after sunset and ends at sunrise, as long as the person asks for it. */
+  const bySun = ref(before.bySun)
   const stillChosen = ref(before.still)
   /** Single-key shortcuts; can be switched off. */
   const keys = ref(before.keys)
@@ -42,13 +45,20 @@ export const useDisplay = defineStore('display', () => {
     },
     { immediate: true },
   )
-  watch([mode, stillChosen, keys], () => {
+  watch([mode, stillChosen, keys, bySun], () => {
     try {
-      localStorage.setItem(place, JSON.stringify({ mode: mode.value, still: stillChosen.value, keys: keys.value }))
+      const now = { mode: mode.value, still: stillChosen.value, keys: keys.value, bySun: bySun.value }
+      localStorage.setItem(place, JSON.stringify(now))
     } catch {
       // A browser that keeps nothing still shows what was chosen until the page is closed.
     }
   })
 
-  return { mode, still, stillChosen, reducedBySystem, keys }
+  /** The person's own choice ends the choice by the sun. */
+  function choose(chosen: DisplayMode): void {
+    bySun.value = false
+    mode.value = chosen
+  }
+
+  return { mode, bySun, choose, still, stillChosen, reducedBySystem, keys }
 })

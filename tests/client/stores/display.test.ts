@@ -1,7 +1,35 @@
 import { createPinia, setActivePinia } from 'pinia'
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import { nextTick } from 'vue'
+import { modeBySun } from '../../../src/composables/useModeBySun.ts'
 import { useDisplay } from '../../../src/stores/display.ts'
+
+describe('display by the sun', () => {
+  const days = [
+    { riseMs: Date.parse('2026-11-12T08:24:00Z'), setMs: Date.parse('2026-11-12T17:52:00Z') },
+    { riseMs: Date.parse('2026-11-13T08:25:00Z'), setMs: Date.parse('2026-11-13T17:51:00Z') },
+  ]
+
+  it('is day from sunrise to half an hour after sunset, else night', () => {
+    const at = (time: string) => modeBySun(Date.parse(`2026-11-${time}:00Z`), days)
+    expect(['12T08:23', '12T08:24', '12T18:21', '12T18:22', '13T03:00', '13T09:00'].map(at)).toEqual([
+      'night',
+      'day',
+      'day',
+      'night',
+      'night',
+      'day',
+    ])
+  })
+
+  it('ends when a person chooses', () => {
+    setActivePinia(createPinia())
+    const display = useDisplay()
+    display.bySun = true
+    display.choose('night')
+    expect(display).toMatchObject({ mode: 'night', bySun: false })
+  })
+})
 
 describe('display', () => {
   beforeEach(() => {
