@@ -22,7 +22,7 @@ The stream
   --url URL           telemetry address of the server
   --keys FILE         JSON {"OL": "prefix.secret", …}
   --state DIR         keeps each station's stream and sequence, so that a restart, even after a kill, resumes it
-  --backfill SPAN     start so far in the past and send it as back-fill, 45 times as fast as time, before going live
+  --backfill SPAN     start so far in the past and send it as back-fill, 49 times as fast as time, before going live
   --from MOMENT       start in the past and stream --rate times as fast as time until now, never beyond
   --rate N            with --from (default 60; a server may refuse more than 50)
   --truth-port PORT   serve the truth as JSON on 127.0.0.1: /truth?station=OL&at=MOMENT&seconds=1200

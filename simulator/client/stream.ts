@@ -9,7 +9,7 @@ import { createPace } from './pace.ts'
 import { keepStationLink } from './stationLink.ts'
 
 /** Frames a second of back-fill; a server takes up to 50. */
-const backfillPace = 45
+const backfillPace = 49
 
 export interface Streaming {
   stop(): void
