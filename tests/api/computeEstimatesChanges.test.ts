@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest'
-import { DirtyWindow, ReadingBlock, StationSettings } from '../../server/models/index.ts'
+import { DirtyWindow, LongJob, ReadingBlock, StationSettings } from '../../server/models/index.ts'
 import { execute } from '../../server/models/sql.ts'
 import { at, countTo, estimatingStation } from '../support/estimatingStation.ts'
 import { instantEstimators } from '../support/instantEstimators.ts'
@@ -29,6 +29,23 @@ describe('estimates when readings, the database or the program change under the 
     e.estimators.asked = []
     await job.wake()
     expect(e.estimators.asked).toEqual([])
+  })
+
+  it('waits for a buffer that is coming in, and computes each of its windows once', async () => {
+    e.parts.clock.set(at(25, 30))
+    const job = await e.start()
+    await job.wake()
+    for (let minute = 0; minute < 25; minute += 1) {
+      await storeSea(e.made, { from: at(minute), to: at(minute + 1), commitId: minute + 1 })
+      if ((await e.watermark()) !== null) await e.noteLateReadings(at(minute), at(minute + 1))
+      const stored = { stationId: e.made.station.id, from: at(minute).getTime(), to: at(minute + 1).getTime() }
+      e.parts.bus.publish('readings.stored', { ...stored, late: true })
+      await job.wake()
+    }
+    expect(await e.ends()).toEqual(countTo(25))
+    expect(new Set((await e.rows()).map(({ revision }) => revision))).toEqual(new Set([1]))
+    expect(await DirtyWindow.count()).toBe(0)
+    expect(await LongJob.count()).toBe(0)
   })
 
   it('computes nothing anew for a note whose readings an estimate has already seen', async () => {

@@ -29,14 +29,24 @@ export function instantEstimators(): InstantEstimators {
 }
 
 function answerTo({ window, known, windowEndsAt }: EstimateTask): EstimateAnswer {
-  const samples = window.series.flatMap((series) => [...series])
-  const present = samples.filter((value) => !Number.isNaN(value))
-  const variance = present.reduce((sum, value) => sum + value ** 2, 0) / present.length
+  const hash = createHash('sha256').update(String(windowEndsAt))
+  let all = 0
+  let present = 0
+  let squares = 0
+  for (const series of window.series) {
+    hash.update(Buffer.from(series.buffer, series.byteOffset, series.byteLength))
+    all += series.length
+    for (const value of series) {
+      if (Number.isNaN(value)) continue
+      present += 1
+      squares += value ** 2
+    }
+  }
   const result: EstimateResult = {
     resolved: true,
     reason: null,
     qualityFlag: 1,
-    significantWaveHeight: 4 * Math.sqrt(variance),
+    significantWaveHeight: 4 * Math.sqrt(squares / present),
     significantWaveHeightSd: null,
     peakPeriod: 10,
     meanPeriod: null,
@@ -45,7 +55,7 @@ function answerTo({ window, known, windowEndsAt }: EstimateTask): EstimateAnswer
     surgeHeight: window.surge ? 0.01 : null,
     waterDepth: window.waterDepth,
     waterDepthSource: window.waterDepthSource,
-    completeness: present.length / samples.length,
+    completeness: present / all,
     systems: [],
     sensors: window.sensors.map(({ id }) => ({
       id,
@@ -68,9 +78,7 @@ function answerTo({ window, known, windowEndsAt }: EstimateTask): EstimateAnswer
   return {
     figures: result,
     known: { tracks: known.tracks, nextKey: known.nextKey },
-    digest: createHash('sha256')
-      .update(`${windowEndsAt} ${JSON.stringify(samples)}`)
-      .digest('hex'),
+    digest: hash.digest('hex'),
     detail: deflateRawSync(JSON.stringify(result)),
   }
 }

@@ -44,10 +44,16 @@ export async function newestLate(
   return row ? { windowEndsAt: row.windowEndsAt.getTime(), origin: origins[row.cause] ?? 'late' } : null
 }
 
+/** Windows that wait to be computed, without those whose turn has not come. */
 export async function countLate({ sequelize }: Parts, stationIds: number[]): Promise<number> {
   if (stationIds.length === 0) return 0
-  const sql = 'SELECT COUNT(*) AS count FROM dirtyWindows WHERE stationId IN (:stationIds)'
-  const [row] = await select<{ count: number }>(sequelize, sql, { stationIds })
+  const [row] = await select<{ count: number }>(
+    sequelize,
+    `SELECT COUNT(*) AS count FROM dirtyWindows d JOIN watermarks w
+       ON w.job = 'computeEstimates' AND w.subjectKind = 'station' AND w.subjectId = d.stationId
+     WHERE d.stationId IN (:stationIds) AND d.windowEndsAt <= w.doneUpTo`,
+    { stationIds },
+  )
   return Number(row?.count ?? 0)
 }
 
