@@ -18,6 +18,7 @@ describe('the job that computes estimates', () => {
   })
 
   it('keeps with each estimate what it was made of', async () => {
+    await e.setWatermark(at(60))
     await storeSea(e.made, { from: at(0), to: at(61), commitId: 41 })
     e.parts.clock.set(at(61, 1))
     await (await e.start()).wake()

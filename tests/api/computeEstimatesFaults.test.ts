@@ -70,6 +70,7 @@ describe('the clock of a station', () => {
     [-2.5, true, null],
     [12, false, 'clock'],
   ])('that is %d s off its server leaves the vector resolved: %s', async (offset, resolved, reason) => {
+    await e.setWatermark(at(0))
     await storeSea(e.made, { from: at(-20), to: at(1), commitId: 1, clockOffset: -offset })
     e.parts.clock.set(at(1))
     const job = await e.startThreads()
@@ -84,6 +85,7 @@ describe('the clock of a station', () => {
 
 describe('the whole way through worker threads', () => {
   it('gives the vector of a swell whose bearing and speed are known', async () => {
+    await e.setWatermark(at(0))
     await storeSea(e.made, { from: at(-20), to: at(1), commitId: 1 })
     e.parts.clock.set(at(1))
     const job = await e.startThreads()

@@ -35,6 +35,8 @@ export interface Estimating {
   /** Window ends in minutes after noon. */
   ends(): Promise<number[]>
   watermark(): Promise<Date | null>
+  /** As if all windows up to this end had been dealt with. */
+  setWatermark(doneUpTo: Date): Promise<void>
   /** As the store does when readings come after their window. */
   noteLateReadings(from: Date, to: Date): Promise<void>
 }
@@ -61,6 +63,10 @@ export function estimatingStation(): Estimating {
     async watermark() {
       const row = await Watermark.findOne({ where: { job: 'computeEstimates', subjectId: held.made.station.id } })
       return row?.doneUpTo ?? null
+    },
+    async setWatermark(doneUpTo: Date) {
+      const key = { job: 'computeEstimates', subjectKind: 'station', subjectId: held.made.station.id }
+      await Watermark.create({ ...key, doneUpTo, updatedAt: noon })
     },
     async noteLateReadings(from: Date, to: Date) {
       const now = held.parts.clock.now().getTime()
