@@ -18,6 +18,24 @@ export type Action =
   | 'log.read'
   | 'audits.read'
   | 'openapi.read'
+  | 'alerts.read'
+  | 'alerts.acknowledge'
+  | 'alerts.shelve'
+  | 'drills.change'
+  | 'alertPerformance.read'
+  | 'cap.read'
+  | 'limits.read'
+  | 'limits.change'
+  | 'lists.read'
+  | 'lists.change'
+  | 'people.read'
+  | 'people.change'
+  | 'profile.read'
+  | 'profile.change'
+  | 'messages.read'
+  | 'deliveries.change'
+  | 'receipts.read'
+  | 'receipts.confirm'
 
 const everyone: readonly Role[] = ['admin', 'operator', 'partner']
 const anybody = 'anybody'
@@ -39,6 +57,26 @@ const rows: Record<Action, readonly Role[] | typeof anybody> = {
   'jobs.cancel': ['admin'],
   'log.read': ['admin', 'operator'],
   'audits.read': ['admin'],
+  'alerts.read': everyone,
+  'alerts.acknowledge': ['operator'],
+  'alerts.shelve': ['operator'],
+  'drills.change': ['operator'],
+  'alertPerformance.read': ['admin', 'operator'],
+  // Of the alerts alone whose limit says that they are published.
+  'cap.read': anybody,
+  'limits.read': ['admin', 'operator'],
+  'limits.change': ['operator'],
+  'lists.read': ['admin', 'operator'],
+  'lists.change': ['admin', 'operator'],
+  'people.read': ['admin', 'operator'],
+  'people.change': ['admin'],
+  'profile.read': everyone,
+  'profile.change': everyone,
+  'messages.read': ['admin', 'operator'],
+  'deliveries.change': ['operator'],
+  // The token in the link says who.
+  'receipts.read': anybody,
+  'receipts.confirm': anybody,
 }
 
 export const actions = Object.keys(rows) as Action[]
@@ -51,11 +89,14 @@ export function may(role: Role | null, action: Action): boolean {
 }
 
 /** Actions that change something: refused while a session is read-only (past its absolute limit). */
-export const changes = (action: Action): boolean => /\.(change|cancel|complete)$/.test(action)
+export const changes = (action: Action): boolean => /\.(change|cancel|complete|acknowledge|shelve|confirm)$/.test(action)
 
 /** Which action a live room asks for; null for a room that does not exist. */
 export function actionOfRoom(room: string): Action | null {
   if (room === 'stations' || /^(station|traces):\d+$/.test(room)) return 'stations.read'
   if (room === 'system') return 'jobs.read'
+  if (room === 'alerts') return 'alerts.read'
+  if (room === 'limits') return 'limits.read'
+  if (room === 'messages') return 'messages.read'
   return null
 }
