@@ -177,6 +177,14 @@ module.exports = {
       },
     ),
     forbid(
+      'presenters-ask-services',
+      'What is shown is the same at every door.',
+      { path: '^server/presenters/' },
+      {
+        path: ['^server/models/', '^server/workers/', upperServer, ...npm('express', 'ws', 'sequelize')],
+      },
+    ),
+    forbid(
       'services-packages',
       'Services know no http, no sockets, no mail.',
       { path: '^server/services/' },
