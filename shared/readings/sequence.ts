@@ -14,6 +14,11 @@ export const startLedger = (contiguous: number): SequenceLedger => ({ contiguous
 export const isHandled = (ledger: SequenceLedger, seq: number): boolean =>
   seq <= ledger.contiguous || ledger.beyond.some(([from, to]) => from <= seq && seq <= to)
 
+/** A day of frames out of order leaves fewer; more come from a station that does not keep its numbers without holes. */
+const mostRuns = 50_000
+
+export const hasTooManyHoles = ({ beyond }: SequenceLedger): boolean => beyond.length > mostRuns
+
 /** The ledger after these frames were handled too; order and repetitions do not matter. */
 export function withHandled(ledger: SequenceLedger, seqs: readonly number[]): SequenceLedger {
   const runs: [number, number][] = [

@@ -4,13 +4,8 @@
  */
 import { randomUUID } from 'node:crypto'
 import { deflateSync } from 'node:zlib'
-import { pino } from 'pino'
-import { createDatabase, migrate } from '../../server/config/database.ts'
 import { systemClock } from '../../server/config/clock.ts'
 import type { Parts } from '../../server/config/parts.ts'
-import { readEnvironment } from '../../server/config/environment.ts'
-import { execute } from '../../server/models/sql.ts'
-import { createBus } from '../../server/services/bus.ts'
 import { importReadings } from '../../server/services/imports.ts'
 import { compactReadings, createReadingStore, loadStationFacts, packFrame, readWindow } from '../../server/services/readings.ts' // prettier-ignore
 import type { OpenStream, ReadingStore, StationFacts } from '../../server/services/readings.ts'
@@ -22,17 +17,13 @@ import type { StationMade } from '../support/factories.ts'
 import { startMariadb } from '../support/mariadb.ts'
 import { seeded } from '../support/seeded.ts'
 import { gentleSwell, surfaceOf } from '../support/storedSea.ts'
+import { benchParts, createBenchSchema } from './benchParts.ts'
+import type { Figure } from './benchParts.ts'
 
 const stations = 20
 const sampleRate = 4
 const positions: [number, number][] = [[-40, -18], [-8, -30], [6, -14], [30, 34], [-18, 22]] // prettier-ignore
 const readingsASecond = stations * positions.length * sampleRate
-
-export interface Figure {
-  what: string
-  value: number
-  unit: string
-}
 
 /** A swell with a wind sea on it and the noise of an instrument of 2 mm, in stored units. */
 function createSea(): (from: number, count: number, letters: string[]) => SampleSpan {
@@ -138,11 +129,7 @@ async function readBack({ made }: Fleet, from: number): Promise<Spent> {
 }
 
 async function makeFleet(url: string): Promise<Fleet> {
-  const sequelize = createDatabase({ url })
-  await migrate(sequelize)
-  const logger = pino({ level: 'warn' })
-  const environment = readEnvironment({ NODE_ENV: 'test', INSTALLATION_KIND: 'real', DATABASE_URL: url, DATA_DIR: '/nowhere', JWT_SECRET: randomUUID() + randomUUID(), BCRYPT_COST: '4' }) // prettier-ignore
-  const parts: Parts = { sequelize, bus: createBus((error) => logger.error({ error })), clock: systemClock, logger, environment } // prettier-ignore
+  const parts = await benchParts(url)
   const store = await createReadingStore(parts)
   const fleet: Fleet = { parts, store, made: [], facts: [], streams: [] }
   for (let n = 0; n < stations; n++) {
@@ -198,10 +185,7 @@ function ofRate(what: string, readings: number, { passed, worked }: Spent): Figu
 export async function benchStorage(): Promise<Figure[]> {
   const server = await startMariadb({ durable: true })
   const figures = await packing()
-  const outside = createDatabase({ url: server.url, poolSize: 1 })
-  await execute(outside, 'CREATE DATABASE offing_bench')
-  await outside.close()
-  const fleet = await makeFleet(`${server.url}offing_bench`)
+  const fleet = await makeFleet(await createBenchSchema(server))
   try {
     const now = Math.floor(Date.now() / 60_000) * 60_000
     const from = now - 1_200_000

@@ -2,25 +2,29 @@
 import { createServer } from 'node:http'
 import type { AddressInfo } from 'node:net'
 import { WebSocket } from 'ws'
+import type { Parts } from '../../server/config/parts.ts'
 import { startTelemetry } from '../../server/sockets/telemetry.ts'
 import type { Telemetry } from '../../server/sockets/telemetry.ts'
 import { createUpgradeDispatcher } from '../../server/sockets/upgrade.ts'
 import { telemetryProtocol, telemetryServerMessage } from '../../shared/wire/telemetry.ts'
 import type { TelemetryServerMessage } from '../../shared/wire/telemetry.ts'
 import type { StationMade } from './factories.ts'
-import type { TestParts } from './parts.ts'
 
 export interface TelemetryServer extends Telemetry {
   url: string
 }
 
-export async function serveTelemetry(parts: TestParts, heartbeatMs = 60_000): Promise<TelemetryServer> {
+export async function serveTelemetry(
+  parts: Parts,
+  heartbeatMs = 60_000,
+  betweenCommitsMs = 10,
+): Promise<TelemetryServer> {
   const server = createServer()
   const telemetry = await startTelemetry({
     ...parts,
     upgrades: createUpgradeDispatcher(server),
     heartbeatMs,
-    betweenCommitsMs: 10,
+    betweenCommitsMs,
   })
   await new Promise<void>((resolve) => server.listen(0, '127.0.0.1', resolve))
   const { port } = server.address() as AddressInfo

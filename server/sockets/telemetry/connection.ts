@@ -1,5 +1,6 @@
 /** One station's connection, from its hello to its close. */
 import type { WebSocket } from 'ws'
+import { hasTooManyHoles } from '../../../shared/readings/sequence.ts'
 import { heartbeatSeconds, maxFrameBytes, telemetryClose } from '../../../shared/wire/telemetry.ts'
 import type { FrameMessage, HelloMessage, RefusalCode, TelemetryServerMessage } from '../../../shared/wire/telemetry.ts'
 import { loadStationFacts, noteClockOffset, packFrame } from '../../services/readings.ts'
@@ -118,6 +119,9 @@ export class Connection {
     const seconds = (frame.values[0]?.length ?? 0) * frame.interval
     if (!this.pace.takeRecord(seconds, clock.monotonic())) {
       return this.close(telemetryClose.tooFast, 'faster than 50 times real time')
+    }
+    if (hasTooManyHoles(streaming.stream.ledger)) {
+      return this.close(telemetryClose.malformed, 'too many holes in the sequence: begin a new stream')
     }
     this.watchClock(sentAt, arrivedAt)
     const placed = placeFrame(frame, streaming.station, arrivedAt)

@@ -1,6 +1,6 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
-import { isHandled, startLedger, withHandled } from '../../../shared/readings/sequence.ts'
+import { hasTooManyHoles, isHandled, startLedger, withHandled } from '../../../shared/readings/sequence.ts'
 
 describe('the ledger of a stream', () => {
   it('moves on over frames in order', () => {
@@ -28,5 +28,11 @@ describe('the ledger of a stream', () => {
         },
       ),
     )
+  })
+
+  it('tells a station that leaves holes from one that shuffles a day of frames', () => {
+    const everyOther = (count: number) => Array.from({ length: count }, (_, n) => 2 * n + 2)
+    expect(hasTooManyHoles(withHandled(startLedger(0), everyOther(43_200)))).toBe(false)
+    expect(hasTooManyHoles(withHandled(startLedger(0), everyOther(50_001)))).toBe(true)
   })
 })
