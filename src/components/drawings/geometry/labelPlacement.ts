@@ -35,6 +35,18 @@ const overlap = (a: Box, b: Box): number =>
   Math.max(0, Math.min(a.x + a.width, b.x + b.width) - Math.max(a.x, b.x)) *
   Math.max(0, Math.min(a.y + a.height, b.y + b.height) - Math.max(a.y, b.y))
 
+/** A thin line from a point to a label that stands away from it; null where the label is near enough to be its own. */
+export function leaderTo({ box }: LabelPlaced, [x, y]: Point): [Point, Point] | null {
+  const near: Point = [
+    Math.min(box.x + box.width, Math.max(box.x, x)),
+    Math.min(box.y + box.height, Math.max(box.y, y)),
+  ]
+  const distance = Math.hypot(near[0] - x, near[1] - y)
+  if (distance < 28) return null
+  const start = 9 / distance
+  return [[x + (near[0] - x) * start, y + (near[1] - y) * start], near]
+}
+
 /** Length of a segment inside a box, by sampling. */
 function within([a, b]: [Point, Point], box: Box): number {
   const samples = 24
