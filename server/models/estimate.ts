@@ -45,6 +45,19 @@ export class Estimate extends Model<InferAttributes<Estimate>, InferCreationAttr
   declare covarianceEastEast: number | null
   declare covarianceEastNorth: number | null
   declare covarianceNorthNorth: number | null
+  /** Of the highest swell, and of the wind sea. */
+  declare swellHeight: number | null
+  declare swellPeriod: number | null
+  declare swellTowardDegrees: number | null
+  declare swellTowardDegreesSd: number | null
+  declare swellSpeed: number | null
+  declare swellSpeedSd: number | null
+  declare windSeaHeight: number | null
+  declare windSeaPeriod: number | null
+  declare windSeaTowardDegrees: number | null
+  declare windSeaTowardDegreesSd: number | null
+  declare windSeaSpeed: number | null
+  declare windSeaSpeedSd: number | null
 }
 
 export const defineEstimate = (sequelize: Sequelize): void => {
@@ -92,6 +105,18 @@ export const defineEstimate = (sequelize: Sequelize): void => {
       covarianceEastEast: DataTypes.DOUBLE,
       covarianceEastNorth: DataTypes.DOUBLE,
       covarianceNorthNorth: DataTypes.DOUBLE,
+      swellHeight: DataTypes.DOUBLE,
+      swellPeriod: DataTypes.DOUBLE,
+      swellTowardDegrees: DataTypes.DOUBLE,
+      swellTowardDegreesSd: DataTypes.DOUBLE,
+      swellSpeed: DataTypes.DOUBLE,
+      swellSpeedSd: DataTypes.DOUBLE,
+      windSeaHeight: DataTypes.DOUBLE,
+      windSeaPeriod: DataTypes.DOUBLE,
+      windSeaTowardDegrees: DataTypes.DOUBLE,
+      windSeaTowardDegreesSd: DataTypes.DOUBLE,
+      windSeaSpeed: DataTypes.DOUBLE,
+      windSeaSpeedSd: DataTypes.DOUBLE,
     },
     { sequelize, tableName: 'estimates' },
   )

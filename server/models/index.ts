@@ -1,20 +1,31 @@
 /** All tables of the database, one file each. Initialised once for the process by `defineModels`. */
 import type { Sequelize } from 'sequelize'
+import { defineAbsence } from './absence.ts'
+import { defineAlert } from './alert.ts'
+import { defineAlertEvent } from './alertEvent.ts'
 import { defineAudit } from './audit.ts'
 import { defineAuxiliaryReading } from './auxiliaryReading.ts'
 import { defineClockOffset } from './clockOffset.ts'
 import { defineConflict } from './conflict.ts'
+import { defineDelivery } from './delivery.ts'
 import { defineDeployment } from './deployment.ts'
 import { defineDeploymentSensor } from './deploymentSensor.ts'
 import { defineDirtyWindow } from './dirtyWindow.ts'
+import { defineDistributionList } from './distributionList.ts'
+import { defineEscalation } from './escalation.ts'
 import { defineEstimate } from './estimate.ts'
 import { defineEstimateDetail } from './estimateDetail.ts'
 import { defineFrame } from './frame.ts'
 import { defineImport } from './import.ts'
 import { defineInstallation } from './installation.ts'
+import { defineLimit } from './limit.ts'
+import { defineLimitState } from './limitState.ts'
+import { defineLimitVersion } from './limitVersion.ts'
 import { defineLinkToken } from './linkToken.ts'
+import { defineListMember } from './listMember.ts'
 import { defineLogEntry } from './logEntry.ts'
 import { defineLongJob } from './longJob.ts'
+import { defineMessage } from './message.ts'
 import { definePerson } from './person.ts'
 import { defineReadingBlock } from './readingBlock.ts'
 import { defineRun } from './run.ts'
@@ -22,6 +33,7 @@ import { defineSensor } from './sensor.ts'
 import { defineSeriesDay } from './seriesDay.ts'
 import { defineSession } from './session.ts'
 import { defineSettingVersion } from './settingVersion.ts'
+import { defineShelving } from './shelving.ts'
 import { defineStation } from './station.ts'
 import { defineStationHealthHour } from './stationHealthHour.ts'
 import { defineStationKey } from './stationKey.ts'
@@ -29,21 +41,32 @@ import { defineStationSettings } from './stationSettings.ts'
 import { defineStream } from './stream.ts'
 import { defineWatermark } from './watermark.ts'
 
+export { Absence } from './absence.ts'
+export { Alert } from './alert.ts'
+export { AlertEvent } from './alertEvent.ts'
 export { Audit } from './audit.ts'
 export { AuxiliaryReading } from './auxiliaryReading.ts'
 export { ClockOffset } from './clockOffset.ts'
 export { Conflict } from './conflict.ts'
+export { Delivery } from './delivery.ts'
 export { Deployment } from './deployment.ts'
 export { DeploymentSensor } from './deploymentSensor.ts'
 export { DirtyWindow } from './dirtyWindow.ts'
+export { DistributionList } from './distributionList.ts'
+export { Escalation } from './escalation.ts'
 export { Estimate } from './estimate.ts'
 export { EstimateDetail } from './estimateDetail.ts'
 export { Frame } from './frame.ts'
 export { Import } from './import.ts'
 export { Installation } from './installation.ts'
+export { Limit } from './limit.ts'
+export { LimitState } from './limitState.ts'
+export { LimitVersion } from './limitVersion.ts'
 export { LinkToken } from './linkToken.ts'
+export { ListMember } from './listMember.ts'
 export { LogEntry } from './logEntry.ts'
 export { LongJob } from './longJob.ts'
+export { Message } from './message.ts'
 export { Person } from './person.ts'
 export { ReadingBlock } from './readingBlock.ts'
 export { Run } from './run.ts'
@@ -51,6 +74,7 @@ export { Sensor } from './sensor.ts'
 export { SeriesDay } from './seriesDay.ts'
 export { Session } from './session.ts'
 export { SettingVersion } from './settingVersion.ts'
+export { Shelving } from './shelving.ts'
 export { Station } from './station.ts'
 export { StationHealthHour } from './stationHealthHour.ts'
 export { StationKey } from './stationKey.ts'
@@ -59,21 +83,32 @@ export { Stream } from './stream.ts'
 export { Watermark } from './watermark.ts'
 
 const definitions = [
+  defineAbsence,
+  defineAlert,
+  defineAlertEvent,
   defineAudit,
   defineAuxiliaryReading,
   defineClockOffset,
   defineConflict,
+  defineDelivery,
   defineDeployment,
   defineDeploymentSensor,
   defineDirtyWindow,
+  defineDistributionList,
+  defineEscalation,
   defineEstimate,
   defineEstimateDetail,
   defineFrame,
   defineImport,
   defineInstallation,
+  defineLimit,
+  defineLimitState,
+  defineLimitVersion,
   defineLinkToken,
+  defineListMember,
   defineLogEntry,
   defineLongJob,
+  defineMessage,
   definePerson,
   defineReadingBlock,
   defineRun,
@@ -81,6 +116,7 @@ const definitions = [
   defineSeriesDay,
   defineSession,
   defineSettingVersion,
+  defineShelving,
   defineStation,
   defineStationHealthHour,
   defineStationKey,

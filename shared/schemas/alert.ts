@@ -1,6 +1,15 @@
 /** Alerts: one occurrence of a limit exceeded, from rise to clearance. SI units; times ISO 8601 UTC. */
 import { z } from 'zod'
-import { alertState, limitClass, limitView, personName, priority, quantityKey, shelfView, subjectView } from './limit.ts'
+import {
+  alertState,
+  limitClass,
+  limitView,
+  personName,
+  priority,
+  quantityKey,
+  shelfView,
+  subjectView,
+} from './limit.ts'
 
 const time = z.iso.datetime()
 
@@ -216,7 +225,9 @@ export const alertPerformance = z.object({
   days: z.number(),
   isLongEnough: z.boolean(),
   measures: z.array(performanceMeasure),
-  byPriority: z.array(z.object({ priority, count: z.number().int(), share: z.number().nullable(), target: z.number() })),
+  byPriority: z.array(
+    z.object({ priority, count: z.number().int(), share: z.number().nullable(), target: z.number() }),
+  ),
   byDay: z.array(z.object({ day: z.iso.date(), count: z.number().int() })),
   topOffenders: z.array(
     z.object({ limitId: z.number().int(), title: z.string(), count: z.number().int(), share: z.number() }),

@@ -2,7 +2,7 @@
  * An invented estimate as text for an INSERT. Not by way of an object a row: a quarter of a million objects of forty
  * fields cost half a minute of collecting them again.
  */
-import type { EstimateFigures } from '../estimates.ts'
+import type { InventedFigures } from './inventedEstimate.ts'
 
 /** The same in all rows that share settings and deployment. */
 export interface SharedColumns {
@@ -21,7 +21,9 @@ export const columns = `stationId, runId, revision, origin, computedAt, deployme
   resultDigest, sensorsUsed, sensorsDeployed, windowEndsAt, windowStartsAt, completeness, resolved, reason, qualityFlag,
   waterDepth, waterDepthSource, significantWaveHeight, significantWaveHeightSd, peakPeriod, meanPeriod, energyPeriod,
   energyFlux, height, period, towardDegrees, towardDegreesSd, measuredSpeed, speed, speedSd, linearSpeed,
-  directionalSpread, slownessEast, slownessNorth, covarianceEastEast, covarianceEastNorth, covarianceNorthNorth`
+  directionalSpread, slownessEast, slownessNorth, covarianceEastEast, covarianceEastNorth, covarianceNorthNorth,
+  swellHeight, swellPeriod, swellTowardDegrees, swellTowardDegreesSd, swellSpeed, swellSpeedSd,
+  windSeaHeight, windSeaPeriod, windSeaTowardDegrees, windSeaTowardDegreesSd, windSeaSpeed, windSeaSpeedSd`
 
 const time = (ms: number): string => `'${new Date(ms).toISOString().slice(0, 23).replace('T', ' ')}'`
 const number = (value: number | null | undefined): string =>
@@ -43,11 +45,16 @@ export const sharedText = (shared: SharedColumns, escape: (text: string) => stri
     shared.sensorsDeployed,
   ].join(',')
 
+function namedNumbers(systems: EstimateFigures['systems'], name: 'swell' | 'wind sea'): (number | null | undefined)[] {
+  const one = systems.find((system) => system.name === name)
+  return [one?.significantWaveHeight, one?.peakPeriod, one?.toward, one?.headingSd, one?.speed, one?.speedSd]
+}
+
 export function rowText(
   shared: string,
   windowEndsAt: number,
   windowSeconds: number,
-  figures: EstimateFigures,
+  figures: InventedFigures,
   escape: (text: string) => string,
 ): string {
   const [leading] = figures.systems
@@ -76,6 +83,8 @@ export function rowText(
     covariance?.eastEast,
     covariance?.eastNorth,
     covariance?.northNorth,
+    ...namedNumbers(figures.systems, 'swell'),
+    ...namedNumbers(figures.systems, 'wind sea'),
   ]
   return `(${begin},${judged},${escape(figures.waterDepthSource)},${numbers.map(number).join(',')})`
 }

@@ -62,6 +62,25 @@ const leadingSystem = ([leading]: EstimateResult['systems']) => ({
   covarianceNorthNorth: leading?.slownessCovariance.northNorth ?? null,
 })
 
+/** The highest swell and the highest wind sea, wherever they stand in the order. */
+function namedSystems(systems: EstimateResult['systems']) {
+  const [swell, windSea] = (['swell', 'wind sea'] as const).map((name) => systems.find((one) => one.name === name))
+  return {
+    swellHeight: swell?.significantWaveHeight ?? null,
+    swellPeriod: swell?.peakPeriod ?? null,
+    swellTowardDegrees: swell?.toward ?? null,
+    swellTowardDegreesSd: swell?.headingSd ?? null,
+    swellSpeed: swell?.speed ?? null,
+    swellSpeedSd: swell?.speedSd ?? null,
+    windSeaHeight: windSea?.significantWaveHeight ?? null,
+    windSeaPeriod: windSea?.peakPeriod ?? null,
+    windSeaTowardDegrees: windSea?.toward ?? null,
+    windSeaTowardDegreesSd: windSea?.headingSd ?? null,
+    windSeaSpeed: windSea?.speed ?? null,
+    windSeaSpeedSd: windSea?.speedSd ?? null,
+  }
+}
+
 /** The columns of run 0; the revision is counted when the row is written. */
 export function estimateRow(
   figures: EstimateFigures,
@@ -78,6 +97,7 @@ export function estimateRow(
     ...columns,
     sensorsUsed: sensors.filter(({ used }) => used).length,
     ...leadingSystem(systems),
+    ...namedSystems(systems),
   }
 }
 

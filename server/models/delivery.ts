@@ -1,0 +1,45 @@
+import { DataTypes, Model } from 'sequelize'
+import type { CreationOptional, InferAttributes, InferCreationAttributes, Sequelize } from 'sequelize'
+import type { DeliveryState } from '../../shared/schemas/message.ts'
+
+/** One e-mail to one person. `accepted` is the mail server's word, `receivedAt` the person's. */
+export class Delivery extends Model<InferAttributes<Delivery>, InferCreationAttributes<Delivery>> {
+  declare id: CreationOptional<number>
+  declare messageId: number
+  declare personId: number
+  declare address: string
+  declare messageIdHeader: string
+  declare state: CreationOptional<DeliveryState>
+  declare attempts: CreationOptional<number>
+  declare nextAttemptAt: Date | null
+  declare leaseUntil: Date | null
+  declare smtpReply: string | null
+  declare acceptedAt: Date | null
+  declare receivedAt: Date | null
+  declare createdAt: Date
+}
+
+export const defineDelivery = (sequelize: Sequelize): void => {
+  Delivery.init(
+    {
+      id: { type: DataTypes.BIGINT.UNSIGNED, autoIncrement: true, primaryKey: true },
+      messageId: { type: DataTypes.BIGINT.UNSIGNED, allowNull: false },
+      personId: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
+      address: { type: DataTypes.STRING(254), allowNull: false },
+      messageIdHeader: { type: DataTypes.STRING(160), allowNull: false },
+      state: {
+        type: DataTypes.ENUM('queued', 'leased', 'accepted', 'refused', 'unknown', 'givenUp', 'merged'),
+        allowNull: false,
+        defaultValue: 'queued',
+      },
+      attempts: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false, defaultValue: 0 },
+      nextAttemptAt: DataTypes.DATE(3),
+      leaseUntil: DataTypes.DATE(3),
+      smtpReply: DataTypes.STRING(500),
+      acceptedAt: DataTypes.DATE(3),
+      receivedAt: DataTypes.DATE(3),
+      createdAt: { type: DataTypes.DATE(3), allowNull: false },
+    },
+    { sequelize, tableName: 'deliveries' },
+  )
+}
