@@ -15,6 +15,31 @@ const entrances = [
 
 const upperServer = '^server/(app\\.ts|index\\.ts|routes|sockets|commands|jobs|middleware|setup)'
 
+/** Services that every other may use. */
+const usedByAll = 'bus|audit|watchLog|problems|passwords|transaction'
+/** Services whose writes share a transaction with others: an imported file is stored with the record of it. */
+const together = { imports: 'readings' }
+
+const serviceRules = [
+  forbid(
+    'services-apart',
+    'A service calls another only where their writes share one transaction; other news goes over the bus.',
+    { path: '^server/services/([^/.]+)', pathNot: `^server/services/(${Object.keys(together).join('|')})(/|\\.ts$)` },
+    {
+      path: '^server/services/',
+      pathNot: ['^server/services/$1(/|\\.ts$)', `^server/services/(${usedByAll})(/|\\.ts$)`],
+    },
+  ),
+  ...Object.entries(together).map(([name, others]) =>
+    forbid(
+      `service-${name}-with-its-own`,
+      'Services that write together are named in this file.',
+      { path: `^server/services/${name}(/|\\.ts$)` },
+      { path: '^server/services/', pathNot: `^server/services/(${name}|${others}|${usedByAll})(/|\\.ts$)` },
+    ),
+  ),
+]
+
 module.exports = {
   forbidden: [
     forbid('no-cycles', 'Files that need each other are one file or want a third.', {}, { circular: true }),
@@ -201,24 +226,7 @@ module.exports = {
         ),
       },
     ),
-    forbid(
-      'services-apart',
-      'A service calls another only where their writes share one transaction; other news goes over the bus.',
-      { path: '^server/services/([^/.]+)', pathNot: '^server/services/imports\\.ts$' },
-      {
-        path: '^server/services/',
-        pathNot: ['^server/services/$1(/|\\.ts$)', '^server/services/(bus|audits?|watchLog|problems?|passwords|transaction)(/|\\.ts$)'],
-      },
-    ),
-    forbid(
-      'imports-store-readings',
-      'The record of a file and the readings in it are one transaction.',
-      { path: '^server/services/imports\\.ts$' },
-      {
-        path: '^server/services/',
-        pathNot: '^server/services/(readings/|(bus|audit|watchLog|problems|transaction)\\.ts$)',
-      },
-    ),
+    ...serviceRules,
     forbid(
       'mail-and-workers-know-shared',
       'They get what they need as arguments.',

@@ -116,5 +116,7 @@ export default tseslint.config(
     rules: { '@typescript-eslint/no-floating-promises': 'error' },
   },
   { files: ['server/**'], ignores: ['server/setup/**', 'server/commands/**'], rules: { 'no-console': 'error' } },
+  // One table, however long.
+  { files: ['.dependency-cruiser.cjs'], rules: { 'max-lines': 'off' } },
   { files: ['server/models/sql.ts'], rules: { 'no-restricted-syntax': ['error', ...everywhere] } },
 )
