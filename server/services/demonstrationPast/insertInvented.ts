@@ -4,8 +4,6 @@ import type { PastSeaState } from '../../../shared/demonstration/past.ts'
 import type { Parts } from '../../config/parts.ts'
 import { softwareVersion } from '../../config/softwareVersion.ts'
 import { execute } from '../../models/sql.ts'
-import { inForce } from '../estimates.ts'
-import type { StationTimeline } from '../estimates.ts'
 import { inventEstimate } from './inventedEstimate.ts'
 import { columns, rowText, sharedText } from './inventedRow.ts'
 
@@ -13,8 +11,17 @@ export const rowsAtOnce = 400
 /** The live path gets its turn for so long after each statement. */
 const pauseMilliseconds = 10
 
+/** What an estimate of that time names. */
+export interface VersionsThen {
+  settingsId: number
+  windowSeconds: number
+  deploymentId: number
+  sensorsDeployed: number
+}
+
 export interface Invention {
-  timeline: StationTimeline
+  /** `versionsAt`: null before the station had an array or settings. */
+  station: { id: number; code: string; versionsAt(time: number): VersionsThen | null }
   /** Rising in time. */
   batches: AsyncIterable<PastSeaState[]>
   /** What is as late or later stands already. ms since 1970 UTC, as all times here. */
@@ -49,28 +56,17 @@ export async function insertInvented(
 
 /** What stands before the station had an array or settings is left out. */
 async function insert({ sequelize }: Parts, invention: Invention, states: PastSeaState[]): Promise<void> {
-  const { timeline, madeAt, hash } = invention
+  const { station, madeAt, hash } = invention
   const escape = (text: string) => sequelize.escape(text)
   const rows: string[] = []
   for (const state of states) {
     const windowEndsAt = Date.parse(state.at)
-    const settings = inForce(timeline.settings, windowEndsAt)
-    const deployment = inForce(timeline.deployments, windowEndsAt)
-    if (!settings || !deployment) continue
-    const shared = sharedText(
-      {
-        stationId: timeline.id,
-        computedAt: madeAt,
-        deploymentId: deployment.id,
-        settingsId: settings.id,
-        softwareVersion,
-        resultDigest: hash,
-        sensorsDeployed: deployment.sensors.length,
-      },
-      escape,
-    )
-    const figures = inventEstimate(timeline.code, state)
-    rows.push(rowText(shared, windowEndsAt, settings.content.windowSeconds, figures, escape))
+    const versions = station.versionsAt(windowEndsAt)
+    if (!versions) continue
+    const { windowSeconds, ...named } = versions
+    const constant = { stationId: station.id, computedAt: madeAt, softwareVersion, resultDigest: hash }
+    const shared = sharedText({ ...constant, ...named }, escape)
+    rows.push(rowText(shared, windowEndsAt, windowSeconds, inventEstimate(station.code, state), escape))
   }
   if (rows.length > 0) await execute(sequelize, `INSERT IGNORE INTO estimates (${columns}) VALUES ${rows.join(',')}`)
 }

@@ -7,7 +7,6 @@ import type { PastSeaState } from '../../../shared/demonstration/past.ts'
 import { normalise, radiansFromEast } from '../../../shared/directions.ts'
 import type { EstimateResult, WaveSystem } from '../../../shared/schemas/estimate.ts'
 import { groupSpeed } from '../../../shared/waves/dispersion.ts'
-import type { EstimateFigures } from '../estimates.ts'
 import { hashName, windowError } from './chance.ts'
 
 /** Of H_m0 over 20 min at a peak period of 10 s; it grows with the square root of the period. */
@@ -24,8 +23,14 @@ const energyShare = 0.903
 const gravity = 9.81
 const waterDensity = 1025
 
+export type InventedFigures = Pick<
+  EstimateResult,
+  'resolved' | 'reason' | 'qualityFlag' | 'completeness' | 'waterDepth' | 'waterDepthSource' | 'systems'
+> &
+  Together
+
 /** `name` seeds the errors: one a station. */
-export function inventEstimate(name: string, state: PastSeaState): EstimateFigures {
+export function inventEstimate(name: string, state: PastSeaState): InventedFigures {
   const minute = Math.round(Date.parse(state.at) / 60_000)
   const systems = state.systems
     .map((system) => inventSystem(`${name}/${system.name}`, system, minute))
@@ -38,10 +43,8 @@ export function inventEstimate(name: string, state: PastSeaState): EstimateFigur
     completeness: 1,
     waterDepth: state.waterDepth,
     waterDepthSource: 'level',
-    surgeHeight: null,
     ...together(systems, state.waterDepth),
     systems,
-    sensors: [],
   }
 }
 

@@ -45,7 +45,7 @@ export const sharedText = (shared: SharedColumns, escape: (text: string) => stri
     shared.sensorsDeployed,
   ].join(',')
 
-function namedNumbers(systems: EstimateFigures['systems'], name: 'swell' | 'wind sea'): (number | null | undefined)[] {
+function namedNumbers(systems: InventedFigures['systems'], name: 'swell' | 'wind sea'): (number | null | undefined)[] {
   const one = systems.find((system) => system.name === name)
   return [one?.significantWaveHeight, one?.peakPeriod, one?.toward, one?.headingSd, one?.speed, one?.speedSd]
 }

@@ -7,7 +7,6 @@ import { createInterface } from 'node:readline'
 import { z } from 'zod'
 import { pastManifest, pastSeaState } from '../../../shared/demonstration/past.ts'
 import type { PastManifest, PastSeaState } from '../../../shared/demonstration/past.ts'
-import type { ImportRow } from '../imports.ts'
 
 export interface Past {
   folder: string
@@ -70,7 +69,8 @@ export async function readStretches({ folder }: Past, file: string, length: numb
   return { letters: letters ?? [], stretches }
 }
 
-export function* rowsOf({ lines }: Stretch): Generator<ImportRow> {
+/** As an import takes them: ms since 1970 UTC, and a value a sensor. */
+export function* rowsOf({ lines }: Stretch): Generator<{ timeMs: number; values: (number | null)[] }> {
   for (const line of lines) {
     const [time, ...cells] = line.split(',')
     yield { timeMs: Date.parse(time ?? ''), values: cells.map((cell) => (cell === '' ? null : Number(cell))) }
