@@ -11,8 +11,12 @@ const { version } = z.object({ version: z.string() }).parse(manifest)
 /** Name of the commit, with a mark where sources were changed since; `dev` outside a clone. */
 function sources(): string {
   try {
-    const options = { cwd: folder, encoding: 'utf8', stdio: ['ignore', 'pipe', 'ignore'], timeout: 2_000 } as const
-    return execFileSync('git', ['describe', '--always', '--dirty', '--abbrev=9', '--exclude=*'], options).trim()
+    return execFileSync('git', ['describe', '--always', '--dirty', '--abbrev=9', '--exclude=*'], {
+      cwd: folder,
+      encoding: 'utf8',
+      stdio: ['ignore', 'pipe', 'ignore'],
+      timeout: 2_000,
+    }).trim()
   } catch {
     return 'dev'
   }
