@@ -19,7 +19,8 @@ export function listenToAnswers(next: Listeners): void {
   listeners = next
 }
 
-const answerTimeoutMs = 20_000
+/** Longer than the server lets any request take. */
+const answerTimeoutMs = 30_000
 
 export async function request<T extends z.ZodType>(
   method: Method,

@@ -1,6 +1,6 @@
 import { flushPromises, mount } from '@vue/test-utils'
 import { createPinia, setActivePinia } from 'pinia'
-import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
+import { afterEach, beforeAll, beforeEach, describe, expect, it, vi } from 'vitest'
 import { createMemoryHistory } from 'vue-router'
 import App from '../../../src/App.vue'
 import { createOffingRouter } from '../../../src/router/index.ts'
@@ -23,6 +23,10 @@ async function openAt(path: string) {
   return router
 }
 
+// Pages are fetched when they are first opened; on a busy machine that is the longest part of a test.
+beforeAll(async () => {
+  await Promise.all([import('../../../src/pages/WatchPage.vue'), import('../../../src/pages/SignInPage.vue')])
+}, 60_000)
 beforeEach(() => {
   server = new FakeServer()
     .install()
@@ -121,6 +125,18 @@ describe('the frame of a signed-in person', () => {
     await flushPromises()
     expect(useSession().state).toBe('in')
     expect(FakeWebSocket.opened).toHaveLength(2)
+  })
+
+  it('does not let a person believe to be signed out when no answer came', async () => {
+    await openAt('/watch')
+    server.on('/api/session', () => Promise.reject(new TypeError('no route to the server')))
+    document.querySelector<HTMLButtonElement>('button.account')?.click()
+    await flushPromises()
+    const signOut = [...document.querySelectorAll('button')].find((button) => button.textContent === 'Sign out')
+    signOut?.click()
+    await flushPromises()
+    expect(document.body.textContent).toContain('Not signed out')
+    expect(useSession().state).toBe('in')
   })
 
   it('says so where an address leads nowhere', async () => {
