@@ -9,6 +9,7 @@ import { sampleOf } from './recordingStation.ts'
 import type { History } from './recordingStation.ts'
 
 type Check = FaultReport['checks'][number]
+type Described = Pick<DemonstrationStation, 'code' | 'sampleRate'> & { sensors: { letter: string }[] }
 
 async function idOf(sequelize: Sequelize, code: string): Promise<number> {
   const rows = await select<{ id: number }>(sequelize, 'SELECT id FROM stations WHERE code = :code', { code })
@@ -16,11 +17,7 @@ async function idOf(sequelize: Sequelize, code: string): Promise<number> {
 }
 
 /** Acknowledged: there once, with its value. Sent and not acknowledged: there once or not at all. Nothing else. */
-export async function checkHistory(
-  sequelize: Sequelize,
-  station: DemonstrationStation,
-  history: History,
-): Promise<Check[]> {
+export async function checkHistory(sequelize: Sequelize, station: Described, history: History): Promise<Check[]> {
   const { code, sampleRate, sensors } = station
   const stationId = await idOf(sequelize, code)
   const from = history.firstSecond * 1000
@@ -53,7 +50,7 @@ export async function checkHistory(
 /** A station whose stream never ended must have every sample of the span, once. */
 export async function checkUnbroken(
   sequelize: Sequelize,
-  { code, sampleRate, sensors }: DemonstrationStation,
+  { code, sampleRate, sensors }: Described,
   from: number,
   to: number,
 ): Promise<Check[]> {
