@@ -14,8 +14,11 @@ import { createPastProgress } from './computeEstimates/pastProgress.ts'
 import { takeTurn } from './computeEstimates/turn.ts'
 import type { Turn } from './computeEstimates/turn.ts'
 
-/** A window takes a fraction of a second; a thread that is silent for so long hangs. */
-const deadlineMs = 30_000
+/**
+ * A window takes a second at most; a thread that is silent for so long hangs, even on a busy machine. Two tries stay
+ * within the two minutes for which readings that were just read are left uncompacted.
+ */
+const deadlineMs = 50_000
 /** The grace of most stations: the second of the minute at which time alone makes a window due. */
 const wakeAtSecond = 10
 
