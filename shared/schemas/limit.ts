@@ -294,7 +294,8 @@ export const backTestEpisode = z.object({
   /** Null: it would still be active at the end. */
   clearedAt: time.nullable(),
   seconds: z.number(),
-  extreme: z.number(),
+  /** Null for a bearing. */
+  extreme: z.number().nullable(),
   extremeAt: time,
 })
 export const backTestRun = z.object({

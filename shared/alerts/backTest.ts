@@ -1,0 +1,203 @@
+/**
+ * What a condition would have done over stored figures: the same comparisons and delays as the live judgement, over
+ * packed series. Pure; times are ms since 1970 UTC.
+ */
+import { opposite } from '../directions.ts'
+import type { Comparison, Condition, QuantityKey } from '../schemas/limit.ts'
+import { joinVerdicts, judgeComparison } from './compare.ts'
+import type { Verdict } from './compare.ts'
+import { atRest, follow } from './follow.ts'
+import type { Track } from './follow.ts'
+import { heightLeft, quantityOf } from './quantities.ts'
+import { spanChecker } from './timeSpan.ts'
+
+/** Columns of the packed days. */
+export type StoredFigure =
+  | 'significantWaveHeight' | 'significantWaveHeightSd' | 'peakPeriod' | 'meanPeriod' | 'energyPeriod' | 'energyFlux'
+  | 'surgeHeight' | 'height' | 'period' | 'towardDegrees' | 'speed' | 'swellHeight' | 'swellPeriod' | 'swellTowardDegrees'
+  | 'swellSpeed' | 'windSeaHeight' | 'windSeaPeriod' | 'windSeaTowardDegrees' | 'windSeaSpeed' // prettier-ignore
+
+const stored: Partial<Record<QuantityKey, StoredFigure>> = {
+  significantWaveHeight: 'significantWaveHeight',
+  peakPeriod: 'peakPeriod',
+  meanPeriod: 'meanPeriod',
+  energyPeriod: 'energyPeriod',
+  energyFlux: 'energyFlux',
+  surgeHeight: 'surgeHeight',
+  leadingHeight: 'height',
+  leadingPeriod: 'period',
+  leadingFrom: 'towardDegrees',
+  leadingSpeed: 'speed',
+  swellHeight: 'swellHeight',
+  swellPeriod: 'swellPeriod',
+  swellFrom: 'swellTowardDegrees',
+  swellSpeed: 'swellSpeed',
+  windSeaHeight: 'windSeaHeight',
+  windSeaPeriod: 'windSeaPeriod',
+  windSeaFrom: 'windSeaTowardDegrees',
+  windSeaSpeed: 'windSeaSpeed',
+}
+
+/** Null for quantities of which no series is kept: data health. */
+export const storedFigureOf = (key: QuantityKey): StoredFigure | null => stored[key] ?? null
+
+const otherOf: Partial<Record<QuantityKey, StoredFigure>> = {
+  swellHeight: 'windSeaHeight',
+  windSeaHeight: 'swellHeight',
+}
+
+/** Every series that a condition needs. */
+export function figuresNeeded(condition: Condition): StoredFigure[] {
+  const needed = new Set<StoredFigure>(['significantWaveHeight', 'significantWaveHeightSd'])
+  for (const { quantity } of condition.comparisons) {
+    for (const figure of [storedFigureOf(quantity), otherOf[quantity]]) if (figure) needed.add(figure)
+  }
+  return [...needed]
+}
+
+/** Windows of one even step, such as a packed day: slot n ends at `startsAt` + n × `stepMs`. */
+export interface Stretch {
+  startsAt: number
+  stepMs: number
+  /** Flags of the height as `flagOf` gives them; 0 where there was no window. */
+  flags: Uint8Array
+  /** NaN where there is none. Directions are toward, degrees true. */
+  series: Partial<Record<StoredFigure, Float32Array>>
+}
+
+export interface Episode {
+  raisedAt: number
+  /** Null: still active at the end. */
+  clearedAt: number | null
+  /** Of what the first comparison compares; null for a bearing. */
+  extreme: number | null
+  extremeAt: number
+}
+
+export interface BackTest {
+  episodes: Episode[]
+  judgedMs: number
+}
+
+interface Judge {
+  ask(stretch: Stretch, slot: number): Verdict
+  /** What it compared last. */
+  compared: number
+}
+
+const heights = /Height$/
+
+/** Relative error of a quantity from the total height's, as the live reading has it. */
+function sdOf(key: QuantityKey, value: number, stretch: Stretch, slot: number): number {
+  const total = stretch.series.significantWaveHeight?.[slot] ?? NaN
+  const relative = (stretch.series.significantWaveHeightSd?.[slot] ?? NaN) / total
+  if (key === 'energyFlux') return 2 * relative * value
+  return heights.test(key) && key !== 'surgeHeight' ? relative * value : NaN
+}
+
+/** The value of an earlier window, looked up by time in the stretches that were passed. */
+type Earlier = (figure: StoredFigure, at: number) => number
+
+function judgeOf(comparison: Comparison, condition: Condition, earlier: Earlier): Judge {
+  const key = comparison.quantity
+  const figure = storedFigureOf(key)
+  const { isCircular } = quantityOf(key)
+  const isOfSystem = /^(leading|swell|windSea)Height$/.test(key)
+  const other = otherOf[key]
+  if (!figure) return { ask: () => 'unknown', compared: NaN }
+  const rise = comparison.kind === 'above' ? comparison.riseOverSeconds : null
+  const judge: Judge = { ask, compared: NaN }
+  return judge
+
+  function ask(stretch: Stretch, slot: number): Verdict {
+    if (!figure) return 'unknown'
+    let value = stretch.series[figure]?.[slot] ?? NaN
+    let sd = Number.isNaN(value) ? NaN : sdOf(key, value, stretch, slot)
+    let atMost = NaN
+    if (isCircular) value = opposite(value)
+    if (rise !== null) {
+      const at = stretch.startsAt + slot * stretch.stepMs
+      const before = earlier(figure, at - rise * 1000)
+      sd = Math.hypot(sd, sdOf(key, before, stretch, slot))
+      value -= before
+    } else if (isOfSystem && Number.isNaN(value)) {
+      const total = stretch.series.significantWaveHeight?.[slot] ?? NaN
+      atMost = heightLeft(total, other ? (stretch.series[other]?.[slot] ?? NaN) : NaN)
+      sd = stretch.series.significantWaveHeightSd?.[slot] ?? NaN
+    }
+    judge.compared = value
+    return judgeComparison(comparison, value, sd, atMost, condition.clearSigmas)
+  }
+}
+
+function createEarlier(stretches: Stretch[]): Earlier {
+  let index = 0
+  return (figure, at) => {
+    while (index > 0 && stretches[index].startsAt > at) index -= 1
+    while (index + 1 < stretches.length && stretches[index + 1].startsAt <= at) index += 1
+    const stretch = stretches[index]
+    const slot = (at - stretch.startsAt) / stretch.stepMs
+    const isThere = Number.isInteger(slot) && slot >= 0 && slot < stretch.flags.length && isUsable(stretch.flags[slot])
+    return isThere ? (stretch.series[figure]?.[slot] ?? NaN) : NaN
+  }
+}
+
+const isUsable = (flag: number): boolean => flag > 0 && flag < 4
+
+/** Stretches rising in time. `from`: what ends before only counts as an earlier value. */
+export function backTest(condition: Condition, stretches: Stretch[], from: number, timeZone: string): BackTest {
+  const earlier = createEarlier(stretches)
+  const judges = condition.comparisons.map((one) => judgeOf(one, condition, earlier))
+  const isIn = spanChecker(condition.when, timeZone)
+  const isCircular = condition.comparisons[0].kind === 'sector'
+  const isBelow = condition.comparisons[0].kind === 'below'
+  const worst = condition.worstQuality
+  const episodes: Episode[] = []
+  let open: Episode | null = null
+  let judgedMs = 0
+  let track: Track = atRest
+  for (const stretch of stretches) {
+    const { startsAt, stepMs, flags } = stretch
+    for (let slot = 0; slot < flags.length; slot += 1) {
+      const at = startsAt + slot * stepMs
+      if (at < from || !isUsable(flags[slot]) || flags[slot] > worst) continue
+      let verdict: Verdict = 'raise'
+      for (const judge of judges) verdict = joinVerdicts(verdict, judge.ask(stretch, slot))
+      if (!isIn(at)) verdict = 'clear'
+      if (verdict === 'unknown') continue
+      judgedMs += stepMs
+      const isIdle = !track.isActive && verdict !== 'raise' && track.pendingSince === null
+      if (isIdle) {
+        // Nothing but the newest moment changes, so that a calm year makes no objects.
+        if (track.lastKnownAt === null || track === atRest) track = { ...atRest }
+        track.lastKnownAt = at
+        continue
+      }
+      track = { ...follow(track, verdict, at, condition) }
+      if (track.isActive && !open) {
+        open = { raisedAt: at, clearedAt: null, extreme: null, extremeAt: at }
+        episodes.push(open)
+      }
+      if (open && !isCircular) noteExtreme(open, judges[0].compared, at, isBelow)
+      if (open && !track.isActive) {
+        open.clearedAt = at
+        open = null
+      }
+    }
+  }
+  return { episodes, judgedMs }
+}
+
+function noteExtreme(episode: Episode, value: number, at: number, isBelow: boolean): void {
+  const isFurther = episode.extreme === null || (isBelow ? value < episode.extreme : value > episode.extreme)
+  if (Number.isNaN(value) || !isFurther) return
+  episode.extreme = value
+  episode.extremeAt = at
+}
+
+/** The condition with its first comparison moved by so much (SI): raise and clear keep their distance. */
+export function shifted(condition: Condition, by: number): Condition {
+  const [first, ...rest] = condition.comparisons
+  if (first.kind === 'sector') return condition
+  return { ...condition, comparisons: [{ ...first, raise: first.raise + by, clear: first.clear + by }, ...rest] }
+}
