@@ -1,7 +1,7 @@
 /** The past's readings: a stretch of every station, then the stretch before it. */
 import { markTakenIn, readStretches, rowsOf, takenInFrom } from '../../services/demonstrationPast.ts'
 import { importReadings } from '../../services/imports.ts'
-import type { Undertaking } from './takeIn.ts'
+import type { Undertaking } from './undertaking.ts'
 
 const stretchMs = 2 * 3_600_000
 

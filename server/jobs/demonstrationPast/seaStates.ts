@@ -13,7 +13,7 @@ import type { VersionsThen } from '../../services/demonstrationPast.ts'
 import { inForce } from '../../services/estimates.ts'
 import type { StationTimeline } from '../../services/estimates.ts'
 import { dayMs, dayOf, firstUnpackedDay, notePacked, rebuildSeriesDay } from '../../services/series.ts'
-import type { Undertaking } from './takeIn.ts'
+import type { Undertaking } from './undertaking.ts'
 
 /** The live path gets its turn between days that are packed. */
 const pauseMilliseconds = 5

@@ -5,21 +5,10 @@
 import type { Parts } from '../../config/parts.ts'
 import type { Past } from '../../services/demonstrationPast.ts'
 import { readTimelines } from '../../services/estimates.ts'
-import type { StationTimeline } from '../../services/estimates.ts'
 import { failJob, finishJob, reportProgress } from '../../services/longJobs.ts'
 import { takeInReadings } from './readings.ts'
 import { takeInSeaStates } from './seaStates.ts'
-
-export type PastStation = Past['manifest']['stations'][number] & { timeline: StationTimeline }
-
-/** What a step is given beside the past: its stations, how to say how far it is (0 to 1), whether to stop. */
-export interface Undertaking {
-  parts: Parts
-  past: Past
-  stations: PastStation[]
-  report(progress: number, detail: string): Promise<void>
-  isHalted(): boolean
-}
+import type { PastStation } from './undertaking.ts'
 
 /** What of the whole the readings are, in the progress that is shown. */
 const readingsShare = 0.4
