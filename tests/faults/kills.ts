@@ -23,7 +23,7 @@ export function planKills(seed: number, rounds: number, longestPause: number): K
 }
 
 /** So many more frames must have been acknowledged before the next kill: it has to hit work, not recovery alone. */
-const framesBetween = 20
+const framesBetween = 8
 const patience = 45_000
 
 /** What is killed is started again at once, as a service manager would. */
