@@ -3,10 +3,13 @@ import { degreesTrue } from '../directions.ts'
 import type { EstimateResult, QualityFlag, QualityTest, WaveSystem } from '../schemas/estimate.ts'
 import type { ArraySpectra } from './arraySpectra.ts'
 import { closureTest, lagFit, subArrayFits, traceSpeeds } from './arrayLags.ts'
+import type { LagFit } from './arrayLags.ts'
 import { selectGroups } from './bandMatrices.ts'
 import { phaseSpeed } from './dispersion.ts'
 import { refuse } from './blankResult.ts'
 import type { PreparedArray } from './preparedArray.ts'
+import { greatestNoise } from './sensorFaults.ts'
+import type { SlownessFit } from './slownessFit.ts'
 import { systematicVariance } from './systematicError.ts'
 import { describeTrain } from './trainVector.ts'
 import type { TrainVector } from './trainVector.ts'
@@ -18,7 +21,12 @@ export interface SeaDoubts {
   lagResidualRms: number | null
   runnerUp: { direction: number; speedRatio: number; ratio: number } | null
   ambiguous: boolean
+  /** ln of the noise needed over its floor, when plane waves with spread do not explain the coherences; else null. */
+  unexplained: number | null
 }
+
+/** Name of the test that fails when the vector had to be taken from the lags. */
+export const coherenceTest = 'coherence model'
 
 /** Ratio of measured to linear speed that a current, spread or depth of usual size explains. */
 const usualRatio = { from: 0.85, to: 1.2 }
@@ -46,17 +54,19 @@ export function describeSea(
     return lagFit(band, frame, train.direction, train.speed)
   })
   const order = trains.map((_, n) => n).sort((a, b) => trains[b].m0 - trains[a].m0)
+  const explained = doubts.unexplained === null && !lagsDisagree(trains, measured)
   const systems = order.map((n, place): WaveSystem => {
     const train = trains[n]
     const extra = systematicVariance(ordered, frame.x, frame.y, frame.aperture, train.direction, train.speed)
     const lagged = measured[n].fit
+    const told = !explained && lagged ? toldByLags(train, lagged) : train
     return describeTrain(
       {
-        ...train,
+        ...told,
         measuredSpeed: lagged && train.spread !== null ? 1 / Math.hypot(lagged.x, lagged.y) : train.measuredSpeed,
-        directionVariance: train.directionVariance + extra.direction,
-        logSpeedVariance: train.logSpeedVariance + extra.logSpeed,
-        cross: train.cross + extra.cross,
+        directionVariance: told.directionVariance + extra.direction,
+        logSpeedVariance: told.logSpeedVariance + extra.logSpeed,
+        cross: told.cross + extra.cross,
       },
       place + 1,
       frame.axis,
@@ -66,7 +76,12 @@ export function describeSea(
   })
   const lead = order[0]
   const leading = measured[lead]
-  const tests = [...result.tests, closureTest(leading.lags, ids.length), ...seaTests(result, systems[0])]
+  const tests = [
+    ...result.tests,
+    closureTest(leading.lags, ids.length),
+    ...seaTests(result, systems[0]),
+    ...(explained ? [] : [unexplainedTest(doubts)]),
+  ]
   const other = doubts.runnerUp
   const described: EstimateResult = {
     ...result,
@@ -86,6 +101,47 @@ export function describeSea(
   }
   if (doubts.ambiguous) return refuse(described, 'ambiguous')
   return { ...described, qualityFlag: overallFlag(described) }
+}
+
+/**
+ * The vector of the plain lags, for a sea whose coherences the model does not explain: phases stay true where coherence is lost for other
+ * reasons than spread. Its distance from the fit is added to the error, and no spread is claimed.
+ */
+function toldByLags(train: TrainVector, lagged: SlownessFit): TrainVector {
+  const speed = 1 / Math.hypot(lagged.x, lagged.y)
+  const direction = Math.atan2(lagged.y, lagged.x)
+  const turn = 2 * Math.sin((direction - train.direction) / 2)
+  return {
+    ...train,
+    direction,
+    speed,
+    spread: null,
+    directionVariance: train.directionVariance + 0.25 * turn * turn,
+    logSpeedVariance: train.logSpeedVariance + 0.25 * Math.log(speed / train.speed) ** 2,
+  }
+}
+
+/** Headings of lags and fit this far apart, rad, cannot both be right: two seas at one frequency, or coherence lost otherwise. */
+const greatestTurn = 0.2
+
+/** Only a single train can be held against plain lags; where seas cross, lags are a compromise. */
+function lagsDisagree(trains: readonly TrainVector[], measured: readonly LagFit[]): boolean {
+  const lagged = measured[0].fit
+  if (trains.length !== 1 || trains[0].spread === null || !lagged) return false
+  const turn = 2 * Math.abs(Math.sin((Math.atan2(lagged.y, lagged.x) - trains[0].direction) / 2))
+  return turn > greatestTurn && turn > 5 * Math.sqrt(trains[0].directionVariance)
+}
+
+function unexplainedTest({ unexplained }: SeaDoubts): QualityTest {
+  const value = unexplained === null ? null : Math.exp(unexplained)
+  const limit = value === null ? null : Math.exp(greatestNoise)
+  return {
+    test: coherenceTest,
+    flag: 3,
+    value,
+    limit,
+    detail: 'one plane sea with spread does not explain the record: the vector is that of the lags',
+  }
 }
 
 function seaTests(result: EstimateResult, leading: WaveSystem): QualityTest[] {
@@ -112,7 +168,7 @@ function seaTests(result: EstimateResult, leading: WaveSystem): QualityTest[] {
 
 /** Suspect (3) when a sensor was left out, a geometry fault was found or a test of the sea is suspect; else good. */
 function overallFlag(result: EstimateResult): QualityFlag {
-  const geometry = ['lag closure', 'dispersion ratio', 'height over depth', 'sensor phases']
+  const geometry = ['lag closure', 'dispersion ratio', 'height over depth', 'sensor phases', coherenceTest]
   const doubtful = result.tests.some((test) => geometry.includes(test.test) && test.flag !== 1)
   return doubtful || result.sensors.some((sensor) => !sensor.used) ? 3 : 1
 }

@@ -11,13 +11,16 @@ import { checkArray, prepareArray } from './preparedArray.ts'
 import { findRandomSea } from './randomSea.ts'
 import type { RandomSea } from './randomSea.ts'
 import { findRegularSea } from './regularSea.ts'
-import { describeSea } from './describeSea.ts'
+import { coherenceTest, describeSea } from './describeSea.ts'
 import { blameFaults, doubtGeometry, judgeSensors } from './sensorVerdicts.ts'
 import type { FaultVerdict } from './sensorVerdicts.ts'
 import type { ArrayWindow } from './window.ts'
 
 /** ln L gained over unrelated sensors below which no wave is claimed; noise alone loses by this measure. */
 const leastGain = 12
+/** Shorter records give no estimate, s; nor do those with fewer waves. */
+const leastDuration = 60
+const leastWaves = 15
 /** A heading less sure than this is none, degrees. */
 const greatestHeadingSd = 25
 
@@ -28,13 +31,14 @@ const greatestHeadingSd = 25
 export function estimate(window: ArrayWindow): EstimateResult {
   const checked = checkArray(window)
   const faults: FaultVerdict[] = []
+  let judging = true
   for (;;) {
     const leftOut = faults.map((verdict) => verdict.sensor)
     const prepared = prepareArray(window, checked, leftOut)
     const blank = blameFaults(blankResult(window, prepared), faults)
     if (prepared.usable.length === 0) return refuse(blank, refusalForData(prepared))
     const spectra = arraySpectra(window, prepared)
-    if (!spectra) return refuse(blank, 'too-little-data')
+    if (!spectra || spectra.duration < leastDuration) return refuse(blank, 'too-little-data')
     const result = addHeights(blank, window, prepared, spectra)
     if (prepared.usable.length < 3)
       return refuse(result, faults.length > 0 ? 'geometry-doubtful' : refusalForData(prepared))
@@ -45,10 +49,18 @@ export function estimate(window: ArrayWindow): EstimateResult {
     if (regular) return describeSea(result, window, prepared, spectra, [regular.train], regular.doubts)
     const sea = findRandomSea(spectra, prepared.frame, window.waterDepth, window.settings.gravity)
     if (!sea || sea.gain < leastGain || headingSd(sea) > greatestHeadingSd) return refuse(result, 'no-resolvable-wave')
-    const { fault, ambiguous } = judgeSensors(window, prepared, sea)
-    if (fault) faults.push(fault)
-    else if (ambiguous) return refuse(doubtGeometry(result), 'geometry-doubtful')
-    else return describeSea(result, window, prepared, spectra, sea.trains, sea.doubts)
+    if (spectra.duration * sea.trains[0].peak < leastWaves) return refuse(result, 'too-little-data')
+    const { fault, ambiguous } = judging ? judgeSensors(window, prepared, sea) : { fault: null, ambiguous: false }
+    if (fault) {
+      faults.push(fault)
+      continue
+    }
+    if (ambiguous) return refuse(doubtGeometry(result), 'geometry-doubtful')
+    const described = describeSea(result, window, prepared, spectra, sea.trains, sea.doubts)
+    if (faults.length === 0 || !described.tests.some((test) => test.test === coherenceTest)) return described
+    // Without the sensor blamed the sea is still not understood, so it was not the sensor.
+    faults.length = 0
+    judging = false
   }
 }
 

@@ -16,7 +16,7 @@ export interface PeakFit {
   density: number
 }
 
-const gammas = [1, 1.6, 2.4, 3.3, 4.5, 6.5, 10]
+const gammas = [1, 1.8, 3.3, 6, 10]
 
 /**
  * Peak frequency by Whittle's likelihood of a JONSWAP shape over noise: Σ ν [ln s + d/s]. Steadier than the highest bin of a
@@ -39,7 +39,7 @@ export function fitPeak(
     if (trial.cost < best.cost) best = { ...trial, peak, gamma }
     return trial.cost
   }
-  const steps = 18
+  const steps = 12
   for (const gamma of gammas) for (let n = -steps; n <= steps; n++) costAt(near * Math.exp((0.2 * n) / steps), gamma)
   let width = 0.2 / steps
   for (let round = 0; round < 3; round++) {
@@ -61,6 +61,8 @@ export function fitPeak(
   return { peak: centre * Math.exp(shift * h), gamma, density: best.density }
 }
 
+const shapes = new Float64Array(4096)
+
 function costOf(
   frequency: ArrayLike<number>,
   density: ArrayLike<number>,
@@ -71,14 +73,17 @@ function costOf(
   from: number,
   to: number,
 ): { cost: number; density: number } {
-  // Scale in two passes: a weighted ratio, then one step of the likelihood.
+  let first = 0
+  while (first < frequency.length && frequency[first] < from) first++
+  let end = first
+  // Scale in two passes: a weighted ratio, then steps of the likelihood.
   let above = 0
   let below = 0
-  for (let g = 0; g < frequency.length; g++) {
-    if (frequency[g] < from || frequency[g] > to) continue
-    const shape = jonswapShape(frequency[g], peak, gamma)
-    above += averages[g] * shape * (density[g] - noise[g])
-    below += averages[g] * shape * shape
+  for (; end < frequency.length && frequency[end] <= to; end++) {
+    const shape = jonswapShape(frequency[end], peak, gamma)
+    shapes[end - first] = shape
+    above += averages[end] * shape * (density[end] - noise[end])
+    below += averages[end] * shape * shape
   }
   if (!(below > 0) || !(above > 0)) return { cost: Infinity, density: 0 }
   let scale = above / below
@@ -87,12 +92,12 @@ function costOf(
     let gradient = 0
     let information = 0
     cost = 0
-    for (let g = 0; g < frequency.length; g++) {
-      if (frequency[g] < from || frequency[g] > to) continue
-      const shape = scale * jonswapShape(frequency[g], peak, gamma)
+    for (let g = first; g < end; g++) {
+      const shape = scale * shapes[g - first]
       const model = shape + noise[g] + 1e-12
-      cost += averages[g] * (Math.log(model) + density[g] / model)
-      gradient += (averages[g] * shape * (density[g] - model)) / (model * model)
+      const ratio = density[g] / model
+      if (pass === 2) cost += averages[g] * (Math.log(model) + ratio)
+      gradient += (averages[g] * shape * (ratio - 1)) / model
       information += (averages[g] * shape * shape) / (model * model)
     }
     if (pass < 2) scale *= Math.exp(Math.max(-1, Math.min(1, gradient / (information + 1e-9))))

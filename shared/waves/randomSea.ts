@@ -3,10 +3,12 @@ import type { ArraySpectra } from './arraySpectra.ts'
 import { noiseDensity } from './bandMatrices.ts'
 import type { ArrayFrame } from './arrayGeometry.ts'
 import { sandwichCovariance } from './fitCovariance.ts'
+import { noiseIndex } from './seaModel.ts'
+import { greatestNoise } from './sensorFaults.ts'
 import { systemVector } from './systemVector.ts'
 import type { SeaDoubts } from './describeSea.ts'
 import type { TrainVector } from './trainVector.ts'
-import { findSystems } from './waveSystems.ts'
+import { findSystems, unrelatedLikelihood } from './waveSystems.ts'
 import type { FoundSystems } from './waveSystems.ts'
 
 export interface RandomSea {
@@ -14,6 +16,8 @@ export interface RandomSea {
   trains: TrainVector[]
   /** ln L of the fit over that of unrelated sensors with the same energies. */
   gain: number
+  /** ln of the noise that the fit needs, over the floor above the waves: about 0 when plane waves with spread explain the record. */
+  noise: number
   doubts: SeaDoubts
 }
 
@@ -48,27 +52,20 @@ export function findRandomSea(
   })
   const { runnerUp } = found
   const ambiguous = runnerUp !== null && runnerUp.ratio > ambiguousRatio && runnerUp.likelihoodLoss < ambiguousLoss
+  const noise = found.fit.state.parameters[noiseIndex(found.fit.model)]
+  const unexplained = noise > greatestNoise ? noise : null
   return {
     found,
     trains,
-    gain: found.fit.evaluation.dataValue - unrelatedLikelihood(found),
-    doubts: { lagResidualRms: null, runnerUp, ambiguous },
+    gain: found.fit.evaluation.dataValue - unrelatedLikelihood(found.fit.model.bands),
+    noise,
+    doubts: { lagResidualRms: null, runnerUp, ambiguous, unexplained },
   }
 }
 
 /** Another cycle whose beam is so nearly as strong and whose fit loses so little ln L cannot be told from the best. */
 const ambiguousRatio = 0.87
 const ambiguousLoss = 6
-
-/** ln L of sensors that share nothing but have their own energies. */
-function unrelatedLikelihood({ fit }: FoundSystems): number {
-  const { bands } = fit.model
-  const m = bands.sensors
-  let value = 0
-  for (let g = 0; g < bands.groups; g++)
-    for (let i = 0; i < m; i++) value -= bands.averages[g] * (Math.log(bands.real[g * m * m + i * m + i] + 1e-300) + 1)
-  return value
-}
 
 /** Energy of each train: its share at the frequencies fitted, everything below to the longest, everything above to the shortest. */
 function trainEnergies(spectra: ArraySpectra, found: FoundSystems) {

@@ -71,7 +71,15 @@ export function findRegularSea(window: ArrayWindow, prepared: PreparedArray, spe
     samplingError: null,
     band: { from: line.frequency - 1 / duration, to: line.frequency + 1 / duration },
   }
-  return { train, doubts: { lagResidualRms: wave.residual, runnerUp: null, ambiguous: wave.runnerUp > ambiguousFrom } }
+  return {
+    train,
+    doubts: {
+      lagResidualRms: wave.residual,
+      runnerUp: null,
+      ambiguous: wave.runnerUp > ambiguousFrom,
+      unexplained: null,
+    },
+  }
 }
 
 function turnBack(real: Float64Array, imag: Float64Array, m: number, angle: number): void {

@@ -3,6 +3,7 @@
  * gradient and Fisher's information. ln L = −Σ_g ν_g [ln det R_g + tr(R_g⁻¹ C_g)]; score ν tr((R⁻¹CR⁻¹ − R⁻¹) ∂R);
  * information ν tr(R⁻¹ ∂_a R R⁻¹ ∂_b R) (Slepian 1954, Bangs 1971). The densities of each group are eliminated (Schur).
  */
+import { multiply, scaled, traceOfProduct, turnRate, unturn } from './complexProducts.ts'
 import { dopplerWaveNumber } from './dopplerDispersion.ts'
 import { invertHermitian } from './hermitian.ts'
 import type { SeaModel, SeaState } from './seaModel.ts'
@@ -27,6 +28,11 @@ export interface Evaluation {
   dataValue: number
   /** Each group's share of it. */
   groupValue: Float64Array
+  /**
+   * For each group and sensor, real and imaginary part of z_s = Σ_{k≠s} C_sk (R⁻¹)_ks: turning the sensor by a phase a changes the
+   * group's ln L to −2ν Re(e^{−ia} z_s) and a constant.
+   */
+  turn: Float64Array
   /** Gradient and information of the parameters after elimination of the densities. */
   gradient: Float64Array
   information: Float64Array
@@ -73,12 +79,16 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
   const linkLocal = Int32Array.from({ length: count }, (_, a) => localOf(a, systems))
   const linkFactor = new Float64Array(count).fill(1)
   const block = new Float64Array(count * count)
-  // −k / C_g in still water of the depth expected: how a current across tilts the wave number (first order in U / C_g).
-  const bend = bands.frequency.map((f) => {
-    const wave = { k: 0, dkByCurrent: 0, dkByLogDepth: 0 }
-    dopplerWaveNumber(2 * Math.PI * f, Math.exp(model.priors[depthAt].mean), 0, model.gravity, wave)
-    return wave.dkByCurrent
+  const inner = new Float64Array(systems * systems)
+  const inverse = new Float64Array(systems * systems)
+  // Still water of the depth expected: −k / C_g says how a current across tilts the wave number (first order in U / C_g).
+  const still = Array.from(bands.frequency, (f) => {
+    const calm = { k: 0, dkByCurrent: 0, dkByLogDepth: 0 }
+    dopplerWaveNumber(2 * Math.PI * f, Math.exp(model.priors[depthAt].mean), 0, model.gravity, calm)
+    return calm
   })
+
+  const calmest = groups > 0 ? still[groups - 1].k : 0
 
   function evaluate(state: SeaState): Evaluation {
     const p = state.parameters
@@ -86,6 +96,7 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
       value: 0,
       dataValue: 0,
       groupValue: new Float64Array(groups),
+      turn: new Float64Array(2 * groups * m),
       gradient: new Float64Array(count),
       information: new Float64Array(count * count),
       groupGradient: new Float64Array(groups * count),
@@ -103,7 +114,8 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
         model.gravity,
         wave[j],
       )
-      spreadingNodes(Math.exp(p[base + spreadAt]), wave[j].k * aperture, nodes[j])
+      const reach = Math.min(wave[j].k, 1.6 * calmest) * aperture
+      spreadingNodes(Math.exp(p[base + spreadAt]), reach, nodes[j])
     }
     const noise = Math.exp(p[noiseAt])
     for (let g = 0; g < groups; g++) {
@@ -114,7 +126,7 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
       for (let j = 0; j < systems; j++) {
         const base = j * parametersPerSystem
         dopplerWaveNumber(omega, Math.exp(p[base + depthAt]), p[base + currentAt], model.gravity, wave[j])
-        const tilt = bend[g] * p[base + crossCurrentAt]
+        const tilt = still[g].dkByCurrent * p[base + crossCurrentAt]
         fillWaveMatrices(x, y, p[base + directionAt], wave[j].k, tilt, nodes[j], waves[j])
         const density = Math.exp(state.logDensity[j * groups + g])
         const local = systems + 4 * j
@@ -129,7 +141,7 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
         }
         linkFactor[base + currentAt] = wave[j].dkByCurrent
         linkFactor[base + depthAt] = wave[j].dkByLogDepth
-        linkFactor[base + crossCurrentAt] = bend[g]
+        linkFactor[base + crossCurrentAt] = still[g].dkByCurrent
       }
       const noiseLocal = systems * 5
       change[noiseLocal].real.fill(0)
@@ -145,7 +157,7 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
       }
       for (let f = 0; f < model.faults.length; f++) {
         const fault = model.faults[f]
-        const rate = fault.kind === 'clock' ? omega : -wave[0].k
+        const rate = fault.kind === 'clock' ? omega : -still[g].k
         unturn(c, fault.sensor, rate * p[noiseAt + 1 + f])
         turnRate(r, fault.sensor, rate, change[noiseLocal + 1 + f])
       }
@@ -157,7 +169,12 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
       }
       multiply(m, w, c, product[0])
       let trace = 0
-      for (let i = 0; i < m; i++) trace += product[0].real[i * m + i]
+      for (let i = 0; i < m; i++) {
+        const at = i * m + i
+        trace += product[0].real[at]
+        evaluation.turn[2 * (g * m + i)] = product[0].real[at] - c.real[at] * w.real[at]
+        evaluation.turn[2 * (g * m + i) + 1] = -product[0].imag[at]
+      }
       evaluation.groupValue[g] = -nu * (logDeterminant + trace)
       evaluation.dataValue += evaluation.groupValue[g]
       multiply(m, product[0], w, e)
@@ -191,7 +208,6 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
 
   /** Eliminates the densities of group g and adds what is left to gradient and information of the parameters. */
   function gather(state: SeaState, evaluation: Evaluation, g: number): void {
-    const inner = new Float64Array(systems * systems)
     const innerGradient = evaluation.densityGradient
     for (let j = 0; j < systems; j++) {
       let own = score[j]
@@ -206,7 +222,7 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
       innerGradient[g * systems + j] = own
       for (let i = 0; i < systems; i++) inner[j * systems + i] = fisher[j * locals + i] + (i === j ? weight : 0)
     }
-    const inverse = invertSmall(systems, inner)
+    invertSmall(systems, inner, inverse)
     evaluation.densityInverse.set(inverse, g * systems * systems)
     // One link leads from a local change to a parameter, so links and parameters are numbered alike.
     const own = g * count
@@ -265,96 +281,28 @@ function localOf(parameter: number, systems: number): number {
   return systems + 4 * system + [0, 1, 1, 2, 3][parameter % parametersPerSystem]
 }
 
-function scaled(matrix: ComplexMatrix, factor: number, out: ComplexMatrix): void {
-  for (let n = 0; n < matrix.real.length; n++) {
-    out.real[n] = factor * matrix.real[n]
-    out.imag[n] = factor * matrix.imag[n]
+/** Inverse of a symmetric 1×1, 2×2 or 3×3 matrix into `out`. */
+function invertSmall(n: number, a: Float64Array, out: Float64Array): void {
+  if (n === 1) {
+    out[0] = 1 / a[0]
+    return
   }
-}
-
-function multiply(m: number, a: ComplexMatrix, b: ComplexMatrix, out: ComplexMatrix): void {
-  for (let row = 0; row < m; row++) {
-    for (let col = 0; col < m; col++) {
-      let real = 0
-      let imag = 0
-      for (let k = 0; k < m; k++) {
-        const ar = a.real[row * m + k]
-        const ai = a.imag[row * m + k]
-        const br = b.real[k * m + col]
-        const bi = b.imag[k * m + col]
-        real += ar * br - ai * bi
-        imag += ar * bi + ai * br
-      }
-      out.real[row * m + col] = real
-      out.imag[row * m + col] = imag
-    }
-  }
-}
-
-/** Real part of tr(A B). */
-function traceOfProduct(m: number, a: ComplexMatrix, b: ComplexMatrix): number {
-  let trace = 0
-  for (let row = 0; row < m; row++) {
-    for (let k = 0; k < m; k++) {
-      const at = row * m + k
-      const other = k * m + row
-      trace += a.real[at] * b.real[other] - a.imag[at] * b.imag[other]
-    }
-  }
-  return trace
-}
-
-/** Takes the phase `angle` of one sensor out of the data. */
-function unturn(c: ComplexMatrix, sensor: number, angle: number): void {
-  if (angle === 0) return
-  const m = Math.sqrt(c.real.length)
-  const cos = Math.cos(angle)
-  const sin = Math.sin(angle)
-  for (let k = 0; k < m; k++) {
-    if (k === sensor) continue
-    const row = sensor * m + k
-    const col = k * m + sensor
-    const real = c.real[row] * cos + c.imag[row] * sin
-    const imag = c.imag[row] * cos - c.real[row] * sin
-    c.real[row] = real
-    c.imag[row] = imag
-    c.real[col] = real
-    c.imag[col] = -imag
-  }
-}
-
-/** ∂(D R D*)/∂v with D = exp(i v rate) on one sensor, at v = 0. */
-function turnRate(r: ComplexMatrix, sensor: number, rate: number, out: ComplexMatrix): void {
-  out.real.fill(0)
-  out.imag.fill(0)
-  const m = Math.sqrt(r.real.length)
-  for (let k = 0; k < m; k++) {
-    if (k === sensor) continue
-    const row = sensor * m + k
-    const col = k * m + sensor
-    out.real[row] = -rate * r.imag[row]
-    out.imag[row] = rate * r.real[row]
-    out.real[col] = out.real[row]
-    out.imag[col] = -out.imag[row]
-  }
-}
-
-/** Inverse of a symmetric 1×1, 2×2 or 3×3 matrix. */
-function invertSmall(n: number, a: Float64Array): Float64Array {
-  if (n === 1) return Float64Array.of(1 / a[0])
   if (n === 2) {
     const determinant = a[0] * a[3] - a[1] * a[2]
-    return Float64Array.of(a[3] / determinant, -a[1] / determinant, -a[2] / determinant, a[0] / determinant)
+    out[0] = a[3] / determinant
+    out[1] = -a[1] / determinant
+    out[2] = out[1]
+    out[3] = a[0] / determinant
+    return
   }
   const c00 = a[4] * a[8] - a[5] * a[7]
   const c01 = a[5] * a[6] - a[3] * a[8]
   const c02 = a[3] * a[7] - a[4] * a[6]
   const determinant = a[0] * c00 + a[1] * c01 + a[2] * c02
-  const c11 = (a[0] * a[8] - a[2] * a[6]) / determinant
-  const c12 = (a[2] * a[3] - a[0] * a[5]) / determinant
-  const c22 = (a[0] * a[4] - a[1] * a[3]) / determinant
-  const i00 = c00 / determinant
-  const i01 = c01 / determinant
-  const i02 = c02 / determinant
-  return Float64Array.of(i00, i01, i02, i01, c11, c12, i02, c12, c22)
+  out[0] = c00 / determinant
+  out[1] = out[3] = c01 / determinant
+  out[2] = out[6] = c02 / determinant
+  out[4] = (a[0] * a[8] - a[2] * a[6]) / determinant
+  out[5] = out[7] = (a[2] * a[3] - a[0] * a[5]) / determinant
+  out[8] = (a[0] * a[4] - a[1] * a[3]) / determinant
 }

@@ -5,10 +5,12 @@
  */
 import type { BandMatrices } from './bandMatrices.ts'
 import { selectSensors } from './bandMatrices.ts'
+import { phaseSpeed, waveNumber } from './dispersion.ts'
 import { fitSea, quick } from './seaFit.ts'
 import type { SeaFit } from './seaFit.ts'
 import { seaLikelihood } from './seaLikelihood.ts'
-import { noiseIndex, parameterCount } from './seaModel.ts'
+import type { Evaluation } from './seaLikelihood.ts'
+import { depthAt, noiseIndex, parameterCount } from './seaModel.ts'
 import type { PhaseFault, SeaModel, SeaState } from './seaModel.ts'
 import { invertSymmetric } from './symmetric.ts'
 
@@ -28,6 +30,8 @@ export interface SensorFault {
   /** ln L gained over a faultless array, and over the next likely culprit. */
   gain: number
   lead: number
+  /** ln of the noise that the other sensors alone need, over the floor above the waves. */
+  noise: number
 }
 
 /** So many standard deviations make a suspicion worth the costly look. */
@@ -36,6 +40,8 @@ const suspicious = 3.5
 const leastGain = 14
 const leastDeviations = 4
 const leastLead = 3
+/** ln of noise over its floor above which a fit does not explain the coherences of the array. */
+export const greatestNoise = 1.3
 
 /** Score test of every sensor's clock at a fitted sea. */
 export function suspicions(fit: SeaFit): SensorSuspicion[] {
@@ -90,6 +96,8 @@ export function findFault(
   const lead = second ? best.gain - second.gain : best.gain
   const usual = best.kind === 'clock' ? usualSd[best.sensor] : usualSd[best.sensor] * 8
   if (best.gain < leastGain || Math.abs(best.value) < leastDeviations * Math.hypot(best.sd, usual)) return none
+  // A sensor is blamed only when the sea is understood without its fault; else it is the sea that does not fit.
+  if (best.noise > greatestNoise) return none
   if (lead < leastLead) return { fault: null, ambiguous: true }
   return { fault: { ...best, lead }, ambiguous: false }
 }
@@ -98,37 +106,67 @@ function withFaults(model: SeaModel, faults: PhaseFault[]): SeaModel {
   return { ...model, faults, priors: [...model.priors, ...faults.map(() => ({ mean: 0, sd: 1e3 }))] }
 }
 
-/** Offsets tried from both sides of zero, as shares of the period. */
-const scan = [0, 0.04, 0.09, 0.15, 0.22, 0.3, 0.4, -0.04, -0.09, -0.15, -0.22, -0.3, -0.4]
+/** Offsets tried on both sides of zero, as a share of the period (clock) or of the wave's length (path). */
+const furthest = 0.45
+const triesASide = 18
 
+/** The value of one fault that fits best while the sea stays as the others see it, and the ln L it gives but for a constant. */
+function scanFault(evaluation: Evaluation, model: SeaModel, sensor: number, kind: PhaseFault['kind'], period: number) {
+  const { bands } = model
+  const depth = Math.exp(model.priors[depthAt].mean)
+  const rates = Array.from(bands.frequency, (f) =>
+    kind === 'clock' ? 2 * Math.PI * f : -waveNumber(2 * Math.PI * f, depth, model.gravity),
+  )
+  const unit = kind === 'clock' ? period : period * phaseSpeed(period, depth, model.gravity)
+  let best = { value: 0, likelihood: -Infinity }
+  for (let n = -triesASide; n <= triesASide; n++) {
+    const value = (furthest * unit * n) / triesASide
+    let likelihood = 0
+    for (let g = 0; g < bands.groups; g++) {
+      const at = 2 * (g * bands.sensors + sensor)
+      const turned =
+        Math.cos(rates[g] * value) * evaluation.turn[at] + Math.sin(rates[g] * value) * evaluation.turn[at + 1]
+      likelihood -= 2 * bands.averages[g] * turned
+    }
+    if (likelihood > best.likelihood) best = { value, likelihood }
+  }
+  return { ...best, kind }
+}
+
+/** Fit with one sensor allowed to be wrong, from the sea that the others see; null when the others do not span the plane. */
 function bestFault(fit: SeaFit, sensor: number, period: number): SensorFault | null {
   const start = withoutSensor(fit, sensor)
   if (!start) return null
-  const faults = (['clock', 'path'] as const).flatMap((kind) => {
-    const model = withFaults(fit.model, [{ kind, sensor }])
-    const likelihood = seaLikelihood(model)
-    const at = noiseIndex(model) + 1
-    const unit = kind === 'clock' ? period : period * 8
-    let bestValue = -Infinity
-    let bestState: SeaState | null = null
-    for (const share of scan) {
-      const parameters = new Float64Array(parameterCount(model))
-      parameters.set(start.parameters)
-      parameters[at] = share * unit
-      const state = { parameters, logDensity: start.logDensity }
-      const value = likelihood.evaluate(state).value
-      if (value <= bestValue) continue
-      bestValue = value
-      bestState = state
-    }
-    const fitted = bestState && fitSea(model, bestState, { ...quick, maxIterations: 12 })
-    if (!fitted) return []
-    const count = parameterCount(model)
-    const sd = Math.sqrt(fitted.covariance[at * count + at])
-    const value = fitted.state.parameters[at]
-    return [{ sensor, kind, value, sd, gain: fitted.evaluation.value - fit.evaluation.value, lead: 0 }]
-  })
-  return faults.sort((a, b) => b.gain - a.gain)[0] ?? null
+  const evaluation = seaLikelihood(fit.model).evaluate(start)
+  if (!Number.isFinite(evaluation.value)) return null
+  const clock = scanFault(evaluation, fit.model, sensor, 'clock', period)
+  const path = scanFault(evaluation, fit.model, sensor, 'path', period)
+  return fitFault(fit, start, sensor, path.likelihood > clock.likelihood ? path : clock)
+}
+
+function fitFault(
+  fit: SeaFit,
+  start: SeaState,
+  sensor: number,
+  scanned: { kind: PhaseFault['kind']; value: number },
+): SensorFault | null {
+  const model = withFaults(fit.model, [{ kind: scanned.kind, sensor }])
+  const count = parameterCount(model)
+  const at = noiseIndex(model) + 1
+  const parameters = new Float64Array(count)
+  parameters.set(start.parameters)
+  parameters[at] = scanned.value
+  const fitted = fitSea(model, { parameters, logDensity: start.logDensity }, { ...quick, maxIterations: 12 })
+  if (!fitted) return null
+  return {
+    sensor,
+    kind: scanned.kind,
+    value: fitted.state.parameters[at],
+    sd: Math.sqrt(fitted.covariance[at * count + at]),
+    gain: fitted.evaluation.value - fit.evaluation.value,
+    lead: 0,
+    noise: start.parameters[noiseIndex(model)],
+  }
 }
 
 /** Parameters that the other sensors alone would give. */

@@ -31,7 +31,8 @@ export function checkSeries(
   waterDepth: number,
   settings: EstimateSettings,
 ): CheckedSeries {
-  const clean = Float64Array.from(raw, (value) => (Number.isFinite(value) ? value : NaN))
+  const clean = raw.slice()
+  for (let i = 0; i < clean.length; i++) if (!Number.isFinite(clean[i])) clean[i] = NaN
   const findings: SensorFinding[] = []
   const tests: QualityTest[] = []
   const note = (

@@ -15,25 +15,28 @@ const smoothing = 0.07
 
 /**
  * Peaks by falling frequency share of energy. A valley counts when the lower of its two peaks stands above it by `sureness`
- * standard deviations of the sampling error (χ² with the averages gathered by the smoothing).
+ * standard deviations of the sampling error (χ² with the averages gathered by the smoothing). `density` is freed of
+ * `noise`; a peak must stand four of the noise's own deviations above zero.
  */
 export function spectralPeaks(
   frequency: ArrayLike<number>,
   width: ArrayLike<number>,
   density: ArrayLike<number>,
   averages: ArrayLike<number>,
+  noise: ArrayLike<number>,
   sureness = 3,
 ): SpectralPeak[] {
   const n = frequency.length
   const smooth = new Float64Array(n)
   const gathered = new Float64Array(n)
+  let low = 0
   for (let g = 0; g < n; g++) {
     let sum = 0
     let weights = 0
     let squares = 0
-    for (let h = 0; h < n; h++) {
+    while (frequency[low] < frequency[g] * (1 - 2.6 * smoothing)) low++
+    for (let h = low; h < n && frequency[h] < frequency[g] * (1 + 2.9 * smoothing); h++) {
       const off = Math.log(frequency[h] / frequency[g]) / smoothing
-      if (Math.abs(off) > 3) continue
       const weight = averages[h] * Math.exp(-0.5 * off * off)
       sum += weight * density[h]
       weights += weight
@@ -43,10 +46,11 @@ export function spectralPeaks(
     gathered[g] = (weights * weights) / squares
   }
   let tops: number[] = []
+  const overNoise = (g: number) => smooth[g] > (4 * noise[g]) / Math.sqrt(gathered[g])
   for (let g = 0; g < n; g++) {
     const left = g === 0 ? -Infinity : smooth[g - 1]
     const right = g === n - 1 ? -Infinity : smooth[g + 1]
-    if (smooth[g] > 0 && smooth[g] >= left && smooth[g] > right) tops.push(g)
+    if (smooth[g] > 0 && overNoise(g) && smooth[g] >= left && smooth[g] > right) tops.push(g)
   }
   tops = mergeShallow(tops, smooth, gathered, sureness)
   const bounds = [0, ...tops.slice(1).map((top, i) => lowest(smooth, tops[i], top)), n]

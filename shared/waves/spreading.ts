@@ -39,7 +39,7 @@ const leastWeight = 1e-7
  */
 export function spreadingNodes(spread: number, reach: number, nodes: SpreadingNodes): void {
   const s = spreadExponent(spread)
-  const around = Math.min(720, Math.max(12, Math.ceil(reach + 5.5 / spread + 3)))
+  const around = Math.min(720, Math.max(24, Math.ceil(reach + 6 / spread + 4)))
   const step = (2 * Math.PI) / around
   const half = Math.floor(around / 2)
   let reachOut = half

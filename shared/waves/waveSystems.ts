@@ -28,6 +28,8 @@ const bandAbove = 1.9
 /** A system with a smaller share of the energy is left out. */
 const leastShare = 0.04
 const mostSystems = 3
+/** ln L over unrelated sensors that a train must gain in its own band before it is fitted thoroughly. */
+const leastStartGain = 5
 /** Usual current across the waves at a nearshore array, m/s: the record must speak clearly for more. */
 const usualCrossCurrent = 0.25
 
@@ -42,19 +44,22 @@ export function findSystems(
   const sea: SeaSetting = { bands, x, y, depth, gravity }
   const noise = noiseDensity(bands)
   const surface = bands.density.map((d, g) => d - noise[g])
-  const ranges = spectralPeaks(bands.frequency, bands.width, surface, bands.averages)
+  const ranges = spectralPeaks(bands.frequency, bands.width, surface, bands.averages, noise)
     .filter((peak) => peak.share >= leastShare)
     .slice(0, mostSystems)
   if (ranges.length === 0) return null
-  const peaks = ranges.map((range) =>
-    fitPeak(bands.frequency, bands.density, bands.averages, noise, range.frequency, range),
-  )
-  const starts = peaks.flatMap((peak) => bestStart(sea, peak.peak, 0.82 * peak.peak, 1.35 * peak.peak) ?? [])
-  if (starts.length < peaks.length) return null
+  const candidates = ranges.flatMap((range) => {
+    const peak = fitPeak(bands.frequency, bands.density, bands.averages, noise, range.frequency, range)
+    const start = bestStart(sea, peak.peak, 0.82 * peak.peak, 1.35 * peak.peak)
+    return start && start.gain > leastStartGain ? [{ range, peak, start }] : []
+  })
+  if (candidates.length === 0) return null
+  const peaks = candidates.map((candidate) => candidate.peak)
+  const starts = candidates.map((candidate) => candidate.start)
   const first = fitTogether(
     sea,
     peaks,
-    ranges,
+    candidates.map((candidate) => candidate.range),
     starts.map((start) => start.parameters),
   )
   if (!first) return null
@@ -197,7 +202,8 @@ export function seaModel(
 ): SeaModel {
   const systems = peaks.length
   const priors = peaks.flatMap(() => [
-    { mean: 0, sd: 10 },
+    // No heading is likelier than another.
+    { mean: 0, sd: 1e9 },
     { mean: 0, sd: 1 },
     { mean: Math.log(depth), sd: 0.25 },
     { mean: Math.log(0.3), sd: 1 },
@@ -235,10 +241,21 @@ export function startDensity(model: SeaModel): Float64Array {
   return start
 }
 
+/** ln L of sensors that share nothing but have their own energies. */
+export function unrelatedLikelihood(bands: BandMatrices): number {
+  const m = bands.sensors
+  let value = 0
+  for (let g = 0; g < bands.groups; g++)
+    for (let i = 0; i < m; i++) value -= bands.averages[g] * (Math.log(bands.real[g * m * m + i * m + i] + 1e-300) + 1)
+  return value
+}
+
 interface Start {
   /** Direction, current, ln depth, ln spread. */
   parameters: Float64Array
   runnerUp: FoundSystems['runnerUp']
+  /** ln L over unrelated sensors. */
+  gain: number
 }
 
 /** Single-train fits of the band about one peak from the best beams; the likeliest wins. */
@@ -279,5 +296,6 @@ function bestStart(sea: SeaSetting, peak: number, low: number, high: number): St
     ratio: Math.min(1, other.beam.power / best.beam.power),
     likelihoodLoss: best.fit.evaluation.value - other.fit.evaluation.value,
   }
-  return { parameters: found, runnerUp: runnerUp ?? null }
+  const gain = best.fit.evaluation.dataValue - unrelatedLikelihood(part)
+  return { parameters: found, runnerUp: runnerUp ?? null, gain }
 }
