@@ -8,6 +8,7 @@ import { selectGroups } from './bandMatrices.ts'
 import { phaseSpeed } from './dispersion.ts'
 import { refuse } from './blankResult.ts'
 import type { PreparedArray } from './preparedArray.ts'
+import { median } from './robust.ts'
 import { greatestNoise } from './sensorFaults.ts'
 import type { SlownessFit } from './slownessFit.ts'
 import { systematicVariance } from './systematicError.ts'
@@ -123,11 +124,15 @@ function toldByLags(train: TrainVector, lagged: SlownessFit): TrainVector {
 
 /** Headings of lags and fit this far apart, rad, cannot both be right: two seas at one frequency, or coherence lost otherwise. */
 const greatestTurn = 0.2
+const leastLagCoherence = 0.6
 
 /** Only a single train can be held against plain lags; where seas cross, lags are a compromise. */
 function lagsDisagree(trains: readonly TrainVector[], measured: readonly LagFit[]): boolean {
   const lagged = measured[0].fit
   if (trains.length !== 1 || trains[0].spread === null || !lagged) return false
+  // Over many wave lengths a spread sea loses coherence and its lags mean little.
+  const coherence = median(Float64Array.from(measured[0].lags, (lag) => lag.coherence))
+  if (coherence < leastLagCoherence) return false
   const turn = 2 * Math.abs(Math.sin((Math.atan2(lagged.y, lagged.x) - trains[0].direction) / 2))
   return turn > greatestTurn && turn > 5 * Math.sqrt(trains[0].directionVariance)
 }
