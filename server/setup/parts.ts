@@ -64,15 +64,14 @@ export class RunningParts {
 
   async stop(): Promise<void> {
     this.ending = true
-    for (let last = this.running.pop(); last; last = this.running.pop()) {
-      const { title, part } = last
+    for (const { title, part } of this.running.toReversed()) {
       const since = performance.now()
-      this.running.push(last)
-      await part
-        .stop()
-        .catch((error: Error) => this.options.say(`The ${title} did not stop as it should: ${error.message}`))
-      this.running.pop()
-      this.options.say(`The ${title} has stopped (${((performance.now() - since) / 1000).toFixed(1)} s).`)
+      try {
+        await part.stop()
+        this.options.say(`The ${title} has stopped (${((performance.now() - since) / 1000).toFixed(1)} s).`)
+      } catch (error) {
+        this.options.say(`The ${title} did not stop as it should: ${error instanceof Error ? error.message : error}`)
+      }
     }
   }
 
