@@ -9,7 +9,7 @@ import { phaseSpeed } from './dispersion.ts'
 import { refuse } from './blankResult.ts'
 import type { PreparedArray } from './preparedArray.ts'
 import { median } from './robust.ts'
-import { greatestNoise } from './sensorFaults.ts'
+import { greatestUnexplained } from './sensorFaults.ts'
 import type { SlownessFit } from './slownessFit.ts'
 import { systematicVariance } from './systematicError.ts'
 import { describeTrain } from './trainVector.ts'
@@ -22,7 +22,7 @@ export interface SeaDoubts {
   lagResidualRms: number | null
   runnerUp: { direction: number; speedRatio: number; ratio: number } | null
   ambiguous: boolean
-  /** ln of the noise needed over its floor, when plane waves with spread do not explain the coherences; else null. */
+  /** Share of the energy that plane waves with spread leave unexplained, when it is too large; else null. */
   unexplained: number | null
 }
 
@@ -138,12 +138,11 @@ function lagsDisagree(trains: readonly TrainVector[], measured: readonly LagFit[
 }
 
 function unexplainedTest({ unexplained }: SeaDoubts): QualityTest {
-  const value = unexplained === null ? null : Math.exp(unexplained)
-  const limit = value === null ? null : Math.exp(greatestNoise)
+  const limit = unexplained === null ? null : greatestUnexplained
   return {
     test: coherenceTest,
     flag: 3,
-    value,
+    value: unexplained,
     limit,
     detail: 'one plane sea with spread does not explain the record: the vector is that of the lags',
   }

@@ -4,7 +4,7 @@ import { noiseDensity } from './bandMatrices.ts'
 import type { ArrayFrame } from './arrayGeometry.ts'
 import { sandwichCovariance } from './fitCovariance.ts'
 import { noiseIndex } from './seaModel.ts'
-import { greatestNoise } from './sensorFaults.ts'
+import { greatestUnexplained, unexplainedShare } from './sensorFaults.ts'
 import { systemVector } from './systemVector.ts'
 import type { SeaDoubts } from './describeSea.ts'
 import type { TrainVector } from './trainVector.ts'
@@ -16,8 +16,6 @@ export interface RandomSea {
   trains: TrainVector[]
   /** ln L of the fit over that of unrelated sensors with the same energies. */
   gain: number
-  /** ln of the noise that the fit needs, over the floor above the waves: about 0 when plane waves with spread explain the record. */
-  noise: number
   doubts: SeaDoubts
 }
 
@@ -52,13 +50,13 @@ export function findRandomSea(
   })
   const { runnerUp } = found
   const ambiguous = runnerUp !== null && runnerUp.ratio > ambiguousRatio && runnerUp.likelihoodLoss < ambiguousLoss
-  const noise = found.fit.state.parameters[noiseIndex(found.fit.model)]
-  const unexplained = noise > greatestNoise ? noise : null
+  const { model, state } = found.fit
+  const share = unexplainedShare(model.bands, state.parameters[noiseIndex(model)])
+  const unexplained = share > greatestUnexplained ? share : null
   return {
     found,
     trains,
     gain: found.fit.evaluation.dataValue - unrelatedLikelihood(found.fit.model.bands),
-    noise,
     doubts: { lagResidualRms: null, runnerUp, ambiguous, unexplained },
   }
 }

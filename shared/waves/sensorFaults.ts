@@ -4,7 +4,7 @@
  * from the array without it. The likeliest culprit is named.
  */
 import type { BandMatrices } from './bandMatrices.ts'
-import { selectSensors } from './bandMatrices.ts'
+import { noiseDensity, selectSensors } from './bandMatrices.ts'
 import { phaseSpeed, waveNumber } from './dispersion.ts'
 import { fitSea, quick } from './seaFit.ts'
 import type { SeaFit } from './seaFit.ts'
@@ -30,8 +30,8 @@ export interface SensorFault {
   /** ln L gained over a faultless array, and over the next likely culprit. */
   gain: number
   lead: number
-  /** ln of the noise that the other sensors alone need, over the floor above the waves. */
-  noise: number
+  /** Share of the energy that the other sensors alone leave unexplained. */
+  unexplained: number
 }
 
 /** So many standard deviations make a suspicion worth the costly look. */
@@ -40,8 +40,20 @@ const suspicious = 3.5
 const leastGain = 14
 const leastDeviations = 4
 const leastLead = 3
-/** ln of noise over its floor above which a fit does not explain the coherences of the array. */
-export const greatestNoise = 1.3
+/** Share of the energy, beyond the noise floor, that a fit may leave unexplained. */
+export const greatestUnexplained = 0.05
+
+/** Share of a band's energy that goes to noise above its floor: `logNoise` is ln of the noise fitted over that floor. */
+export function unexplainedShare(bands: BandMatrices, logNoise: number): number {
+  const floor = noiseDensity(bands)
+  let energy = 0
+  let noise = 0
+  for (let g = 0; g < bands.groups; g++) {
+    energy += bands.density[g] * bands.width[g]
+    noise += floor[g] * bands.width[g]
+  }
+  return energy > 0 ? ((Math.exp(logNoise) - 1) * noise) / energy : 0
+}
 
 /** Score test of every sensor's clock at a fitted sea. */
 export function suspicions(fit: SeaFit): SensorSuspicion[] {
@@ -97,7 +109,7 @@ export function findFault(
   const usual = best.kind === 'clock' ? usualSd[best.sensor] : usualSd[best.sensor] * 8
   if (best.gain < leastGain || Math.abs(best.value) < leastDeviations * Math.hypot(best.sd, usual)) return none
   // A sensor is blamed only when the sea is understood without its fault; else it is the sea that does not fit.
-  if (best.noise > greatestNoise) return none
+  if (best.unexplained > greatestUnexplained) return none
   if (lead < leastLead) return { fault: null, ambiguous: true }
   return { fault: { ...best, lead }, ambiguous: false }
 }
@@ -165,7 +177,7 @@ function fitFault(
     sd: Math.sqrt(fitted.covariance[at * count + at]),
     gain: fitted.evaluation.value - fit.evaluation.value,
     lead: 0,
-    noise: start.parameters[noiseIndex(model)],
+    unexplained: unexplainedShare(model.bands, start.parameters[noiseIndex(model)]),
   }
 }
 
