@@ -14,6 +14,7 @@ import { findRegularSea } from './regularSea.ts'
 import { coherenceTest, describeSea } from './describeSea.ts'
 import { blameFaults, doubtGeometry, judgeSensors } from './sensorVerdicts.ts'
 import type { FaultVerdict } from './sensorVerdicts.ts'
+import { trainDirections } from './trainDirections.ts'
 import type { ArrayWindow } from './window.ts'
 
 /** ln L gained over unrelated sensors below which no wave is claimed; noise alone loses by this measure. */
@@ -56,7 +57,10 @@ export function estimate(window: ArrayWindow): EstimateResult {
       continue
     }
     if (ambiguous) return refuse(doubtGeometry(result), 'geometry-doubtful')
-    const described = describeSea(result, window, prepared, spectra, sea.trains, sea.doubts)
+    const described = {
+      ...describeSea(result, window, prepared, spectra, sea.trains, sea.doubts),
+      directionalSpectrum: sea.doubts.unexplained === null ? trainDirections(sea.found.fit, prepared.frame.axis) : null,
+    }
     if (faults.length === 0 || !described.tests.some((test) => test.test === coherenceTest)) return described
     // Without the sensor blamed the sea is still not understood, so it was not the sensor.
     faults.length = 0

@@ -1,11 +1,12 @@
 /** Fisher scoring (Fisher 1925; Longford 1987) of a sea model, damped so that the likelihood never falls. */
 import { seaLikelihood } from './seaLikelihood.ts'
-import type { Evaluation } from './seaLikelihood.ts'
+import type { Evaluation, SeaLikelihood } from './seaLikelihood.ts'
 import type { SeaModel, SeaState } from './seaModel.ts'
 import {
   copyState,
   currentAt,
   greatestSpread,
+  leastLogDensity,
   leastSpread,
   noiseIndex,
   parameterCount,
@@ -73,7 +74,16 @@ export function fitSea(model: SeaModel, start: SeaState, options: FitOptions): S
         better = { state: tried, evaluation: found }
       share /= 2
     }
-    if (!better) break
+    if (!better) {
+      // Densities that sink to nothing can spoil the joint step: they are settled alone, with the trains held.
+      const settled = settleDensities(likelihood, model, state, evaluation)
+      if (!settled) break
+      state = settled.state
+      evaluation = settled.evaluation
+      covariance = invertSymmetric(count, evaluation.information)
+      previous = null
+      continue
+    }
     state = better.state
     evaluation = better.evaluation
     covariance = invertSymmetric(count, evaluation.information)
@@ -83,6 +93,28 @@ export function fitSea(model: SeaModel, start: SeaState, options: FitOptions): S
     }
   }
   return covariance ? { model, state, evaluation, covariance, converged, iterations } : null
+}
+
+interface Place {
+  state: SeaState
+  evaluation: Evaluation
+}
+
+/** A step of the densities alone that raises the likelihood, or null. */
+function settleDensities(
+  likelihood: SeaLikelihood,
+  model: SeaModel,
+  state: SeaState,
+  evaluation: Evaluation,
+): Place | null {
+  const still = new Float64Array(parameterCount(model))
+  const densityStep = likelihood.densityStep(evaluation, still)
+  for (const share of [1, 0.3, 0.1, 0.03]) {
+    const tried = move(model, state, still, densityStep, share)
+    const found = likelihood.evaluate(tried)
+    if (found.value > evaluation.value + 1e-9 * Math.abs(evaluation.value)) return { state: tried, evaluation: found }
+  }
+  return null
 }
 
 /**
@@ -133,7 +165,7 @@ function move(model: SeaModel, from: SeaState, step: Float64Array, densityStep: 
   const groups = model.bands.groups
   for (let n = 0; n < densityStep.length; n++) {
     const change = Math.min(1.5, Math.max(-1.5, densityStep[n]))
-    const floor = Math.log(1e-4 * model.bands.density[n % groups] + 1e-300)
+    const floor = leastLogDensity(model.bands, n % groups)
     to.logDensity[n] = Math.max(floor, to.logDensity[n] + share * change)
   }
   return to

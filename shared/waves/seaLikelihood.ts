@@ -12,6 +12,7 @@ import {
   currentAt,
   depthAt,
   directionAt,
+  leastLogDensity,
   noiseIndex,
   parameterCount,
   parametersPerSystem,
@@ -219,6 +220,8 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
         weight = precision
         evaluation.value -= 0.5 * off * off * precision
       }
+      // A density that lies on its floor and would sink further is held there, not eliminated.
+      if (own < 0 && state.logDensity[j * groups + g] <= leastLogDensity(bands, g) + 1e-12) weight = 1e15
       innerGradient[g * systems + j] = own
       for (let i = 0; i < systems; i++) inner[j * systems + i] = fisher[j * locals + i] + (i === j ? weight : 0)
     }

@@ -58,3 +58,7 @@ export const copyState = (state: SeaState): SeaState => ({
   parameters: state.parameters.slice(),
   logDensity: state.logDensity.slice(),
 })
+
+/** Least ln S of a train in a group, so that a density that sinks to nothing stays a number. */
+export const leastLogDensity = (bands: BandMatrices, group: number): number =>
+  Math.log(1e-4 * bands.density[group] + 1e-300)
