@@ -17,8 +17,11 @@ const upperServer = '^server/(app\\.ts|index\\.ts|routes|sockets|commands|jobs|m
 
 /** Services that every other may use. */
 const usedByAll = 'bus|audit|watchLog|problems|passwords|transaction'
-/** Services whose writes share a transaction with others: an imported file is stored with the record of it. */
-const together = { imports: 'readings' }
+/**
+ * Services whose writes share a transaction with others: an imported file is stored with the record of it, a leased
+ * e-mail with its link, a step of an escalation with its e-mail.
+ */
+const together = { imports: 'readings', deliveries: 'receipts', escalations: 'messages' }
 
 const serviceRules = [
   forbid(

@@ -3,7 +3,9 @@ import type { Server } from 'node:http'
 import type { Parts, RunningPart } from './config/parts.ts'
 import { startCompactReadings } from './jobs/compactReadings.ts'
 import { startComputeEstimates } from './jobs/computeEstimates.ts'
+import { startDeliverMail } from './jobs/deliverMail.ts'
 import { startDemonstrationPast } from './jobs/demonstrationPast.ts'
+import { startEscalate } from './jobs/escalate.ts'
 import { startForgetSessions } from './jobs/forgetSessions.ts'
 import { startKeepSeriesDays } from './jobs/keepSeriesDays.ts'
 import { startRetention } from './jobs/retention.ts'
@@ -26,6 +28,8 @@ export async function startRunningParts(parts: Parts, server: Server): Promise<S
     started.push(await startRetention(parts))
     started.push(await startSealAudits(parts))
     started.push(await startForgetSessions(parts))
+    started.push(await startDeliverMail(parts))
+    started.push(startEscalate(parts))
     // First, for it knows how far each station's readings reach.
     const telemetry = await startTelemetry({ ...parts, upgrades })
     started.push(telemetry)

@@ -17,6 +17,12 @@ export class Delivery extends Model<InferAttributes<Delivery>, InferCreationAttr
   declare acceptedAt: Date | null
   declare receivedAt: Date | null
   declare createdAt: Date
+  /** The e-mail that brings its news, where it was merged in a flood. */
+  declare rootMessageId: number | null
+  /** Given to the mail server at the newest try: without an answer, nobody knows whether it arrived. */
+  declare handedOverAt: Date | null
+  /** How often that happened. */
+  declare unknownCount: CreationOptional<number>
 }
 
 export const defineDelivery = (sequelize: Sequelize): void => {
@@ -39,6 +45,9 @@ export const defineDelivery = (sequelize: Sequelize): void => {
       acceptedAt: DataTypes.DATE(3),
       receivedAt: DataTypes.DATE(3),
       createdAt: { type: DataTypes.DATE(3), allowNull: false },
+      rootMessageId: DataTypes.BIGINT.UNSIGNED,
+      handedOverAt: DataTypes.DATE(3),
+      unknownCount: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false, defaultValue: 0 },
     },
     { sequelize, tableName: 'deliveries' },
   )

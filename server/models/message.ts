@@ -16,6 +16,8 @@ export class Message extends Model<InferAttributes<Message>, InferCreationAttrib
   declare content: MessageContent | null
   declare isExercise: boolean
   declare createdAt: Date
+  /** When its recipients were worked out; null: still to do. */
+  declare queuedAt: Date | null
 }
 
 export const defineMessage = (sequelize: Sequelize): void => {
@@ -33,6 +35,7 @@ export const defineMessage = (sequelize: Sequelize): void => {
       content: DataTypes.JSON,
       isExercise: { type: DataTypes.BOOLEAN, allowNull: false },
       createdAt: { type: DataTypes.DATE(3), allowNull: false },
+      queuedAt: DataTypes.DATE(3),
     },
     { sequelize, tableName: 'messages' },
   )

@@ -3,7 +3,11 @@ import type { Parts } from '../config/parts.ts'
 import { sessionCookieName } from '../config/sessionCookie.ts'
 import { installationRoutes } from './installation.ts'
 import { jobRoutes } from './jobs.ts'
+import { listRoutes } from './lists.ts'
+import { messageRoutes } from './messages.ts'
 import { withOpenApi } from './openApi.ts'
+import { peopleRoutes } from './people.ts'
+import { receiptRoutes } from './receipts.ts'
 import type { Route } from './registry.ts'
 import { sessionRoutes } from './session.ts'
 import { settingsRoutes } from './settings.ts'
@@ -21,6 +25,10 @@ const features: ((parts: Parts) => Route[])[] = [
   stationRoutes,
   stationKeyRoutes,
   stationHealthRoutes,
+  messageRoutes,
+  listRoutes,
+  peopleRoutes,
+  receiptRoutes,
 ]
 
 export const allRoutes = (parts: Parts): Route[] =>

@@ -20,6 +20,10 @@ export interface News {
   /** A key was revoked. */
   'stationKey.revoked': { stationId: number; keyId: number }
   'job.progressed': LongJobView
+  'alert.changed': { alertId: number }
+  'limit.changed': { limitId: number }
+  /** An e-mail was written, or became what it is now for somebody. */
+  'message.changed': { messageId: number; alertId: number | null }
 }
 
 export interface Bus {

@@ -61,3 +61,21 @@ export const databaseUnavailable = (): Refused =>
     detail: 'Nothing was lost. Try again in a moment.',
     retryAfterSeconds: 2,
   })
+
+/** 412: somebody else was quicker; `version` is the one that holds now. */
+export const changedMeanwhile = (resource: string, version: number): Refused =>
+  new Refused({
+    status: 412,
+    code: `${resource}.changedMeanwhile`,
+    title: 'Changed meanwhile',
+    detail: `Somebody changed it while you did: it is at version ${version} now. Look at it again before you save.`,
+  })
+
+/** 428: a change has to say which version it was made from. */
+export const versionMissing = (): Refused =>
+  new Refused({
+    status: 428,
+    code: 'request.versionMissing',
+    title: 'The version is missing',
+    detail: 'Send If-Match with the version that you changed, in quotes.',
+  })

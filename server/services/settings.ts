@@ -20,6 +20,15 @@ const shapes = {
     traceSpeeds: z.string().min(20).max(400),
   }),
   coast: z.strictObject({ plan: coast.nullable() }),
+  mail: z.strictObject({
+    /** By the port's clock; null: no daily e-mail. */
+    heartbeatAt: z
+      .string()
+      .regex(/^([01]\d|2[0-3]):[0-5]\d$/)
+      .nullable(),
+    /** Null: all operators and administrators. */
+    heartbeatListId: z.number().int().positive().nullable(),
+  }),
   /** Months kept besides the current one; null keeps all. */
   retention: z.strictObject({
     readingBlocks: monthsKept,
@@ -44,6 +53,7 @@ const initial: Settings = {
       'A trace speed is the apparent speed along one pair of sensors, never a component of the wave vector: it reads too high by 1/cos of its angle to the waves.',
   },
   coast: { plan: null },
+  mail: { heartbeatAt: '07:00', heartbeatListId: null },
   retention: { readingBlocks: 25, stationHealthHours: 25, estimates: null, estimateDetails: 25 },
 }
 

@@ -43,6 +43,8 @@ export const messageContent = z.object({
   caution: z.string(),
   /** Path of the alert's page, such as `/alerts/418`. */
   path: z.string(),
+  /** In a flood: the other alerts that this e-mail brings the news of. */
+  others: z.array(z.object({ line: z.string(), path: z.string() })).optional(),
 })
 export type MessageContent = z.infer<typeof messageContent>
 

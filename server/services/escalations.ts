@@ -1,0 +1,132 @@
+/** Who is told next when nobody has confirmed: all times are stored, so that a stop loses none. */
+import type { Transaction } from 'sequelize'
+import { messageTextOf, subjectLineOf } from '../../shared/alerts/messageText.ts'
+import type { AlertState } from '../../shared/schemas/limit.ts'
+import { recipients } from '../../shared/schemas/limit.ts'
+import { messageContent } from '../../shared/schemas/message.ts'
+import type { Parts } from '../config/parts.ts'
+import { Alert, Escalation, LimitVersion, Message } from '../models/index.ts'
+import { execute, select } from '../models/sql.ts'
+import { writeMessage } from './messages.ts'
+import { inTransaction } from './transaction.ts'
+
+/** Nobody need be told more of an alert in these states; while it is put aside its times stand still. */
+const over: AlertState[] = ['returnedUnacknowledged', 'latchedUnacknowledged', 'latchedAcknowledged', 'normal']
+const mostAtOnce = 500
+
+/** As long as the link in the first e-mail lives. */
+const remindForMs = 24 * 3_600_000
+
+/** Sends the steps and reminders whose time has come; answers how many e-mails were written down. */
+export async function escalateDue(parts: Parts): Promise<number> {
+  await endOver(parts)
+  const due = await select<{ alertId: number; step: number }>(
+    parts.sequelize,
+    `SELECT alertId, step FROM escalations
+     WHERE endedAt IS NULL AND (sentAt IS NULL AND dueAt <= :now OR nextReminderAt <= :now)
+     ORDER BY dueAt, alertId, step LIMIT :most`,
+    { now: parts.clock.now(), most: mostAtOnce },
+  )
+  let written = 0
+  for (const one of due) {
+    const messageId = await inTransaction(parts.sequelize, (transaction) => escalateOne(parts, one, transaction))
+    if (messageId === null) continue
+    written += 1
+    parts.bus.publish('message.changed', { messageId, alertId: one.alertId })
+  }
+  return written
+}
+
+/** An operator's acknowledgement ends the steps to come, not the reminders of those who were told. */
+const endOver = ({ sequelize, clock }: Parts): Promise<number> =>
+  execute(
+    sequelize,
+    `UPDATE escalations e JOIN alerts a ON a.id = e.alertId SET e.endedAt = :now
+     WHERE e.endedAt IS NULL AND (a.closedAt IS NOT NULL OR a.state IN (:over)
+       OR a.state = 'acknowledgedActive' AND e.sentAt IS NULL)`,
+    { now: clock.now(), over },
+  )
+
+async function escalateOne(
+  parts: Parts,
+  { alertId, step }: { alertId: number; step: number },
+  transaction: Transaction,
+): Promise<number | null> {
+  const row = await Escalation.findOne({ where: { alertId, step }, lock: true, transaction })
+  const alert = await Alert.findByPk(alertId, { transaction })
+  if (!row || !alert || row.endedAt || alert.closedAt) return null
+  const isToBeTold = alert.state === 'unacknowledgedActive' || (row.sentAt && alert.state === 'acknowledgedActive')
+  if (!isToBeTold) return null
+  return row.sentAt ? remind(parts, row, alert, transaction) : takeStep(parts, row, alert, transaction)
+}
+
+async function reminderAfter(parts: Parts, alert: Alert, transaction: Transaction): Promise<Date | null> {
+  const version = await LimitVersion.findByPk(alert.limitVersionId, { transaction })
+  const seconds = recipients.parse(version?.steps).remindEverySeconds
+  return seconds === null ? null : new Date(parts.clock.now().getTime() + seconds * 1000)
+}
+
+async function takeStep(parts: Parts, row: Escalation, alert: Alert, transaction: Transaction): Promise<number | null> {
+  const now = parts.clock.now()
+  const nextReminderAt = await reminderAfter(parts, alert, transaction)
+  await row.update({ sentAt: now, nextReminderAt }, { transaction })
+  const known = await newestOf(alert, transaction, { kind: row.step === 0 ? 'alert' : 'escalation', step: row.step })
+  const since = alert.announcedAt ?? alert.raisedAt
+  // The first step was written with the alert itself.
+  if (known && known.createdAt >= since) return null
+  return write(parts, 'escalation', row, alert, transaction)
+}
+
+async function remind(parts: Parts, row: Escalation, alert: Alert, transaction: Transaction): Promise<number | null> {
+  const now = parts.clock.now()
+  const isOver = row.sentAt !== null && now.getTime() - row.sentAt.getTime() >= remindForMs
+  const [waiting] = await select<{ told: number; onTheWay: number }>(
+    parts.sequelize,
+    `SELECT COUNT(IF(isTold, 1, NULL)) AS told, COUNT(IF(isOnTheWay, 1, NULL)) AS onTheWay FROM (
+       SELECT MAX(d.state IN ('accepted', 'merged', 'unknown')) AS isTold,
+              MAX(d.state IN ('queued', 'leased')) AS isOnTheWay
+       FROM deliveries d JOIN messages m ON m.id = d.messageId
+       WHERE m.alertId = :alertId AND COALESCE(m.step, 0) = :step AND m.kind IN ('alert', 'escalation')
+         AND d.createdAt >= :since
+       GROUP BY d.personId HAVING MAX(d.receivedAt) IS NULL) AS people`,
+    { alertId: alert.id, step: row.step, since: alert.announcedAt ?? alert.raisedAt },
+    transaction,
+  )
+  const { told, onTheWay } = waiting ?? { told: 0, onTheWay: 0 }
+  if (isOver || (told === 0 && onTheWay === 0)) {
+    await row.update({ nextReminderAt: null, endedAt: now }, { transaction })
+    return null
+  }
+  await row.update({ nextReminderAt: await reminderAfter(parts, alert, transaction) }, { transaction })
+  return told === 0 ? null : write(parts, 'reminder', row, alert, transaction)
+}
+
+const newestOf = (
+  alert: Alert,
+  transaction: Transaction,
+  where: { kind: 'alert' | 'escalation'; step?: number },
+): Promise<Message | null> =>
+  Message.findOne({
+    where: { alertId: alert.id, kind: where.kind, ...(where.step ? { step: where.step } : {}) },
+    order: [['id', 'DESC']],
+    transaction,
+  })
+
+/** What the first e-mail said, with why it comes again. */
+async function write(
+  parts: Parts,
+  kind: 'escalation' | 'reminder',
+  { step }: Escalation,
+  alert: Alert,
+  transaction: Transaction,
+): Promise<number | null> {
+  const first = await newestOf(alert, transaction, { kind: 'alert' })
+  if (!first?.content) return null
+  const content = messageContent.parse(first.content)
+  const message = {
+    ...{ kind, alertId: alert.id, step, content, isExercise: alert.isExercise },
+    subject: subjectLineOf(kind, content),
+    text: messageTextOf(kind, content),
+  }
+  return (await writeMessage(parts, message, transaction)).id
+}

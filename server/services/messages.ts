@@ -1,0 +1,47 @@
+/** The outbox: e-mails written once, each for everybody who is to get it. */
+import { Op } from 'sequelize'
+import type { MessageView } from '../../shared/schemas/message.ts'
+import { Message } from '../models/index.ts'
+import { presentMessages } from './messages/present.ts'
+import { notFound } from './problems.ts'
+
+export { mergeFlood } from './messages/flood.ts'
+export { writeDueHeartbeat } from './messages/heartbeat.ts'
+export { queueMessages } from './messages/queue.ts'
+export { writeTestMessage } from './messages/test.ts'
+export { writeMessage } from './messages/write.ts'
+export type { NewMessage } from './messages/write.ts'
+
+const aPage = 50
+
+/** Newest first; `before` is the last id of the page before. */
+export async function listMessages(asked: {
+  before?: number
+  alertId?: number
+}): Promise<{ messages: MessageView[]; next: number | null }> {
+  const { before, alertId } = asked
+  const rows = await Message.findAll({
+    where: { ...(before && { id: { [Op.lt]: before } }), ...(alertId && { alertId }) },
+    order: [['id', 'DESC']],
+    limit: aPage + 1,
+  })
+  const page = rows.slice(0, aPage)
+  return {
+    messages: await presentMessages(page),
+    next: rows.length > aPage ? (page.at(-1)?.id ?? null) : null,
+  }
+}
+
+/** As the list shows it. */
+export async function readMessageLine(messageId: number): Promise<MessageView | null> {
+  const row = await Message.findByPk(messageId)
+  return row ? ((await presentMessages([row])).at(0) ?? null) : null
+}
+
+/** With its whole text as it was frozen, before names and links were added for each person. */
+export async function readMessage(messageId: number): Promise<MessageView & { text: string; html: string | null }> {
+  const row = await Message.findByPk(messageId)
+  const line = await readMessageLine(messageId)
+  if (!row || !line) throw notFound('message', messageId)
+  return { ...line, text: row.text, html: row.html }
+}
