@@ -1,7 +1,7 @@
 /** Who is told next when nobody has confirmed: all times are stored, so that a stop loses none. */
 import type { Transaction } from 'sequelize'
 import { messageTextOf, subjectLineOf } from '../../shared/alerts/messageText.ts'
-import type { AlertState } from '../../shared/schemas/limit.ts'
+import type { AlertState, Recipients } from '../../shared/schemas/limit.ts'
 import { recipients } from '../../shared/schemas/limit.ts'
 import { messageContent } from '../../shared/schemas/message.ts'
 import type { Parts } from '../config/parts.ts'
@@ -60,21 +60,29 @@ async function escalateOne(
   return row.sentAt ? remind(parts, row, alert, transaction) : takeStep(parts, row, alert, transaction)
 }
 
-async function reminderAfter(parts: Parts, alert: Alert, transaction: Transaction): Promise<Date | null> {
+async function orderOf(alert: Alert, transaction: Transaction): Promise<Recipients> {
   const version = await LimitVersion.findByPk(alert.limitVersionId, { transaction })
-  const seconds = recipients.parse(version?.steps).remindEverySeconds
-  return seconds === null ? null : new Date(parts.clock.now().getTime() + seconds * 1000)
+  return recipients.parse(version?.steps)
 }
+
+const reminderAfter = ({ clock }: Parts, { remindEverySeconds }: Recipients): Date | null =>
+  remindEverySeconds === null ? null : new Date(clock.now().getTime() + remindEverySeconds * 1000)
 
 async function takeStep(parts: Parts, row: Escalation, alert: Alert, transaction: Transaction): Promise<number | null> {
   const now = parts.clock.now()
-  const nextReminderAt = await reminderAfter(parts, alert, transaction)
+  const order = await orderOf(alert, transaction)
+  const nextReminderAt = reminderAfter(parts, order)
   await row.update({ sentAt: now, nextReminderAt }, { transaction })
-  const known = await newestOf(alert, transaction, { kind: row.step === 0 ? 'alert' : 'escalation', step: row.step })
   const since = alert.announcedAt ?? alert.raisedAt
+  const known = await Message.findOne({
+    where: { alertId: alert.id, kind: ['alert', 'escalation'], step: row.step },
+    order: [['id', 'DESC']],
+    transaction,
+  })
   // The first step was written with the alert itself.
   if (known && known.createdAt >= since) return null
-  return write(parts, 'escalation', row, alert, transaction)
+  const isAtOnce = order.steps.at(row.step)?.afterSeconds === 0
+  return write(parts, isAtOnce ? 'alert' : 'escalation', row, alert, transaction)
 }
 
 async function remind(parts: Parts, row: Escalation, alert: Alert, transaction: Transaction): Promise<number | null> {
@@ -97,30 +105,23 @@ async function remind(parts: Parts, row: Escalation, alert: Alert, transaction: 
     await row.update({ nextReminderAt: null, endedAt: now }, { transaction })
     return null
   }
-  await row.update({ nextReminderAt: await reminderAfter(parts, alert, transaction) }, { transaction })
+  await row.update({ nextReminderAt: reminderAfter(parts, await orderOf(alert, transaction)) }, { transaction })
   return told === 0 ? null : write(parts, 'reminder', row, alert, transaction)
 }
-
-const newestOf = (
-  alert: Alert,
-  transaction: Transaction,
-  where: { kind: 'alert' | 'escalation'; step?: number },
-): Promise<Message | null> =>
-  Message.findOne({
-    where: { alertId: alert.id, kind: where.kind, ...(where.step ? { step: where.step } : {}) },
-    order: [['id', 'DESC']],
-    transaction,
-  })
 
 /** What the first e-mail said, with why it comes again. */
 async function write(
   parts: Parts,
-  kind: 'escalation' | 'reminder',
+  kind: 'alert' | 'escalation' | 'reminder',
   { step }: Escalation,
   alert: Alert,
   transaction: Transaction,
 ): Promise<number | null> {
-  const first = await newestOf(alert, transaction, { kind: 'alert' })
+  const first = await Message.findOne({
+    where: { alertId: alert.id, kind: 'alert' },
+    order: [['id', 'DESC']],
+    transaction,
+  })
   if (!first?.content) return null
   const content = messageContent.parse(first.content)
   const message = {

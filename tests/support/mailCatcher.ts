@@ -38,15 +38,15 @@ export async function startTestMailServer(port = 0): Promise<TestMailServer> {
       done(answer ? fault(answer) : undefined)
     },
     onData(stream, session, done) {
-      void simpleParser(stream).then((mail) => {
-        for (const { address } of session.envelope.rcptTo) catcher.caught.push({ to: address, mail })
-        if (catcher.dropAfterData > 0) {
+      simpleParser(stream).then(
+        (mail) => {
+          for (const { address } of session.envelope.rcptTo) catcher.caught.push({ to: address, mail })
+          if (catcher.dropAfterData === 0) return done()
           catcher.dropAfterData -= 1
           for (const socket of sockets.values()) socket.destroy()
-          return
-        }
-        done()
-      })
+        },
+        (error: Error) => done(error),
+      )
     },
   })
   server.server.on('connection', (socket: Socket) => {
