@@ -10,7 +10,13 @@ export default defineConfig({
     projects: [
       {
         extends: true,
-        test: { name: 'unit', include: ['tests/unit/**/*.test.ts', 'tests/reference/**/*.test.ts'], environment: 'node' },
+        test: {
+          name: 'unit',
+          include: ['tests/unit/**/*.test.ts', 'tests/reference/**/*.test.ts'],
+          environment: 'node',
+          // Many seeded hours of sea take seconds where the other lane is at work too.
+          testTimeout: 30_000,
+        },
       },
       {
         extends: true,
@@ -31,6 +37,7 @@ export default defineConfig({
           include: ['tests/client/**/*.test.ts'],
           environment: 'happy-dom',
           setupFiles: ['tests/client/setup.ts'],
+          testTimeout: 30_000,
         },
       },
       {
