@@ -21,7 +21,13 @@ const usedByAll = 'bus|audit|watchLog|problems|passwords|transaction'
  * Services whose writes share a transaction with others: an imported file is stored with the record of it, a leased
  * e-mail with its link, a step of an escalation with its e-mail.
  */
-const together = { imports: 'readings', deliveries: 'receipts', escalations: 'messages' }
+const together = {
+  imports: 'readings',
+  deliveries: 'receipts',
+  escalations: 'messages',
+  alerts: 'limits',
+  limits: 'alerts',
+}
 
 const serviceRules = [
   forbid(

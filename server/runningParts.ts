@@ -7,6 +7,7 @@ import { startDeliverMail } from './jobs/deliverMail.ts'
 import { startDemonstrationPast } from './jobs/demonstrationPast.ts'
 import { startEscalate } from './jobs/escalate.ts'
 import { startForgetSessions } from './jobs/forgetSessions.ts'
+import { startJudgeLimits } from './jobs/judgeLimits.ts'
 import { startKeepSeriesDays } from './jobs/keepSeriesDays.ts'
 import { startRetention } from './jobs/retention.ts'
 import { startSealAudits } from './jobs/sealAudits.ts'
@@ -34,6 +35,7 @@ export async function startRunningParts(parts: Parts, server: Server): Promise<S
     const telemetry = await startTelemetry({ ...parts, upgrades })
     started.push(telemetry)
     started.push(await startLive(parts, { upgrades }))
+    started.push(startJudgeLimits(parts))
     started.push(await startComputeEstimates(parts))
     started.push(startKeepSeriesDays(parts))
     started.push(await startCompactReadings(parts, telemetry.store))

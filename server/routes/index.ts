@@ -1,8 +1,10 @@
 /** All routes, one line a feature. */
 import type { Parts } from '../config/parts.ts'
 import { sessionCookieName } from '../config/sessionCookie.ts'
+import { alertRoutes } from './alerts.ts'
 import { installationRoutes } from './installation.ts'
 import { jobRoutes } from './jobs.ts'
+import { limitRoutes } from './limits.ts'
 import { listRoutes } from './lists.ts'
 import { messageRoutes } from './messages.ts'
 import { withOpenApi } from './openApi.ts'
@@ -25,6 +27,8 @@ const features: ((parts: Parts) => Route[])[] = [
   stationRoutes,
   stationKeyRoutes,
   stationHealthRoutes,
+  limitRoutes,
+  alertRoutes,
   messageRoutes,
   listRoutes,
   peopleRoutes,

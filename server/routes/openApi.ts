@@ -10,7 +10,7 @@ import type { Route } from './registry.ts'
 const session = 'session'
 
 function describe(registry: OpenAPIRegistry, { method, path, action, summary, ...shapes }: Route): void {
-  const { params, query, body, answer, status } = shapes
+  const { params, query, body, answer, media, status } = shapes
   const open = may(null, action)
   registry.registerPath({
     method,
@@ -27,7 +27,7 @@ function describe(registry: OpenAPIRegistry, { method, path, action, summary, ..
     responses: {
       [status]: {
         description: answer ? 'As asked' : 'Done',
-        ...(answer && { content: { 'application/json': { schema: answer } } }),
+        ...(answer && { content: { [media ?? 'application/json']: { schema: answer } } }),
       },
       default: { description: 'A problem', content: { 'application/problem+json': { schema: problem } } },
     },

@@ -46,6 +46,8 @@ export interface Declaration<
   body?: B
   /** Shape of the answer; what it does not name never leaves the server. Without it: 204. */
   answer?: A
+  /** Type of an answer that is text instead of JSON, such as `application/atom+xml`. */
+  media?: string
   /** Of the answer when all is well; 200, or 204 without an answer. */
   status?: number
   /** After so long the answer is 503. */
@@ -62,6 +64,7 @@ export interface Route {
   query: Shape | undefined
   body: Shape | undefined
   answer: Shape | undefined
+  media: string | undefined
   status: number
   /** Who, may they, shape, one call, present. */
   serve(request: Request, response: Response): Promise<void>
@@ -75,7 +78,7 @@ export function route<
   B extends Shape | undefined = undefined,
   A extends Shape | undefined = undefined,
 >(declared: Declaration<P, Q, B, A>): Route {
-  const { method, path, action, summary, params, query, body, answer } = declared
+  const { method, path, action, summary, params, query, body, answer, media } = declared
   const status = declared.status ?? (answer ? 200 : 204)
   async function serve(request: Request, response: Response): Promise<void> {
     const visitor = request.visitor ?? null
@@ -95,10 +98,11 @@ export function route<
     const result = await withDeadline(declared.handle(asked), declared.deadlineMilliseconds ?? usualDeadline)
     response.status(status)
     if (!response.get('Cache-Control')) response.set('Cache-Control', 'no-store')
-    if (answer) response.json(answer.parse(result))
+    if (media) response.type(media).send(String(result))
+    else if (answer) response.json(answer.parse(result))
     else response.end()
   }
-  return { method, path, action, summary, params, query, body, answer, status, serve }
+  return { method, path, action, summary, params, query, body, answer, media, status, serve }
 }
 
 /** Checks one part of the input; the faults name it by path, those of the body as a form names its fields. */

@@ -9,6 +9,8 @@ export interface Refusal {
   detail?: string
   errors?: Problem['errors']
   retryAfterSeconds?: number
+  /** How the resource stands now, where somebody else was quicker. */
+  current?: unknown
 }
 
 export class Refused extends Error {
@@ -63,12 +65,13 @@ export const databaseUnavailable = (): Refused =>
   })
 
 /** 412: somebody else was quicker; `version` is the one that holds now. */
-export const changedMeanwhile = (resource: string, version: number): Refused =>
+export const changedMeanwhile = (resource: string, version: number, current?: unknown): Refused =>
   new Refused({
     status: 412,
     code: `${resource}.changedMeanwhile`,
     title: 'Changed meanwhile',
     detail: `Somebody changed it while you did: it is at version ${version} now. Look at it again before you save.`,
+    ...(current !== undefined && { current }),
   })
 
 /** 428: a change has to say which version it was made from. */

@@ -29,6 +29,14 @@ const shapes = {
     /** Null: all operators and administrators. */
     heartbeatListId: z.number().int().positive().nullable(),
   }),
+  alerts: z.strictObject({
+    /** Urgent limits need a second person's consent or, alone, a written reason. */
+    asksSecondPerson: z.boolean(),
+    /** A limit lies on the shelf for one watch at most. */
+    longestShelfHours: z.number().min(1).max(24),
+    /** Sender of CAP messages: no spaces, commas, < or &. */
+    capSender: z.string().regex(/^[^\s,<&]{3,100}$/),
+  }),
   /** Months kept besides the current one; null keeps all. */
   retention: z.strictObject({
     readingBlocks: monthsKept,
@@ -53,6 +61,7 @@ const initial: Settings = {
       'A trace speed is the apparent speed along one pair of sensors, never a component of the wave vector: it reads too high by 1/cos of its angle to the waves.',
   },
   coast: { plan: null },
+  alerts: { asksSecondPerson: true, longestShelfHours: 8, capSender: 'duty@harbour.example' },
   mail: { heartbeatAt: '07:00', heartbeatListId: null },
   retention: { readingBlocks: 25, stationHealthHours: 25, estimates: null, estimateDetails: 25 },
 }

@@ -11,5 +11,7 @@ export const problem = z.object({
   code: z.string(),
   /** Faults by field, where the input was refused. */
   errors: z.array(z.object({ path: z.string(), message: z.string() })).optional(),
+  /** How the resource stands now, where somebody else changed it first. */
+  current: z.unknown().optional(),
 })
 export type Problem = z.infer<typeof problem>

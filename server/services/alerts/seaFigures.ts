@@ -103,17 +103,23 @@ export async function seaAt(sequelize: Sequelize, stationId: number, ends: numbe
   return new Map(windows.map(({ windowEndsAt, sea }) => [windowEndsAt, sea]))
 }
 
-/** Windows computed or computed anew since a moment, among those that ended in a span: what came late. */
-export const seaComputedSince = (
+/** Windows computed or computed anew in a while, among those that ended in a span: what came late. */
+export const seaComputedBetween = (
   sequelize: Sequelize,
   stationId: number,
-  since: number,
+  computed: { since: number; until: number },
   from: number,
   to: number,
 ): Promise<SeaWindow[]> =>
   read(
     sequelize,
-    `e.windowEndsAt > :from AND e.windowEndsAt <= :to AND e.computedAt > :since AND e.origin IN ('late', 'import')
-     AND ${isCurrent} ORDER BY e.windowEndsAt`,
-    { stationId, since: new Date(since), from: new Date(from), to: new Date(to) },
+    `e.windowEndsAt > :from AND e.windowEndsAt <= :to AND e.computedAt > :since AND e.computedAt <= :until
+     AND e.origin IN ('late', 'import') AND ${isCurrent} ORDER BY e.windowEndsAt`,
+    {
+      stationId,
+      since: new Date(computed.since),
+      until: new Date(computed.until),
+      from: new Date(from),
+      to: new Date(to),
+    },
   )

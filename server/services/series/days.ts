@@ -8,21 +8,43 @@ import { packDay, unpackDay } from '../../models/seriesDayPayload.ts'
 import type { DayValues } from '../../models/seriesDayPayload.ts'
 import { execute, select } from '../../models/sql.ts'
 import { inTransaction } from '../transaction.ts'
-import { pointRows, presentPoint } from './points.ts'
+import { heightFlag, windowRows } from './points.ts'
+import type { WindowRow } from './points.ts'
 
 export const dayMs = 86_400_000
 
-/** Names of the quantities kept, and where each stands in a point. Directions have no extremes and a mean by vectors. */
-const quantities = {
-  significantWaveHeight: 'significantWaveHeight',
-  height: 'height',
-  period: 'period',
-  towardDegrees: 'toward',
-  speed: 'speed',
-  directionalSpread: 'spread',
-} as const
-type Quantity = keyof typeof quantities
-const names = Object.keys(quantities) as Quantity[]
+/** Quantities that points show. Directions have no extremes and a mean by vectors. */
+const pointQuantities = [
+  'significantWaveHeight',
+  'height',
+  'period',
+  'towardDegrees',
+  'speed',
+  'directionalSpread',
+] as const
+/** Quantities that back-tests and studies read beside them. */
+const furtherQuantities = [
+  'significantWaveHeightSd',
+  'peakPeriod',
+  'meanPeriod',
+  'energyPeriod',
+  'energyFlux',
+  'surgeHeight',
+  'swellHeight',
+  'swellPeriod',
+  'swellTowardDegrees',
+  'swellSpeed',
+  'windSeaHeight',
+  'windSeaPeriod',
+  'windSeaTowardDegrees',
+  'windSeaSpeed',
+] as const
+type PointQuantity = (typeof pointQuantities)[number]
+type Quantity = PointQuantity | (typeof furtherQuantities)[number]
+const names: Quantity[] = [...pointQuantities, ...furtherQuantities]
+/** Of the vector: withheld where it was refused. */
+const ofVector: Quantity[] = ['height', 'period', 'towardDegrees', 'speed', 'directionalSpread']
+const isDirection = (quantity: Quantity): boolean => /owardDegrees$/.test(quantity)
 
 /** `YYYY-MM-DD` of the UTC day that a time lies in. */
 export const dayOf = (time: number): string => DateTime.fromMillis(time, { zone: 'utc' }).toISODate() ?? ''
@@ -31,17 +53,17 @@ const startOf = (day: string): number => Date.parse(`${day}T00:00:00Z`)
 /** A window belongs to the day in which it ends, midnight to the day that it begins. */
 export async function rebuildSeriesDay(parts: Parts, stationId: number, day: string): Promise<void> {
   const start = startOf(day)
-  const points = (await pointRows(parts, stationId, start - 1, start + dayMs - 1)).map(presentPoint)
-  const stepMs = spacingOf(points)
+  const windows = await windowRows(parts, stationId, start - 1, start + dayMs - 1)
+  const stepMs = spacingOf(windows)
   await inTransaction(parts.sequelize, async (transaction) => {
     const subject = { subjectKind: 'station', subjectId: stationId, day }
     await SeriesDay.destroy({ where: subject, transaction })
-    if (points.length === 0) return
+    if (windows.length === 0) return
     const rows = names.map((quantity) => ({
       ...subject,
       quantity,
       stepSeconds: stepMs / 1000,
-      ...packedQuantity(points, quantity, start, stepMs),
+      ...packedQuantity(windows, quantity, start, stepMs),
     }))
     await SeriesDay.bulkCreate(rows, { transaction })
   })
@@ -55,30 +77,31 @@ export async function rebuildSeriesDays(parts: Parts, stationId: number, first: 
 }
 
 /** The smallest distance between neighbours: a gap does not change it. A day with one window has steps of a minute. */
-function spacingOf(points: SeriesPoint[]): number {
-  const times = points.map(({ at }) => Date.parse(at))
+function spacingOf(windows: WindowRow[]): number {
+  const times = windows.map(({ windowEndsAt }) => windowEndsAt.getTime())
   const steps = times.slice(1).map((time, n) => time - times[n])
   return Math.min(...steps, 60_000 * (steps.length === 0 ? 1 : 60))
 }
 
-function packedQuantity(points: SeriesPoint[], quantity: Quantity, start: number, stepMs: number) {
+/** Flags are the estimate's, but beside the height's error they are the height's own. */
+function packedQuantity(windows: WindowRow[], quantity: Quantity, start: number, stepMs: number) {
   const length = Math.ceil(dayMs / stepMs)
   const day: DayValues = { values: new Float32Array(length).fill(NaN), flags: new Uint8Array(length) }
   const good: number[] = []
-  for (const point of points) {
-    const slot = Math.floor((Date.parse(point.at) - start) / stepMs)
-    const value = point[quantities[quantity]]
-    day.flags[slot] = point.qualityFlag
+  for (const row of windows) {
+    const slot = Math.floor((row.windowEndsAt.getTime() - start) / stepMs)
+    const value = ofVector.includes(quantity) && !row.resolved ? null : row[quantity]
+    day.flags[slot] = quantity === 'significantWaveHeightSd' ? heightFlag(row) : row.qualityFlag
     if (value === null) continue
     day.values[slot] = value
-    if (point.qualityFlag === 1 || point.qualityFlag === 3) good.push(value)
+    if (row.qualityFlag === 1 || row.qualityFlag === 3) good.push(value)
   }
   return { ...summary(good, quantity), goodCount: good.length, payload: packDay(day) }
 }
 
 function summary(good: number[], quantity: Quantity) {
   if (good.length === 0) return { minimum: null, maximum: null, mean: null }
-  if (quantity === 'towardDegrees') return { minimum: null, maximum: null, mean: meanBearing(good) }
+  if (isDirection(quantity)) return { minimum: null, maximum: null, mean: meanBearing(good) }
   const mean = good.reduce((sum, value) => sum + value, 0) / good.length
   return { minimum: Math.min(...good), maximum: Math.max(...good), mean }
 }
@@ -107,8 +130,9 @@ export async function packedDays(
   const rows = await select<StoredDay>(
     sequelize,
     `SELECT DATE_FORMAT(day, '%Y-%m-%d') AS day, quantity, stepSeconds, payload FROM seriesDays
-     WHERE subjectKind = 'station' AND subjectId = :stationId AND day BETWEEN :first AND :last ORDER BY day`,
-    { stationId, first, last },
+     WHERE subjectKind = 'station' AND subjectId = :stationId AND quantity IN (:quantities)
+       AND day BETWEEN :first AND :last ORDER BY day`,
+    { stationId, quantities: [...pointQuantities], first, last },
   )
   const days = new Map<string, StoredDay[]>()
   for (const row of rows) days.set(row.day, [...(days.get(row.day) ?? []), row])
@@ -119,7 +143,7 @@ function pointsOfDay(day: string, stored: StoredDay[]): SeriesPoint[] {
   const unpacked = new Map(stored.map(({ quantity, payload }) => [quantity, unpackDay(payload)]))
   const flags = unpacked.get('significantWaveHeight')?.flags ?? new Uint8Array()
   const stepMs = (stored[0]?.stepSeconds ?? 60) * 1000
-  const at = (quantity: Quantity, slot: number): number | null => {
+  const at = (quantity: PointQuantity, slot: number): number | null => {
     const value = unpacked.get(quantity)?.values[slot] ?? NaN
     return Number.isNaN(value) ? null : value
   }

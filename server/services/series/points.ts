@@ -1,5 +1,6 @@
 /** Points of a station's series out of its current estimates. */
-import { seriesPoint } from '../../../shared/schemas/station.ts'
+import { flagOf } from '../../../shared/alerts/figures.ts'
+import { currentEstimate, seriesPoint } from '../../../shared/schemas/station.ts'
 import type { SeriesPoint } from '../../../shared/schemas/station.ts'
 import type { Parts } from '../../config/parts.ts'
 import { select } from '../../models/sql.ts'
@@ -16,12 +17,53 @@ export interface PointRow {
   directionalSpread: number | null
 }
 
+/** What the packed days keep beside the points. */
+export interface WindowRow extends PointRow {
+  reason: string | null
+  significantWaveHeightSd: number | null
+  peakPeriod: number | null
+  meanPeriod: number | null
+  energyPeriod: number | null
+  energyFlux: number | null
+  surgeHeight: number | null
+  swellHeight: number | null
+  swellPeriod: number | null
+  swellTowardDegrees: number | null
+  swellSpeed: number | null
+  windSeaHeight: number | null
+  windSeaPeriod: number | null
+  windSeaTowardDegrees: number | null
+  windSeaSpeed: number | null
+}
+
+const ofPoints = [
+  'windowEndsAt', 'resolved', 'qualityFlag', 'towardDegrees', 'significantWaveHeight', 'height', 'period', 'speed',
+  'directionalSpread',
+] // prettier-ignore
+const ofWindows = [
+  'reason', 'significantWaveHeightSd', 'peakPeriod', 'meanPeriod', 'energyPeriod', 'energyFlux', 'surgeHeight',
+  'swellHeight', 'swellPeriod', 'swellTowardDegrees', 'swellSpeed', 'windSeaHeight', 'windSeaPeriod',
+  'windSeaTowardDegrees', 'windSeaSpeed',
+] // prettier-ignore
+
 /** Of the windows that end after `from` and not after `to`, rising in time; highest revisions of the operational run. */
-export const pointRows = ({ sequelize }: Parts, stationId: number, from: number, to: number): Promise<PointRow[]> =>
-  select<PointRow>(
+export const pointRows = (parts: Parts, stationId: number, from: number, to: number): Promise<PointRow[]> =>
+  rowsOf<PointRow>(parts, ofPoints, stationId, from, to)
+
+/** The same with everything that is packed. */
+export const windowRows = (parts: Parts, stationId: number, from: number, to: number): Promise<WindowRow[]> =>
+  rowsOf<WindowRow>(parts, [...ofPoints, ...ofWindows], stationId, from, to)
+
+const rowsOf = <Row extends PointRow>(
+  { sequelize }: Parts,
+  columns: string[],
+  stationId: number,
+  from: number,
+  to: number,
+): Promise<Row[]> =>
+  select<Row>(
     sequelize,
-    `SELECT e.windowEndsAt, e.resolved, e.qualityFlag, e.towardDegrees, e.significantWaveHeight, e.height, e.period,
-       e.speed, e.directionalSpread
+    `SELECT ${columns.map((name) => `e.${name}`).join(', ')}
      FROM estimates e
      WHERE e.stationId = :stationId AND e.runId = 0 AND e.windowEndsAt > :from AND e.windowEndsAt <= :to
        AND NOT EXISTS (SELECT 1 FROM estimates newer WHERE newer.stationId = e.stationId
@@ -46,6 +88,17 @@ export function presentPoint(row: PointRow): SeriesPoint {
     spread: ofVector(row.directionalSpread),
   }
 }
+
+/** The flag of the height, which a refused direction leaves standing. */
+export const heightFlag = ({ resolved, reason, qualityFlag }: WindowRow): number =>
+  flagOf(
+    {
+      resolved: Boolean(resolved),
+      reason: currentEstimate.shape.reason.parse(reason),
+      qualityFlag: seriesPoint.shape.qualityFlag.parse(qualityFlag),
+    },
+    false,
+  )
 
 /** The newest point of each step; a step without any has none, so that gaps show. */
 export function newestOfEachStep(points: SeriesPoint[], stepMs: number): SeriesPoint[] {

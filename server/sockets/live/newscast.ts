@@ -1,9 +1,15 @@
 /** Turns the news of the process into events of rooms. Bodies are what REST gives, made by the same functions. */
 import { currentEstimate, seriesPoint, stationView, tracesChunk } from '../../../shared/schemas/station.ts'
+import { alertView } from '../../../shared/schemas/alert.ts'
+import { limitView } from '../../../shared/schemas/limit.ts'
+import { messageView } from '../../../shared/schemas/message.ts'
 import { liveEventKinds as kinds } from '../../../shared/wire/live.ts'
 import type { Parts } from '../../config/parts.ts'
 import { presentStation } from '../../presenters/station.ts'
+import { readAlert } from '../../services/alerts.ts'
 import { currentEstimateOf } from '../../services/estimates.ts'
+import { readLimit } from '../../services/limits.ts'
+import { readMessageLine } from '../../services/messages.ts'
 import { readPoint } from '../../services/series.ts'
 import { listStations } from '../../services/stations.ts'
 import type { Hub } from '../hub.ts'
@@ -21,25 +27,25 @@ export interface Newscast {
 
 export function startNewscast(parts: Parts, hub: Hub): Newscast {
   const { bus, clock, logger } = parts
-  const turns = new Map<number, Promise<void>>()
+  const turns = new Map<string, Promise<void>>()
   const toldAt = new Map<number, number>()
 
-  /** In the order of the news of each station, for each event is read from the database. */
-  function inTurn(stationId: number, rooms: string[], work: () => Promise<void>): void {
+  /** In the order of the news of each subject, for each event is read from the database. */
+  function inTurn(subject: string, rooms: string[], work: () => Promise<void>): void {
     const heard = rooms.filter((room) => hub.isHeard(room))
     if (heard.length === 0) return
-    const turn = (turns.get(stationId) ?? Promise.resolve()).then(work).catch((error: unknown) => {
-      logger.warn({ error, stationId }, 'an event could not be made')
+    const turn = (turns.get(subject) ?? Promise.resolve()).then(work).catch((error: unknown) => {
+      logger.warn({ error, subject }, 'an event could not be made')
       for (const room of heard) hub.skip(room)
     })
-    turns.set(stationId, turn)
+    turns.set(subject, turn)
   }
 
   const roomsOf = (stationId: number): string[] => ['stations', `station:${stationId}`]
 
   function tellStation(stationId: number): void {
     toldAt.set(stationId, clock.monotonic())
-    inTurn(stationId, roomsOf(stationId), async () => {
+    inTurn(`station ${stationId}`, roomsOf(stationId), async () => {
       const body = stationView.parse(await presentStation(parts, stationId))
       for (const room of roomsOf(stationId)) hub.publish(room, kinds.station, body, stationId)
     })
@@ -47,7 +53,7 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
 
   /** A late window of long ago is news for the series alone. */
   function tellEstimate(stationId: number, windowEndsAt: number): void {
-    inTurn(stationId, roomsOf(stationId), async () => {
+    inTurn(`station ${stationId}`, roomsOf(stationId), async () => {
       const current = await currentEstimateOf(parts, stationId)
       if (current && Date.parse(current.windowEndsAt) === windowEndsAt) {
         const body = currentEstimate.parse(current)
@@ -59,7 +65,35 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
     })
   }
 
+  /** Events of a room without a station, in the order of their news. */
+  function tell(room: string, work: () => Promise<void>): void {
+    inTurn(room, [room], work)
+  }
+
+  const tellAlert = (alertId: number): void =>
+    tell('alerts', async () =>
+      hub.publish('alerts', kinds.alert, alertView.parse(await readAlert(parts, alertId)), alertId),
+    )
+
+  const tellLimit = (limitId: number): void =>
+    tell('limits', async () =>
+      hub.publish('limits', kinds.limit, limitView.parse(await readLimit(parts, limitId)), limitId),
+    )
+
+  const tellMessage = (messageId: number): void =>
+    tell('messages', async () => {
+      const line = await readMessageLine(messageId)
+      if (line) hub.publish('messages', kinds.message, messageView.parse(line), messageId)
+    })
+
   const subscriptions = [
+    bus.subscribe('alert.changed', ({ alertId }) => tellAlert(alertId)),
+    bus.subscribe('limit.changed', ({ limitId }) => tellLimit(limitId)),
+    bus.subscribe('message.changed', ({ messageId, alertId }) => {
+      tellMessage(messageId)
+      // Its counts of e-mails.
+      if (alertId !== null) tellAlert(alertId)
+    }),
     bus.subscribe('traces.arrived', (chunk) => {
       const room = `traces:${chunk.stationId}`
       if (hub.isHeard(room)) hub.publish(room, kinds.traces, tracesChunk.parse(chunk))

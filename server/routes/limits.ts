@@ -1,0 +1,141 @@
+import { z } from 'zod'
+import { presentQuantity, quantities } from '../../shared/alerts/quantities.ts'
+import { shelving, withReason } from '../../shared/schemas/alert.ts'
+import { backTestQuestion, backTestView, limitChange, limitDraft, limitView, limitWithHistory, quantityView } from '../../shared/schemas/limit.ts' // prettier-ignore
+import type { Parts } from '../config/parts.ts'
+import { officeOf } from '../presenters/office.ts'
+import { resetLimit, returnToService, shelveLimit, takeOutOfService, unshelveLimit } from '../services/alerts.ts'
+import type { Office } from '../services/alerts.ts'
+import { askBackTest, changeLimit, createLimit, listLimits, readLimit, readLimitHistory, retireLimit } from '../services/limits.ts' // prettier-ignore
+import { versionIn } from './ifMatch.ts'
+import { idInPath } from './parameters.ts'
+import { route } from './registry.ts'
+import type { Route } from './registry.ts'
+
+const limitInPath = z.object({ limitId: idInPath })
+/** A year of several quantities takes its time on a busy machine. */
+const backTestDeadline = 20_000
+
+type Act = (parts: Parts, office: Office, limitId: number, by: { personId: number; note: string }) => Promise<unknown>
+
+/** Acts that need a reason and answer the limit as it then stands. */
+const act = (
+  parts: Parts,
+  name: string,
+  action: 'limits.change' | 'alerts.shelve',
+  summary: string,
+  work: Act,
+): Route =>
+  route({
+    method: 'post',
+    path: `/api/limits/:limitId/${name}`,
+    action,
+    summary,
+    params: limitInPath,
+    body: withReason,
+    answer: limitView,
+    async handle({ params: { limitId }, body, caller }) {
+      await work(parts, await officeOf(parts), limitId, { personId: caller.person.id, note: body.reason })
+      return readLimit(parts, limitId)
+    },
+  })
+
+export const limitRoutes = (parts: Parts): Route[] => [
+  route({
+    method: 'get',
+    path: '/api/limits',
+    action: 'limits.read',
+    summary: 'All limits that are not retired, with their state and newest value',
+    answer: z.array(limitView),
+    handle: () => listLimits(parts),
+  }),
+  route({
+    method: 'get',
+    path: '/api/limits/:limitId',
+    action: 'limits.read',
+    summary: 'One limit with all its versions, newest first',
+    params: limitInPath,
+    answer: limitWithHistory,
+    handle: ({ params }) => readLimitHistory(parts, params.limitId),
+  }),
+  route({
+    method: 'get',
+    path: '/api/quantities',
+    action: 'limits.read',
+    summary: 'Everything a limit may be set on',
+    answer: z.array(quantityView),
+    handle: async () => quantities.map(presentQuantity),
+  }),
+  route({
+    method: 'post',
+    path: '/api/limits',
+    action: 'limits.change',
+    summary: "Set a limit; a station's first wave limit brings one on stale data with it",
+    body: limitDraft,
+    answer: limitView,
+    status: 201,
+    async handle({ body, caller }) {
+      const limitId = await createLimit(parts, await officeOf(parts), body, caller.person.id)
+      return readLimit(parts, limitId)
+    },
+  }),
+  route({
+    method: 'put',
+    path: '/api/limits/:limitId',
+    action: 'limits.change',
+    summary: 'Put a new version in force; needs If-Match with the version of the limit',
+    params: limitInPath,
+    body: limitChange,
+    answer: limitView,
+    async handle({ params: { limitId }, body, caller, request }) {
+      const change = { limitId, version: versionIn(request), change: body, personId: caller.person.id }
+      await changeLimit(parts, await officeOf(parts), change)
+      return readLimit(parts, limitId)
+    },
+  }),
+  route({
+    method: 'delete',
+    path: '/api/limits/:limitId',
+    action: 'limits.change',
+    summary: 'Retire a limit, with a reason; it is kept with its alerts; needs If-Match',
+    params: limitInPath,
+    body: withReason,
+    answer: limitView,
+    async handle({ params: { limitId }, body, caller, request }) {
+      const order = { limitId, version: versionIn(request), reason: body.reason, personId: caller.person.id }
+      await retireLimit(parts, await officeOf(parts), order)
+      return readLimit(parts, limitId)
+    },
+  }),
+  route({
+    method: 'post',
+    path: '/api/limits/:limitId/shelve',
+    action: 'alerts.shelve',
+    summary: 'Put a limit on the shelf, at most for one watch; an urgent one needs a second person or a written reason',
+    params: limitInPath,
+    body: shelving,
+    answer: limitView,
+    async handle({ params: { limitId }, body, caller }) {
+      await shelveLimit(parts, await officeOf(parts), limitId, body, caller.person.id)
+      return readLimit(parts, limitId)
+    },
+  }),
+  act(parts, 'unshelve', 'alerts.shelve', 'Take a limit off the shelf; it is asked afresh', unshelveLimit),
+  act(parts, 'reset', 'alerts.shelve', 'Let go an alert that has latched', resetLimit),
+  act(parts, 'takeOutOfService', 'limits.change', 'Take a limit out of service', takeOutOfService),
+  act(parts, 'returnToService', 'limits.change', 'Put a limit back in service; it is asked afresh', returnToService),
+  route({
+    method: 'post',
+    path: '/api/backTests',
+    // It changes nothing, but only who may set a limit has a draft to try.
+    action: 'limits.change',
+    summary: 'A draft over the stored figures of the last 7, 30 or 365 days',
+    body: backTestQuestion,
+    answer: backTestView,
+    deadlineMilliseconds: backTestDeadline,
+    async handle({ body }) {
+      const { timeZone } = await officeOf(parts)
+      return askBackTest(parts, timeZone, body)
+    },
+  }),
+]

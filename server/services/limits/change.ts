@@ -1,0 +1,283 @@
+/** Limits made, changed as a new version with author and reason, retired. */
+import type { Transaction } from 'sequelize'
+import { conditionWords, titleOf } from '../../../shared/alerts/describe.ts'
+import { quantityOf } from '../../../shared/alerts/quantities.ts'
+import type { LimitChange, LimitClass, LimitContent, LimitDraft } from '../../../shared/schemas/limit.ts'
+import type { Parts } from '../../config/parts.ts'
+import { Alert, DistributionList, Limit, LimitState, LimitVersion, Station } from '../../models/index.ts'
+import { recordAudit } from '../audit.ts'
+import { askConsent } from '../alerts/acts.ts'
+import { atDesk, holdStates, keepStates } from '../alerts/desk.ts'
+import type { Desk } from '../alerts/desk.ts'
+import { isSuppressed } from '../alerts/design.ts'
+import { addEvent, happen } from '../alerts/lifecycle.ts'
+import type { Office } from '../alerts/office.ts'
+import { endShelvings } from '../alerts/shelves.ts'
+import { endSteps } from '../alerts/tell.ts'
+import { changedMeanwhile, invalidInput, notFound, Refused } from '../problems.ts'
+import { writeSystemLine } from '../watchLog.ts'
+import { presentLimits } from './present.ts'
+import { limitsInForce } from './rows.ts'
+
+type Faults = { path: string; message: string }[]
+const priorities = ['low', 'medium', 'high', 'urgent']
+
+/** What shapes alone cannot tell: quantities that fit the subject and each other, values in their range, lists that are there. */
+async function classOf(
+  draft: Pick<LimitDraft, 'subjectKind' | 'subjectId' | 'content'>,
+  transaction: Transaction,
+): Promise<LimitClass> {
+  const { subjectKind, subjectId, content } = draft
+  const faults: Faults = []
+  const refuse = (path: string, message: string) => faults.push({ path, message })
+  const limitClass = quantityOf(content.condition.comparisons[0].quantity).limitClass
+  for (const [index, comparison] of content.condition.comparisons.entries()) {
+    const quantity = quantityOf(comparison.quantity)
+    const path = `content.condition.comparisons.${index}`
+    if (!quantity.subjects.includes(subjectKind)) refuse(`${path}.quantity`, `is not a quantity of a ${subjectKind}`)
+    if (quantity.limitClass !== limitClass) refuse(`${path}.quantity`, 'must not mix waves and data health')
+    if (quantity.isCircular !== (comparison.kind === 'sector')) refuse(`${path}.kind`, 'does not fit the quantity')
+    if (comparison.kind === 'above' && comparison.riseOverSeconds !== null && !quantity.hasRise) {
+      refuse(`${path}.riseOverSeconds`, 'has no rise')
+    }
+    if (comparison.kind === 'sector') continue
+    for (const end of ['raise', 'clear'] as const) {
+      if (comparison[end] < quantity.least || comparison[end] > quantity.most)
+        refuse(`${path}.${end}`, 'is out of range')
+    }
+  }
+  if (subjectKind === 'place') refuse('subjectKind', 'places have no limits yet')
+  if ((subjectKind === 'system') !== (subjectId === null)) refuse('subjectId', 'does not fit the subject')
+  if (subjectKind === 'station' && subjectId !== null) {
+    const station = await Station.findByPk(subjectId, { transaction })
+    if (!station || station.retiredAt !== null) refuse('subjectId', 'is no station in service')
+  }
+  const wanted = [...new Set(content.recipients.steps.flatMap(({ listIds }) => listIds))]
+  const known =
+    wanted.length === 0 ? 0 : await DistributionList.count({ where: { id: wanted, retiredAt: null }, transaction })
+  if (known < wanted.length) refuse('content.recipients.steps', 'names a list that is not there')
+  if (faults.length > 0) throw invalidInput(faults)
+  return limitClass
+}
+
+interface NewVersion {
+  limitId: number
+  number: number
+  order: LimitChange
+  personId: number | null
+}
+
+async function addVersion(
+  { now, transaction }: Desk,
+  { limitId, number, order, personId }: NewVersion,
+): Promise<LimitVersion> {
+  const { content, reason, consentById, aloneReason } = order
+  const { recipients, ...rest } = content
+  const made = { authorId: personId, reason, consentById, aloneReason, validFrom: new Date(now) }
+  return LimitVersion.create({ limitId, number, ...rest, steps: recipients, ...made }, { transaction })
+}
+
+/** The office's rule for urgent limits, asked when one is made, changed, or becomes one. */
+async function askForUrgent(
+  desk: Desk,
+  content: LimitContent,
+  order: LimitChange,
+  personId: number | null,
+): Promise<void> {
+  if (content.priority !== 'urgent' || !desk.office.asksSecondPerson || personId === null) return
+  await askConsent(desk, order.consentById, order.aloneReason, personId, 'consentById')
+}
+
+/** In a desk of the caller's; `personId` null: the program itself. */
+export async function addLimit(desk: Desk, draft: LimitDraft, personId: number | null): Promise<number> {
+  const { parts, transaction } = desk
+  const { subjectKind, subjectId, content, reason } = draft
+  const limitClass = await classOf(draft, transaction)
+  await askForUrgent(desk, content, draft, personId)
+  const now = new Date(desk.now)
+  const limit = await Limit.create(
+    {
+      ...{
+        subjectKind,
+        subjectId,
+        limitClass,
+        currentVersionId: null,
+        createdAt: now,
+        updatedAt: now,
+        retiredAt: null,
+      },
+      ...{ outOfServiceAt: null, outOfServiceReason: null, outOfServiceById: null },
+    },
+    { transaction },
+  )
+  const version = await addVersion(desk, { limitId: limit.id, number: 1, order: draft, personId })
+  await limit.update({ currentVersionId: version.id }, { transaction })
+  await LimitState.create(
+    {
+      ...{ limitId: limit.id, state: 'normal', since: now, isActive: false, activeSince: null, crossedAt: null },
+      ...{ pendingSince: null, lastKnownAt: null, lastWindowEndsAt: null, lastRevision: null },
+      ...{ value: null, valueSd: null, notJudged: 'neverYet' },
+    },
+    { transaction },
+  )
+  const audit = { action: 'limit.add', entity: 'limit', entityId: limit.id, after: { subjectKind, subjectId, content } }
+  await recordAudit(parts, { ...audit, personId }, transaction)
+  const [row] = await limitsInForce(parts.sequelize, 'l.id = :id', { id: limit.id }, transaction)
+  if (row) {
+    const text = `Limit set: ${titleOf(content.title, content.condition, row.subjectName)}. ${conditionWords(content.condition)} ${reason}`
+    await writeSystemLine(parts, { kind: 'limit', text, links: { limitId: limit.id } }, transaction)
+  }
+  desk.changed.limits.add(limit.id)
+  return limit.id
+}
+
+/** Missing data raises no wave alert: it raises this one, which comes with a station's first wave limit. */
+async function addStaleLimit(desk: Desk, draft: LimitDraft, personId: number): Promise<void> {
+  const { transaction } = desk
+  const { subjectId } = draft
+  if (draft.subjectKind !== 'station' || subjectId === null) return
+  const where = { subjectKind: 'station', subjectId, limitClass: 'dataHealth', retiredAt: null }
+  if (await Limit.findOne({ where, transaction })) return
+  const station = await Station.findByPk(subjectId, { transaction })
+  if (!station) return
+  const content = staleContent(station.staleAfterSeconds, draft.content.recipients)
+  const reason = 'Comes with the first limit of a station'
+  await addLimit(
+    desk,
+    { subjectKind: 'station', subjectId, content, reason, consentById: null, aloneReason: null },
+    personId,
+  )
+}
+
+/** No usable figure for the station's stale limit; clears with the first one. */
+export const staleContent = (staleAfterSeconds: number, recipients: LimitContent['recipients']): LimitContent => ({
+  title: null,
+  condition: {
+    comparisons: [
+      { kind: 'above', quantity: 'dataAge', raise: staleAfterSeconds, clear: staleAfterSeconds, riseOverSeconds: null },
+    ],
+    when: null,
+    onDelaySeconds: 0,
+    offDelaySeconds: 0,
+    clearSigmas: 0,
+    worstQuality: 3,
+    latches: false,
+  },
+  priority: 'medium',
+  recipients,
+  schedule: null,
+  note: "The station's own stale limit.",
+  toCheck:
+    'The telemetry link, the power of the station and its sensors. Limits of this station are not judged meanwhile.',
+  reviewOn: null,
+  isPublished: false,
+})
+
+export const createLimit = (parts: Parts, office: Office, draft: LimitDraft, personId: number): Promise<number> =>
+  atDesk(parts, office, async (desk) => {
+    const id = await addLimit(desk, draft, personId)
+    if (quantityOf(draft.content.condition.comparisons[0].quantity).limitClass === 'wave') {
+      await addStaleLimit(desk, draft, personId)
+    }
+    return id
+  })
+
+async function lockedLimit(desk: Desk, limitId: number, version: number): Promise<Limit> {
+  const limit = await Limit.findByPk(limitId, { lock: true, transaction: desk.transaction })
+  if (!limit) throw notFound('limit', limitId)
+  if (limit.version !== version) {
+    const [current] = await presentLimits(desk.parts, [limit])
+    throw changedMeanwhile('limit', limit.version, current)
+  }
+  if (limit.retiredAt !== null) {
+    const detail = 'It was retired and is kept for the record alone.'
+    throw new Refused({ status: 409, code: 'limit.retired', title: 'Retired', detail })
+  }
+  return limit
+}
+
+export const changeLimit = (
+  parts: Parts,
+  office: Office,
+  { limitId, version, change, personId }: { limitId: number; version: number; change: LimitChange; personId: number },
+): Promise<void> =>
+  atDesk(parts, office, async (desk) => {
+    const { transaction } = desk
+    const held = (await holdStates(desk, [limitId])).get(limitId)
+    const limit = await lockedLimit(desk, limitId, version)
+    const { subjectKind, subjectId } = limit
+    const limitClass = await classOf({ subjectKind, subjectId, content: change.content }, transaction)
+    if (limitClass !== limit.limitClass) {
+      throw invalidInput([{ path: 'content.condition.comparisons.0.quantity', message: 'is of another class' }])
+    }
+    await askForUrgent(desk, change.content, change, personId)
+    const before = await LimitVersion.findByPk(limit.currentVersionId ?? 0, { transaction })
+    const next = await addVersion(desk, { limitId, number: (before?.number ?? 0) + 1, order: change, personId })
+    await limit.update(
+      { currentVersionId: next.id, version: limit.version + 1, updatedAt: new Date(desk.now) },
+      { transaction },
+    )
+    const audit = { action: 'limit.change', entity: 'limit', entityId: limitId, before, after: change.content }
+    await recordAudit(parts, { ...audit, personId }, transaction)
+    desk.changed.limits.add(limitId)
+    const [row] = await limitsInForce(parts.sequelize, 'l.id = :limitId', { limitId }, transaction)
+    if (!row || !held) return
+    const title = titleOf(row.title, row.condition, row.subjectName)
+    const text = `Limit changed to version ${next.number}: ${title}. ${conditionWords(row.condition)} ${change.reason}`
+    await writeSystemLine(parts, { kind: 'limit', text, links: { limitId } }, transaction)
+    const open = { limitId, isExercise: false, closedAt: null }
+    const alert = await Alert.findOne({ where: open, lock: true, transaction })
+    const hasRisen = priorities.indexOf(row.priority) > priorities.indexOf(before?.priority ?? 'urgent')
+    if (alert) {
+      await alert.update({ priority: row.priority, version: alert.version + 1 }, { transaction })
+      const kind = hasRisen ? 'priorityRose' : 'limitChanged'
+      await addEvent(desk, alert.id, {
+        kind,
+        text: `Limit changed to version ${next.number}`,
+        personId,
+        note: change.reason,
+      })
+    }
+    // What is on the shelf returns at once when its priority rises.
+    if (hasRisen && held.state === 'shelved') {
+      await endShelvings(desk, limitId, personId)
+      const facts = { isShelved: false, isSuppressed: isSuppressed(row, desk.now, office.timeZone) }
+      const at = held.lastWindowEndsAt ?? desk.now
+      await happen(desk, row, held, { cause: 'unshelve', facts, at, sea: null, personId, note: 'The priority rose' })
+    }
+    // A delay under way was counted by the old condition.
+    held.track = { ...held.track, pendingSince: null }
+    await keepStates(desk, [held])
+  })
+
+/** The limit is kept, with its alerts; an open one is closed. */
+export const retireLimit = (
+  parts: Parts,
+  office: Office,
+  { limitId, version, reason, personId }: { limitId: number; version: number; reason: string; personId: number },
+): Promise<void> =>
+  atDesk(parts, office, async (desk) => {
+    const { transaction } = desk
+    const held = (await holdStates(desk, [limitId])).get(limitId)
+    const limit = await lockedLimit(desk, limitId, version)
+    const now = new Date(desk.now)
+    await limit.update({ retiredAt: now, version: limit.version + 1, updatedAt: now }, { transaction })
+    await endShelvings(desk, limitId, personId)
+    for (const alert of await Alert.findAll({ where: { limitId, closedAt: null }, lock: true, transaction })) {
+      await alert.update({ state: 'normal', closedAt: now, version: alert.version + 1 }, { transaction })
+      await addEvent(desk, alert.id, { kind: 'closed', text: 'The limit was retired', personId, note: reason })
+      await endSteps(desk, alert.id, true)
+    }
+    if (held) {
+      const track = { isActive: false, activeSince: null, crossedAt: null, pendingSince: null, lastKnownAt: null }
+      await keepStates(desk, [{ ...held, state: 'normal', since: desk.now, track }])
+    }
+    const audit = { action: 'limit.retire', entity: 'limit', entityId: limitId, after: { reason } }
+    await recordAudit(parts, { ...audit, personId }, transaction)
+    await writeSystemLine(
+      parts,
+      { kind: 'limit', text: `Limit ${limitId} retired. ${reason}`, links: { limitId } },
+      transaction,
+    )
+    desk.changed.limits.add(limitId)
+  })

@@ -1,0 +1,300 @@
+import { describe, expect, it } from 'vitest'
+import { Alert, Audit, Escalation, LimitState, LogEntry, Station } from '../../server/models/index.ts'
+import { judgeStation } from '../../server/services/alerts.ts'
+import { officeOf } from '../../server/presenters/office.ts'
+import { at, judgedStation, plainCondition } from '../support/judgedStation.ts'
+
+const held = judgedStation()
+
+describe('a wave limit', () => {
+  it('raises after its on-delay, by window ends, with timeline, message, steps, log line and audit', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 9, { height: 2.8 })
+    expect(await held.alerts(limitId)).toEqual([])
+    await held.sea(10, 11, { height: 2.8 })
+    const [alert] = await held.alerts(limitId)
+    expect(alert).toMatchObject({ state: 'unacknowledgedActive', priority: 'high', crossedAt: at(0), raisedAt: at(10) })
+    expect(alert?.announcedAt).toEqual(new Date(at(10).getTime() + 10_000))
+    expect(await held.events(alert?.id ?? 0)).toEqual(['crossed', 'raised'])
+    expect(await held.messages(alert?.id ?? 0)).toEqual(['alert'])
+    const steps = await Escalation.findAll({ where: { alertId: alert?.id } })
+    expect(steps.map(({ step, sentAt }) => [step, sentAt])).toEqual([[0, alert?.announcedAt]])
+    expect(await Audit.count({ where: { action: 'limit.raise', entityId: String(limitId) } })).toBe(1)
+    const line = await LogEntry.findOne({ where: { kind: 'alert' }, order: [['id', 'DESC']] })
+    expect(line?.text).toContain('Raised: 2.80 m ± 0.05')
+  })
+
+  it('clears only when value and its ± are below, after its off-delay, and is then still to be acknowledged', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 10, { height: 2.8 })
+    await held.sea(11, 50, { height: 2.08, sd: 0.05 })
+    expect((await held.state(limitId)).state).toBe('unacknowledgedActive')
+    await held.sea(51, 81, { height: 2.04, sd: 0.05 })
+    expect((await held.state(limitId)).state).toBe('returnedUnacknowledged')
+    const [alert] = await held.alerts(limitId)
+    expect(await held.messages(alert?.id ?? 0)).toEqual(['alert', 'allClear'])
+    await held.desk.post(`/api/alerts/${alert?.id}/acknowledge`).send({}).expect(200)
+    expect((await Alert.findByPk(alert?.id))?.closedAt).not.toBeNull()
+    expect((await held.state(limitId)).state).toBe('normal')
+  })
+
+  it('raises the same alert again from returned, and asks for a new acknowledgement', async () => {
+    const limitId = await held.setLimit({ condition: { ...plainCondition, onDelaySeconds: 0, offDelaySeconds: 0 } })
+    await held.sea(0, 0, { height: 2.8 })
+    await held.sea(1, 1, { height: 1 })
+    await held.sea(2, 2, { height: 3 })
+    const alerts = await held.alerts(limitId)
+    expect(alerts.map(({ state }) => state)).toEqual(['unacknowledgedActive'])
+    expect(await held.events(alerts[0]?.id ?? 0)).toEqual(['raised', 'cleared', 'raisedAgain'])
+    expect(await held.messages(alerts[0]?.id ?? 0)).toEqual(['alert', 'allClear', 'alert'])
+  })
+
+  it('keeps exactly one alert open when many judge at once', async () => {
+    const limitId = await held.setLimit({ condition: { ...plainCondition, onDelaySeconds: 0 } })
+    await held.estimate(0, { height: 3 })
+    held.parts.clock.set(at(1))
+    const office = await officeOf(held.parts)
+    await Promise.all(Array.from({ length: 8 }, () => judgeStation(held.parts, office, held.station.id)))
+    const alerts = await held.alerts(limitId)
+    expect(alerts).toHaveLength(1)
+    expect(await held.messages(alerts[0]?.id ?? 0)).toEqual(['alert'])
+  })
+
+  it('is caught up in order after a restart, and judges no window twice', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 4, { height: 2.8 })
+    await held.job.stop()
+    for (let minutes = 5; minutes <= 12; minutes += 1) await held.estimate(minutes, { height: 2.8 })
+    held.parts.clock.set(at(13))
+    await held.restart()
+    await held.judge()
+    await held.judge()
+    const [alert] = await held.alerts(limitId)
+    expect(alert).toMatchObject({ crossedAt: at(0), raisedAt: at(10), windowEndsAt: at(12) })
+    expect(await held.messages(alert?.id ?? 0)).toEqual(['alert'])
+  })
+
+  it('moved by stale windows tells nobody, and the newest raises and says since when', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 0, { height: 1 })
+    for (let minutes = 1; minutes <= 40; minutes += 1) await held.estimate(minutes, { height: 2.8 })
+    held.parts.clock.set(at(60))
+    await held.judge()
+    expect(await held.alerts(limitId)).toEqual([])
+    expect(await held.state(limitId)).toMatchObject({ state: 'normal', isActive: true })
+    await held.sea(61, 61, { height: 2.8 })
+    const [alert] = await held.alerts(limitId)
+    expect(alert).toMatchObject({ crossedAt: at(1), raisedAt: at(61) })
+    const { body } = await held.desk.get(`/api/messages?alertId=${alert?.id}`).expect(200)
+    const message = await held.desk.get(`/api/messages/${body.messages[0].id}`).expect(200)
+    expect(message.body.text).toContain('Exceeded since 12:01 UTC')
+  })
+
+  it('neither raises nor clears on failed or missing figures, and shows that it holds', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 10, { height: 2.8 })
+    await held.sea(11, 60, { height: null, flag: 4, reason: 'too-few-sensors' })
+    const [alert] = await held.alerts(limitId)
+    expect(alert).toMatchObject({ state: 'unacknowledgedActive', value: 2.8 })
+    const { body } = await held.desk.get(`/api/alerts/${alert?.id}`).expect(200)
+    expect(body).toMatchObject({ isHeld: true, value: 2.8, limit: { notJudged: 'failed' } })
+  })
+
+  it('clears by a height that is known though its direction is refused', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 10, { height: 2.8 })
+    await held.sea(11, 41, { height: 0.4, flag: 4, reason: 'no-resolvable-wave' })
+    expect((await held.state(limitId)).state).toBe('returnedUnacknowledged')
+  })
+
+  it('of a station without figures raises the alert on stale data that came with it', async () => {
+    await held.setLimit()
+    const limits = (await held.desk.get('/api/limits').expect(200)).body
+    const stale = limits.find(({ limitClass }: { limitClass: string }) => limitClass === 'dataHealth')
+    expect(stale).toMatchObject({ title: `Data stale, ${held.station.name}`, words: expect.stringContaining('15 min') })
+    await held.sea(0, 0)
+    held.parts.clock.set(at(16))
+    await held.judge()
+    const board = (await held.desk.get('/api/alerts').expect(200)).body
+    expect(board.alerts).toMatchObject([{ limitId: stale.id, quantity: 'dataAge', state: 'unacknowledgedActive' }])
+    expect(board.notJudged).toMatchObject([{ reason: 'its figures are stale' }])
+    await held.sea(17, 17)
+    expect((await held.state(stale.id)).state).toBe('returnedUnacknowledged')
+  })
+
+  it('notes a window that is filled in late, and does not raise it', async () => {
+    const limitId = await held.setLimit({ condition: { ...plainCondition, onDelaySeconds: 0 } })
+    await held.sea(10, 12, { height: 1 })
+    await held.estimate(5, { height: 3.2, origin: 'late' })
+    held.parts.clock.set(at(14))
+    await held.judge()
+    expect(await held.alerts(limitId)).toEqual([])
+    const line = await LogEntry.findOne({ where: { kind: 'alert' }, order: [['id', 'DESC']] })
+    expect(line?.text).toContain('exceeded in 1 windows, most 3.20 m. Nobody was told.')
+    await held.judge()
+    expect((await LogEntry.findOne({ where: { kind: 'alert' }, order: [['id', 'DESC']] }))?.id).toBe(line?.id)
+  })
+})
+
+describe('acknowledging', () => {
+  it('from two desks at once is done by one, and the other is told who and when', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 10, { height: 2.8 })
+    const [alert] = await held.alerts(limitId)
+    const path = `/api/alerts/${alert?.id}/acknowledge`
+    const answers = await Promise.all([held.desk.post(path).send({}), held.otherDesk.post(path).send({})])
+    expect(answers.map(({ status }) => status)).toEqual([200, 200])
+    expect(answers.map(({ body }) => body.isFirst).sort()).toEqual([false, true])
+    expect(answers[0]?.body.alert.acknowledgedBy).toEqual(answers[1]?.body.alert.acknowledgedBy)
+    expect((await held.state(limitId)).state).toBe('acknowledgedActive')
+    const again = await held.desk.post(path).send({}).expect(200)
+    expect(again.body).toMatchObject({
+      isFirst: false,
+      alert: { acknowledgedAt: answers[0]?.body.alert.acknowledgedAt },
+    })
+  })
+
+  it('is refused to partners and administrators, and of an alert that is not there', async () => {
+    await held.admin.post('/api/alerts/1/acknowledge').send({}).expect(403)
+    await held.partner.post('/api/alerts/1/acknowledge').send({}).expect(403)
+    await held.desk.post('/api/alerts/999999/acknowledge').send({}).expect(404)
+  })
+})
+
+describe('a shelved limit', () => {
+  const shelf = (minutes: number) => ({ reason: 'Tug on station', endsAt: at(minutes).toISOString() })
+
+  it('is quiet until its time is over, and is then asked afresh', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 10, { height: 2.8 })
+    const [alert] = await held.alerts(limitId)
+    const shelved = await held.desk.post(`/api/alerts/${alert?.id}/shelve`).send(shelf(40)).expect(200)
+    expect(shelved.body).toMatchObject({ state: 'shelved', shelf: { reason: 'Tug on station' } })
+    await held.sea(11, 39, { height: 2.9 })
+    expect(await held.messages(alert?.id ?? 0)).toEqual(['alert'])
+    await held.sea(40, 40, { height: 2.9 })
+    expect((await held.state(limitId)).state).toBe('unacknowledgedActive')
+    expect(await held.events(alert?.id ?? 0)).toEqual(['crossed', 'raised', 'shelved', 'shelfExpired'])
+    expect(await held.messages(alert?.id ?? 0)).toEqual(['alert', 'alert'])
+  })
+
+  it('whose sea went down meanwhile is over when it comes off the shelf', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 10, { height: 2.8 })
+    await held.desk.post(`/api/limits/${limitId}/shelve`).send(shelf(60)).expect(200)
+    await held.sea(11, 45, { height: 1 })
+    await held.desk.post(`/api/limits/${limitId}/unshelve`).send({ reason: 'Tug gone' }).expect(200)
+    expect((await held.state(limitId)).state).toBe('normal')
+    expect((await held.alerts(limitId))[0]?.closedAt).not.toBeNull()
+  })
+
+  it('for longer than a watch, or urgent without second person or reason, is refused', async () => {
+    const limitId = await held.setLimit({ priority: 'high' })
+    await held.desk.post(`/api/limits/${limitId}/shelve`).send(shelf(481)).expect(422)
+    await held.desk.post(`/api/limits/${limitId}/shelve`).send(shelf(-1)).expect(422)
+    const urgent = { ...held.draftOf({ priority: 'urgent' }), consentById: held.otherOfficer.id }
+    const { body } = await held.desk.post('/api/limits').send(urgent).expect(201)
+    await held.desk.post(`/api/limits/${body.id}/shelve`).send(shelf(60)).expect(422)
+    const own = { ...shelf(60), secondPersonId: held.officer.id }
+    await held.desk.post(`/api/limits/${body.id}/shelve`).send(own).expect(422)
+    const alone = { ...shelf(60), aloneReason: 'Nobody else on watch tonight' }
+    await held.desk.post(`/api/limits/${body.id}/shelve`).send(alone).expect(200)
+  })
+})
+
+describe('a limit put aside', () => {
+  it('is suppressed while its station is in maintenance, and returns by itself', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 10, { height: 2.8 })
+    await Station.update({ state: 'maintenance' }, { where: { id: held.station.id } })
+    await held.sea(11, 12, { height: 2.8 })
+    expect((await held.state(limitId)).state).toBe('suppressed')
+    await Station.update({ state: 'active' }, { where: { id: held.station.id } })
+    await held.sea(13, 13, { height: 2.8 })
+    expect((await held.state(limitId)).state).toBe('unacknowledgedActive')
+  })
+
+  it('out of service is still evaluated, told to nobody, and returns only by an operator', async () => {
+    const limitId = await held.setLimit()
+    await held.desk.post(`/api/limits/${limitId}/takeOutOfService`).send({ reason: 'Profile survey due' }).expect(200)
+    await held.sea(0, 20, { height: 2.8 })
+    const [alert] = await held.alerts(limitId)
+    expect(alert).toMatchObject({ state: 'outOfService', announcedAt: null })
+    expect(await held.messages(alert?.id ?? 0)).toEqual([])
+    await held.desk.post(`/api/limits/${limitId}/returnToService`).send({ reason: 'Surveyed' }).expect(200)
+    expect((await held.state(limitId)).state).toBe('unacknowledgedActive')
+    expect(await held.messages(alert?.id ?? 0)).toEqual(['alert'])
+  })
+})
+
+describe('a change of a limit', () => {
+  it('needs the version it was made from: 428 without, 412 with the one that holds now', async () => {
+    const limitId = await held.setLimit()
+    const change = { content: held.contentOf({ note: 'Port order 5' }), reason: 'New order' }
+    await held.desk.put(`/api/limits/${limitId}`).send(change).expect(428)
+    const { body } = await held.desk.put(`/api/limits/${limitId}`).set('If-Match', '"1"').send(change).expect(200)
+    expect(body).toMatchObject({ version: 2, current: { number: 2, author: { name: 'Duty officer A' } } })
+    const late = await held.otherDesk.put(`/api/limits/${limitId}`).set('If-Match', '"1"').send(change).expect(412)
+    expect(late.body.current).toMatchObject({ version: 2, current: { content: { note: 'Port order 5' } } })
+    const history = (await held.desk.get(`/api/limits/${limitId}`).expect(200)).body
+    expect(history.versions.map(({ number }: { number: number }) => number)).toEqual([2, 1])
+  })
+
+  it('that makes it urgent needs a second person, or a written reason of who is alone', async () => {
+    const limitId = await held.setLimit()
+    const urgent = { content: held.contentOf({ priority: 'urgent' }), reason: 'Worse than thought' }
+    const put = (body: object) => held.desk.put(`/api/limits/${limitId}`).set('If-Match', '"1"').send(body)
+    await put(urgent).expect(422)
+    await put({ ...urgent, consentById: held.officer.id }).expect(422)
+    await put({ ...urgent, consentById: held.otherOfficer.id }).expect(200)
+  })
+
+  it.each([
+    ['a bearing above a value', { kind: 'above', quantity: 'swellFrom', raise: 10, clear: 5, riseOverSeconds: null }],
+    [
+      'clear above raise',
+      { kind: 'above', quantity: 'significantWaveHeight', raise: 1, clear: 2, riseOverSeconds: null },
+    ],
+    [
+      'a height out of range',
+      { kind: 'above', quantity: 'significantWaveHeight', raise: 99, clear: 1, riseOverSeconds: null },
+    ],
+    ['the disk of a station', { kind: 'below', quantity: 'diskFree', raise: 0.1, clear: 0.2 }],
+  ])('to %s is refused', async (_, comparison) => {
+    const content = { ...held.contentOf(), condition: { ...plainCondition, comparisons: [comparison] } }
+    await held.desk
+      .post('/api/limits')
+      .send({ ...held.draftOf(), content })
+      .expect(422)
+  })
+
+  it('that retires it closes its open alert and keeps both', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 10, { height: 2.8 })
+    const retire = held.desk.delete(`/api/limits/${limitId}`).set('If-Match', '"1"').send({ reason: 'Berth closed' })
+    expect((await retire.expect(200)).body.retiredAt).not.toBeNull()
+    expect((await held.alerts(limitId))[0]).toMatchObject({ state: 'normal' })
+    expect(await LimitState.count({ where: { limitId } })).toBe(1)
+  })
+})
+
+describe('a drill', () => {
+  it('raises an exercise beside the real one, is acknowledged and ended, and counts in no measure', async () => {
+    const limitId = await held.setLimit()
+    const countHigh = async () => {
+      const { body } = await held.desk.get('/api/alerts/performance?days=1').expect(200)
+      return body.byPriority.find(({ priority }: { priority: string }) => priority === 'high').count
+    }
+    held.parts.clock.set(at(1))
+    const before = await countHigh()
+    const order = { limitId, value: 3.4, note: 'Monthly drill' }
+    const { body } = await held.desk.post('/api/drills').send(order).expect(201)
+    expect(body).toMatchObject({ isExercise: true, state: 'unacknowledgedActive', value: 3.4 })
+    await held.desk.post('/api/drills').send(order).expect(409)
+    await held.sea(0, 10, { height: 2.8 })
+    expect((await held.alerts(limitId)).map(({ isExercise }) => Boolean(isExercise))).toEqual([true, false])
+    await held.desk.post(`/api/alerts/${body.id}/acknowledge`).send({}).expect(200)
+    await held.desk.post(`/api/drills/${body.id}/end`).send({}).expect(200)
+    expect(await countHigh()).toBe(before + 1)
+  })
+})
