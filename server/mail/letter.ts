@@ -8,6 +8,7 @@ import type { History } from './letter/drawings.ts'
 import { pngOf } from './letter/picture.ts'
 import { renderPage } from './letter/template.ts'
 import type { Page, Row } from './letter/template.ts'
+import { wordmarkSvg } from './letter/wordmark.ts'
 
 export interface Letter {
   messageId: number
@@ -193,6 +194,7 @@ export async function writeLetter(letter: Letter, around: Surroundings): Promise
   const chartSvg = letter.content && around.history && historySvg(around.history)
   const page = pageOf(letter, chartSvg ? around : { ...around, history: null })
   const drawings = [
+    { cid: 'mark@offing', name: 'offing.png', svg: wordmarkSvg },
     ...(page.glyph && letter.content?.glyph
       ? [{ cid: page.glyph.cid, name: 'waves.png', svg: glyphSvg(letter.content.glyph) }]
       : []),

@@ -55,7 +55,7 @@ export async function changeList(
   byPersonId: number | null,
 ): Promise<ListView> {
   await inTransaction(parts.sequelize, async (transaction) => {
-    const list = await lockList(listId, version, transaction)
+    const list = await lockList(parts, listId, version, transaction)
     await checkMembers(content, transaction)
     const before = await contentOf(list, transaction)
     const { members, ...fields } = content
@@ -76,7 +76,7 @@ export async function retireList(
   byPersonId: number | null,
 ): Promise<void> {
   await inTransaction(parts.sequelize, async (transaction) => {
-    const list = await lockList(listId, version, transaction)
+    const list = await lockList(parts, listId, version, transaction)
     const users = await limitsThatName(parts, listId, transaction)
     if (users.length > 0) throw stillNamed(users)
     const now = parts.clock.now()
@@ -100,10 +100,15 @@ export async function leaveList(parts: Parts, listId: number, personId: number):
   })
 }
 
-async function lockList(listId: number, version: number, transaction: Transaction): Promise<DistributionList> {
+async function lockList(
+  parts: Pick<Parts, 'clock'>,
+  listId: number,
+  version: number,
+  transaction: Transaction,
+): Promise<DistributionList> {
   const list = await DistributionList.findByPk(listId, { lock: true, transaction })
   if (!list || list.retiredAt) throw notFound('list', listId)
-  if (list.version !== version) throw changedMeanwhile('list', list.version)
+  if (list.version !== version) throw changedMeanwhile('list', list.version, (await present(parts, [list])).at(0))
   return list
 }
 

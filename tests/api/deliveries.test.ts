@@ -220,6 +220,17 @@ describe('a program that ended', () => {
   })
 })
 
+describe('a clock that is set back an hour', () => {
+  test('keeps no e-mail waiting for an hour', async () => {
+    const { people } = await raised(1)
+    server.answers.set(addressOf(people[0]), [[451, 'Not now']])
+    await mail.run()
+    parts.clock.set(new Date(parts.clock.now().getTime() - 3600_000))
+    await mail.run()
+    expect(await statesOf(people)).toEqual(['accepted'])
+  })
+})
+
 describe('a rate', () => {
   test('lets no more e-mails out than were allowed, and the rest later', async () => {
     await mail.stop()

@@ -47,7 +47,7 @@ describe('a distribution list', () => {
       person.name,
     ])
     const late = await browser.put(path).set('If-Match', '"1"').send(content()).expect(412)
-    expect(late.body.code).toBe('list.changedMeanwhile')
+    expect(late.body).toMatchObject({ code: 'list.changedMeanwhile', current: changed.body })
     const audits = await Audit.findAll({ where: { entity: 'list', entityId: String(added.body.id) } })
     expect(audits.map(({ action }) => action)).toEqual(['list.add', 'list.change'])
   })

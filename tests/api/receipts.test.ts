@@ -83,6 +83,8 @@ describe('the link in an e-mail', () => {
     const rows = await LinkToken.findAll({ where: { kind: 'receipt' } })
     expect(rows.at(-1)?.tokenHash).toHaveLength(32)
     expect(JSON.stringify(rows)).not.toContain(token)
+    expect(parts.log.some((line) => line.includes('/api/receipts/'))).toBe(true)
+    expect(parts.log.join()).not.toContain(token)
   })
 
   test.each(['999', 'a.b.c', '1.zzzzzz.AAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAAA'])(

@@ -33,15 +33,15 @@ export interface Page {
 const source = `<!doctype html><html lang="en"><head><meta charset="utf-8"><meta name="viewport" content="width=device-width"><title>{{subject}}</title></head>
 <body style="margin:0;background:${c.paper};font-family:Inter,Arial,sans-serif;color:${c.ink}">
 <table role="presentation" width="100%" cellpadding="0" cellspacing="0"><tr><td align="center" style="padding:24px 0">
-<table role="presentation" width="600" cellpadding="0" cellspacing="0" style="width:600px;max-width:100%;background:${c.sheet};border:1px solid ${c.rule}">
-<tr><td style="padding:16px 28px 12px;border-bottom:2px solid ${c.ink}"><table role="presentation" width="100%" cellpadding="0" cellspacing="0"><tr><td style="font-size:19px;font-weight:600">Offing</td><td align="right" style="font-size:13px;color:${c.ink2}">{{head}}</td></tr></table></td></tr>
+<table role="presentation" width="600" cellpadding="0" cellspacing="0" style="width:100%;max-width:600px;background:${c.sheet};border:1px solid ${c.rule}">
+<tr><td style="padding:16px 28px 12px;border-bottom:2px solid ${c.ink}"><table role="presentation" width="100%" cellpadding="0" cellspacing="0"><tr><td><img src="cid:mark@offing" width="86" height="22" alt="Offing" style="display:block;border:0"></td><td align="right" style="font-size:13px;color:${c.ink2}">{{head}}</td></tr></table></td></tr>
 {{#if exercise}}<tr><td style="padding:12px 28px;background:${c.ink};color:#FFFFFF;font-size:16px;font-weight:600">{{exercise}}</td></tr>{{/if}}
 <tr><td style="background:{{wash}};padding:18px 28px;border-left:8px solid {{ink}}">
 {{#if priorityLine}}<div style="font-size:15px;font-weight:600;color:{{ink}}">{{priorityLine}}</div>{{/if}}
 <h1 style="font-size:25px;line-height:1.2;font-weight:600;margin:6px 0 4px;letter-spacing:-.02em">{{heading}}</h1>
 {{#each headline}}<div style="font-size:15px;line-height:1.45">{{this}}</div>{{/each}}</td></tr>
 {{#if waves}}<tr><td style="padding:20px 28px 4px"><table role="presentation" width="100%" cellpadding="0" cellspacing="0"><tr>
-{{#if glyph}}<td width="150" valign="middle"><table role="presentation" cellpadding="0" cellspacing="0"><tr><td><img src="cid:{{glyph.cid}}" width="72" height="72" alt="{{glyph.alt}}" style="display:block;border:0"></td><td style="padding-left:6px;font-size:26px;font-weight:600;color:${c.wave};white-space:nowrap">{{glyph.height}}</td></tr></table></td>{{/if}}
+{{#if glyph}}<td width="150" valign="middle"><table role="presentation" cellpadding="0" cellspacing="0"><tr><td><img src="cid:{{glyph.cid}}" width="72" height="72" alt="{{glyph.alt}}" style="display:block;border:0"></td><td style="padding:0 16px 0 6px;font-size:26px;font-weight:600;color:${c.wave};white-space:nowrap">{{glyph.height}}</td></tr></table></td>{{/if}}
 <td valign="middle" style="font-size:16px;line-height:1.55"><div>{{waves}}</div>{{#if measured}}<div style="color:${c.ink2};font-size:14px">{{measured}}</div>{{/if}}</td></tr></table></td></tr>
 {{else}}{{#if measured}}<tr><td style="padding:20px 28px 4px;font-size:15px;color:${c.ink2}">{{measured}}</td></tr>{{/if}}{{/if}}
 {{#if chart}}<tr><td style="padding:14px 28px 0"><img src="cid:{{chart.cid}}" width="544" height="96" alt="{{chart.alt}}" style="display:block;border:0;width:100%;max-width:544px;height:auto"><div style="font-size:13px;line-height:1.45;color:${c.ink2};padding-top:4px">{{chart.caption}}</div></td></tr>{{/if}}

@@ -8,7 +8,14 @@ import { letterOf } from './letter.ts'
 import type { Letter } from './letter.ts'
 
 const leaseMs = 60_000
+/** Nothing is ever put off for longer: what lies further ahead was stored before the clock was set back. */
+const furthestAheadMs = 20 * 60_000
 const mostUnknown = 2
+
+const due = (clock: Parts['clock']) => ({
+  now: clock.now(),
+  ahead: new Date(clock.now().getTime() + furthestAheadMs),
+})
 
 export interface Leased extends Letter {
   /** Number of this try; a settlement of an earlier one comes too late. */
@@ -30,8 +37,8 @@ export async function recoverLeases(
          unknownCount = unknownCount + IF(handedOverAt IS NULL, 0, 1),
          state = IF(handedOverAt IS NULL, 'queued', 'unknown'),
          leaseUntil = NULL
-     WHERE state = 'leased' ${all ? '' : 'AND leaseUntil <= :now'}`,
-    { now: clock.now(), most: mostUnknown },
+     WHERE state = 'leased' ${all ? '' : 'AND (leaseUntil <= :now OR leaseUntil > :ahead)'}`,
+    { ...due(clock), most: mostUnknown },
   )
 }
 
@@ -41,18 +48,17 @@ export async function leaseDeliveries(parts: Parts, most: number): Promise<Lease
   const waiting = await select<{ id: number }>(
     sequelize,
     `SELECT d.id FROM deliveries d JOIN messages m ON m.id = d.messageId LEFT JOIN alerts a ON a.id = m.alertId
-     WHERE d.state IN ('queued', 'unknown') AND d.nextAttemptAt <= :now
+     WHERE d.state IN ('queued', 'unknown') AND (d.nextAttemptAt <= :now OR d.nextAttemptAt > :ahead)
      ORDER BY COALESCE(a.priority + 0, IF(m.kind = 'flood', 3, 1)) DESC, d.nextAttemptAt, d.id LIMIT :most`,
-    { now: clock.now(), most },
+    { ...due(clock), most },
   )
   if (waiting.length === 0) return []
   const wanted = waiting.map(({ id }) => id)
   const { leased, messageIds } = await inTransaction(sequelize, async (transaction) => {
     const rows = await select<{ id: number }>(
       sequelize,
-      `SELECT id FROM deliveries WHERE id IN (:wanted) AND state IN ('queued', 'unknown') AND nextAttemptAt <= :now
-       FOR UPDATE SKIP LOCKED`,
-      { wanted, now: clock.now() },
+      `SELECT id FROM deliveries WHERE id IN (:wanted) AND state IN ('queued', 'unknown') AND (nextAttemptAt <= :now OR nextAttemptAt > :ahead) FOR UPDATE SKIP LOCKED`,
+      { wanted, ...due(clock) },
       transaction,
     )
     const deliveries = await Delivery.findAll({ where: { id: rows.map(({ id }) => id) }, transaction })

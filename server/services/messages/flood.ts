@@ -59,12 +59,13 @@ interface Held {
 
 /** Writes the e-mails that list what waits, one for all people of whom the same waits; answers their ids. */
 export async function mergeFlood(parts: Parts): Promise<number[]> {
+  const now = parts.clock.now()
   const roots = await inTransaction(parts.sequelize, async (transaction) => {
     const held = await select<Held>(
       parts.sequelize,
       `SELECT id, messageId, personId, address FROM deliveries
-       WHERE state = 'merged' AND nextAttemptAt <= :now ORDER BY messageId, id LIMIT 5000 FOR UPDATE SKIP LOCKED`,
-      { now: parts.clock.now() },
+       WHERE state = 'merged' AND (nextAttemptAt <= :now OR nextAttemptAt > :ahead) ORDER BY messageId, id LIMIT 5000 FOR UPDATE SKIP LOCKED`,
+      { now, ahead: new Date(now.getTime() + floodMs) },
       transaction,
     )
     const made: number[] = []

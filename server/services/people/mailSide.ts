@@ -55,7 +55,9 @@ export async function changeMailSide(
   await inTransaction(parts.sequelize, async (transaction) => {
     const person = await Person.findByPk(personId, { lock: true, transaction })
     if (!person) throw notFound('person', personId)
-    if (person.version !== version) throw changedMeanwhile('person', person.version)
+    if (person.version !== version) {
+      throw changedMeanwhile('person', person.version, (await present(parts, [person])).at(0))
+    }
     if (named?.email) await refuseKnownAddress(named.email, personId, transaction)
     if (named?.email === null && person.role !== null) throw needsAddress()
     await checkDeputy(personId, fields.deputyId, transaction)

@@ -98,6 +98,7 @@ describe('an e-mail', () => {
     expect(html).toContain('Moorings &lt;berths 3 &amp; 6&gt;')
     expect(html).not.toContain('<script')
     expect([...html.matchAll(/src="([^"]+)"/g)].map(([, source]) => source)).toEqual([
+      'cid:mark@offing',
       'cid:glyph@offing',
       'cid:history@offing',
     ])
@@ -107,6 +108,7 @@ describe('an e-mail', () => {
   test('carries glyph and history as PNG of twice their size, and says them in words', async () => {
     const { pictures, html } = await writeLetter(letter, around)
     expect(pictures.map(({ name, png }) => [name, png.toString('latin1', 1, 4), sizeOf(png)])).toEqual([
+      ['offing.png', 'PNG', [172, 44]],
       ['waves.png', 'PNG', [144, 144]],
       ['history.png', 'PNG', [1088, 192]],
     ])
@@ -117,8 +119,8 @@ describe('an e-mail', () => {
   test('without waves and history has neither picture', async () => {
     const plain = { ...letter, content: { ...content, waves: null, glyph: null } }
     const { pictures, html } = await writeLetter(plain, { ...around, history: null })
-    expect(pictures).toEqual([])
-    expect(html).not.toContain('<img')
+    expect(pictures.map(({ name }) => name)).toEqual(['offing.png'])
+    expect(html.match(/<img/g)).toHaveLength(1)
   })
 
   test('of a drill is marked in the subject, above and below, even where its text was not', async () => {
