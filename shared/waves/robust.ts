@@ -5,6 +5,11 @@ export function median(series: Float64Array): number {
   return quantile(finite(series), 0.5)
 }
 
+/** The value below which the given share of the finite samples lies; NaN when there is none. */
+export function quantileOf(series: Float64Array, share: number): number {
+  return quantile(finite(series), share)
+}
+
 /** 1.4826 times the median distance from the median: the standard deviation of a Gaussian record. */
 export function robustSpread(series: Float64Array): number {
   const values = finite(series)

@@ -3,9 +3,9 @@
  * gross range, spike, flat line, rate of change. Failed samples become missing; the caller's series stays as it was.
  */
 import type { QualityFlag, QualityTest, SensorFinding } from '../schemas/estimate.ts'
-import { detrend } from './detrend.ts'
 import type { EstimateSettings } from './window.ts'
 import { robustSpread, median } from './robust.ts'
+import { dropSpikes } from './spikes.ts'
 
 export interface CheckedSeries {
   /** The samples with failed ones missing (NaN). */
@@ -16,9 +16,6 @@ export interface CheckedSeries {
   /** Share of samples that are left, 0 to 1. */
   completeness: number
 }
-
-/** Offsets of the neighbours a sample is held against, in quarter seconds: wide enough for a spike of three samples at 4 Hz. */
-const neighbourOffsets = [-4, -3, -2, -1, 1, 2, 3, 4]
 
 /**
  * Runs the tests. `scale` is the metres of water that one unit stands for (1 for metres, about 1 for dbar).
@@ -80,7 +77,7 @@ export function checkSeries(
     spikes > 0 ? 3 : 1,
     spikes,
     0,
-    `${spikes} samples more than ${settings.spikeSigmas} sd off their neighbours`,
+    `${spikes} samples more than ${settings.spikeSigmas} sd off what their neighbours say`,
   )
   const fastest = fastestChange(clean)
   note(
@@ -148,51 +145,6 @@ function dropFlatRuns(series: Float64Array, fail: number): number {
     start = i
   }
   return longest
-}
-
-/**
- * Spikes: samples farther from the median of their neighbours than so many robust standard deviations of that distance
- * and than half the robust standard deviation of the record. Two passes, so that a spike hides no other.
- */
-function dropSpikes(series: Float64Array, sampleRate: number, sigmas: number): number {
-  const stride = Math.max(1, Math.round(sampleRate / 4))
-  const off = new Float64Array(series.length)
-  const near = new Float64Array(neighbourOffsets.length)
-  const whole = 0.5 * robustSpread(detrend(series))
-  let dropped = 0
-  for (let pass = 0; pass < 2; pass++) {
-    for (let i = 0; i < series.length; i++) off[i] = series[i] - neighbourMedian(series, i, stride, near)
-    const limit = Math.max(sigmas * robustSpread(off), whole)
-    if (!(limit > 0)) return dropped
-    let found = 0
-    for (let i = 0; i < series.length; i++) {
-      if (!(Math.abs(off[i]) > limit)) continue
-      series[i] = NaN
-      found++
-    }
-    dropped += found
-    if (found === 0) break
-  }
-  return dropped
-}
-
-function neighbourMedian(series: Float64Array, at: number, stride: number, near: Float64Array): number {
-  let found = 0
-  let before = 0
-  for (let n = 0; n < neighbourOffsets.length; n++) {
-    const value = series[at + neighbourOffsets[n] * stride]
-    if (value !== value || value === undefined) continue
-    if (neighbourOffsets[n] < 0) before++
-    let place = found++
-    while (place > 0 && near[place - 1] > value) {
-      near[place] = near[place - 1]
-      place--
-    }
-    near[place] = value
-  }
-  // A sample at the edge of a gap has neighbours on one side only and cannot be judged.
-  if (before < 2 || found - before < 2) return NaN
-  return found % 2 === 1 ? near[found >> 1] : 0.5 * (near[found / 2 - 1] + near[found / 2])
 }
 
 function fastestChange(series: Float64Array): number {

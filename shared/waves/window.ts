@@ -52,7 +52,7 @@ export interface EstimateSettings {
   leastPressureResponse: number
   /** Longest gap that is bridged by a straight line, s. */
   longestBridgedGap: number
-  /** Spike: so many robust standard deviations off the neighbours. */
+  /** Spike: so many robust standard deviations off what the neighbours say. */
   spikeSigmas: number
   /** Flat line: so many equal samples in a row are suspect, and fail. */
   flatSuspectSamples: number
@@ -70,7 +70,7 @@ export const defaultEstimateSettings: EstimateSettings = {
   leastHeight: 0.05,
   leastPressureResponse: 0.15,
   longestBridgedGap: 2,
-  spikeSigmas: 8,
+  spikeSigmas: 6,
   flatSuspectSamples: 10,
   flatFailSamples: 30,
   rangeShareOfDepth: 0.8,
