@@ -7,7 +7,7 @@ import { messageContent } from '../../shared/schemas/message.ts'
 import type { Parts } from '../config/parts.ts'
 import { Alert, Escalation, LimitVersion, Message } from '../models/index.ts'
 import { execute, select } from '../models/sql.ts'
-import { writeMessage } from './messages.ts'
+import { announcedSince, writeMessage } from './messages.ts'
 import { inTransaction } from './transaction.ts'
 
 /** Nobody need be told more of an alert in these states; while it is put aside its times stand still. */
@@ -73,7 +73,7 @@ async function takeStep(parts: Parts, row: Escalation, alert: Alert, transaction
   const order = await orderOf(alert, transaction)
   const nextReminderAt = reminderAfter(parts, order)
   await row.update({ sentAt: now, nextReminderAt }, { transaction })
-  const since = alert.announcedAt ?? alert.raisedAt
+  const since = await announcedSince(parts.sequelize, alert.id, transaction)
   const known = await Message.findOne({
     where: { alertId: alert.id, kind: ['alert', 'escalation'], step: row.step },
     order: [['id', 'DESC']],
@@ -97,7 +97,7 @@ async function remind(parts: Parts, row: Escalation, alert: Alert, transaction: 
        WHERE m.alertId = :alertId AND COALESCE(m.step, 0) = :step AND m.kind IN ('alert', 'escalation')
          AND d.createdAt >= :since
        GROUP BY d.personId HAVING MAX(d.receivedAt) IS NULL) AS people`,
-    { alertId: alert.id, step: row.step, since: alert.announcedAt ?? alert.raisedAt },
+    { alertId: alert.id, step: row.step, since: await announcedSince(parts.sequelize, alert.id, transaction) },
     transaction,
   )
   const { told, onTheWay } = waiting ?? { told: 0, onTheWay: 0 }

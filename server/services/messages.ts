@@ -5,6 +5,7 @@ import { Message } from '../models/index.ts'
 import { presentMessages } from './messages/present.ts'
 import { notFound } from './problems.ts'
 
+export { announcedSince } from './messages/announced.ts'
 export { mergeFlood } from './messages/flood.ts'
 export { writeDueHeartbeat } from './messages/heartbeat.ts'
 export { queueMessages } from './messages/queue.ts'

@@ -7,6 +7,7 @@ import { Alert, AlertEvent, LimitVersion, Message } from '../../models/index.ts'
 import { execute, select } from '../../models/sql.ts'
 import { inTransaction } from '../transaction.ts'
 import { writeSystemLine } from '../watchLog.ts'
+import { announcedSince } from './announced.ts'
 import { holdInFlood } from './flood.ts'
 import { membersOf, reachablePeople } from './people.ts'
 import { chooseRecipients } from './recipients.ts'
@@ -66,7 +67,7 @@ async function chosenFor(
 ): Promise<Choice> {
   if (message.kind === 'allClear') return { ...nobody, recipients: await toldOf(parts, alert.id, transaction) }
   if (message.kind === 'reminder') {
-    return { ...nobody, recipients: await withoutReceipt(parts, alert, message.step ?? 0, transaction) }
+    return { ...nobody, recipients: await withoutReceipt(parts, alert.id, message.step ?? 0, transaction) }
   }
   const version = await LimitVersion.findByPk(alert.limitVersionId, { transaction })
   const step = recipientsShape.parse(version?.steps).steps.at(message.step ?? 0)
@@ -76,7 +77,7 @@ async function chosenFor(
   const people = await reachablePeople(at, transaction)
   const chosen = chooseRecipients({ members, people, priority: alert.priority, at: at.getTime(), timeZone })
   // Over all steps each person is told of an alert once; after that they are reminded.
-  const told = new Set((await toldBefore(parts, alert, transaction)).map(({ personId }) => personId))
+  const told = await toldBefore(parts, alert.id, transaction)
   return {
     unreached: chosen.unreached,
     isNobody: chosen.recipients.length === 0,
@@ -84,17 +85,16 @@ async function chosenFor(
   }
 }
 
-const announced = ({ announcedAt, raisedAt }: Alert): Date => announcedAt ?? raisedAt
-
-/** Since it was announced: an alert that comes again is told again. */
-const toldBefore = ({ sequelize }: Parts, alert: Alert, transaction: Transaction): Promise<{ personId: number }[]> =>
-  select(
+async function toldBefore({ sequelize }: Parts, alertId: number, transaction: Transaction): Promise<Set<number>> {
+  const rows = await select<{ personId: number }>(
     sequelize,
     `SELECT DISTINCT d.personId FROM deliveries d JOIN messages m ON m.id = d.messageId
      WHERE m.alertId = :alertId AND m.kind IN ('alert', 'escalation') AND d.createdAt >= :since`,
-    { alertId: alert.id, since: announced(alert) },
+    { alertId, since: await announcedSince(sequelize, alertId, transaction) },
     transaction,
   )
+  return new Set(rows.map(({ personId }) => personId))
+}
 
 const toldOf = ({ sequelize }: Parts, alertId: number, transaction: Transaction): Promise<Recipient[]> =>
   select(
@@ -108,24 +108,27 @@ const toldOf = ({ sequelize }: Parts, alertId: number, transaction: Transaction)
   )
 
 /** Nobody is reminded of an e-mail that is not out yet. */
-const withoutReceipt = (
+async function withoutReceipt(
   { sequelize }: Parts,
-  alert: Alert,
+  alertId: number,
   step: number,
   transaction: Transaction,
-): Promise<Recipient[]> =>
-  select(
+): Promise<Recipient[]> {
+  const since = await announcedSince(sequelize, alertId, transaction)
+  return select(
     sequelize,
     `SELECT p.id AS personId, p.email AS address
      FROM deliveries d JOIN messages m ON m.id = d.messageId JOIN people p ON p.id = d.personId
      WHERE m.alertId = :alertId AND d.createdAt >= :since AND p.email IS NOT NULL AND p.disabledAt IS NULL
      GROUP BY p.id, p.email
      HAVING MAX(d.receivedAt) IS NULL
-        AND SUM(COALESCE(m.step, 0) = :step AND m.kind IN ('alert', 'escalation') AND d.state IN ('accepted', 'merged', 'unknown')) > 0
+        AND SUM(COALESCE(m.step, 0) = :step AND m.kind IN ('alert', 'escalation')
+                AND d.state IN ('accepted', 'merged', 'unknown')) > 0
      ORDER BY p.id`,
-    { alertId: alert.id, step, since: announced(alert) },
+    { alertId, step, since },
     transaction,
   )
+}
 
 const people = (count: number): string => (count === 1 ? '1 person' : `${count} people`)
 
