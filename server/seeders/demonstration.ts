@@ -6,11 +6,12 @@ import { Person, Station } from '../models/index.ts'
 import { changeSetting } from '../services/settings.ts'
 import { inTransaction } from '../services/transaction.ts'
 import { writeSystemLine } from '../services/watchLog.ts'
+import { seedDemonstrationLimits } from './demonstrationLimits.ts'
 import { prepareDemonstrationPeople } from './demonstrationPeople.ts'
 import { demonstrationKeys, seedStation } from './demonstrationStations.ts'
 
 /**
- * Everything in one transaction, after the files with the secrets: a stop in between leaves nothing half done, and
+ * Everything in one transaction (lists and limits in the next), after the files with the secrets: a stop in between leaves nothing half done, and
  * lost files are made anew. Answers whether the database was empty.
  */
 export async function seedDemonstration(parts: Parts): Promise<boolean> {
@@ -28,8 +29,11 @@ export async function seedDemonstration(parts: Parts): Promise<boolean> {
     await changeSetting(parts, 'port', demonstrationPort, by, transaction)
     await changeSetting(parts, 'watch', { leadStationId: stations[0]?.id ?? null }, by, transaction)
     await changeSetting(parts, 'coast', { plan: demonstrationCoast }, by, transaction)
+    const alerts = { asksSecondPerson: true, longestShelfHours: 8, capSender: 'duty@marrowick.example' }
+    await changeSetting(parts, 'alerts', alerts, by, transaction)
     const text = `Demonstration set up: ${demonstrationPort.portName} and its ${stations.length} stations are invented.`
     await writeSystemLine(parts, { kind: 'system', text }, transaction)
   })
+  await seedDemonstrationLimits(parts)
   return isFirst
 }
