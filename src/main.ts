@@ -9,6 +9,7 @@ import './css/fonts.css'
 import 'quasar/src/css/index.sass'
 import './css/base.css'
 import './css/parts.css'
+import './css/alerts.css'
 import './css/tokens.css'
 
 const app = createApp(App).use(createPinia()).use(Quasar, {})

@@ -27,8 +27,10 @@ export async function request<T extends z.ZodType>(
   path: string,
   schema: T,
   body?: unknown,
+  /** Of the row that is edited: the server refuses a change of an older one. */
+  ifMatch?: number,
 ): Promise<z.infer<T>> {
-  const response = await send(method, path, body)
+  const response = await send(method, path, body, ifMatch)
   const answer: unknown = response.status === 204 ? undefined : await readJson(response)
   if (!response.ok) throw refusal(response, path, answer)
   const parsed = schema.safeParse(answer)
@@ -36,7 +38,7 @@ export async function request<T extends z.ZodType>(
   return parsed.data
 }
 
-async function send(method: Method, path: string, body: unknown): Promise<Response> {
+async function send(method: Method, path: string, body: unknown, ifMatch?: number): Promise<Response> {
   try {
     const response = await fetch(path, {
       method,
@@ -45,6 +47,7 @@ async function send(method: Method, path: string, body: unknown): Promise<Respon
         Accept: 'application/json',
         'X-Offing': '1',
         ...(body === undefined ? {} : { 'Content-Type': 'application/json' }),
+        ...(ifMatch === undefined ? {} : { 'If-Match': `"${ifMatch}"` }),
       },
       body: body === undefined ? undefined : JSON.stringify(body),
       signal: AbortSignal.timeout(answerTimeoutMs),

@@ -1,4 +1,5 @@
 import { onBeforeUnmount, watch } from 'vue'
+import { useAlerts } from '../stores/alerts.ts'
 import { useJobs } from '../stores/jobs.ts'
 import { useLive } from '../stores/live.ts'
 import { useSession } from '../stores/session.ts'
@@ -14,12 +15,14 @@ export function useOffice() {
   const settings = useSettings()
   const stations = useStations()
   const jobs = useJobs()
+  const alerts = useAlerts()
   let again: ReturnType<typeof setTimeout> | undefined
 
   function open(): void {
     live.connect()
     stations.watchAll()
     jobs.watchAll()
+    alerts.watchAll()
     void readSettings()
   }
 
@@ -37,6 +40,7 @@ export function useOffice() {
     clearTimeout(again)
     stations.leave()
     jobs.leave()
+    alerts.leave()
     live.disconnect()
   }
 

@@ -19,6 +19,12 @@ const routes: RouteRecordRaw[] = [
     meta: { title: 'First administrator', open: true },
   },
   {
+    path: '/receipt/:token',
+    name: 'receipt',
+    component: () => import('../pages/ReceiptPage.vue'),
+    meta: { title: 'Confirm receipt', withoutSession: true },
+  },
+  {
     path: '/',
     component: WatchLayout,
     children: [
@@ -42,6 +48,48 @@ const routes: RouteRecordRaw[] = [
         meta: { title: 'Station', page: 'stations' },
       },
       {
+        path: 'alerts/:id([1-9]\\d*)?',
+        name: 'alerts',
+        component: () => import('../pages/AlertsPage.vue'),
+        meta: { title: 'Alerts', page: 'alerts' },
+      },
+      {
+        path: 'performance',
+        name: 'performance',
+        component: () => import('../pages/PerformancePage.vue'),
+        meta: { title: 'Alert performance', page: 'alerts' },
+      },
+      {
+        path: 'limits',
+        name: 'limits',
+        component: () => import('../pages/LimitsPage.vue'),
+        meta: { title: 'Limits', page: 'limits' },
+      },
+      {
+        path: 'limits/new',
+        name: 'newLimit',
+        component: () => import('../pages/LimitEditorPage.vue'),
+        meta: { title: 'New limit', page: 'limits' },
+      },
+      {
+        path: 'limits/:id([1-9]\\d*)',
+        name: 'limit',
+        component: () => import('../pages/LimitEditorPage.vue'),
+        meta: { title: 'Limit', page: 'limits' },
+      },
+      {
+        path: 'messages',
+        name: 'messages',
+        component: () => import('../pages/MessagesPage.vue'),
+        meta: { title: 'Messages', page: 'messages' },
+      },
+      {
+        path: 'lists',
+        name: 'lists',
+        component: () => import('../pages/ListsPage.vue'),
+        meta: { title: 'Lists', page: 'lists' },
+      },
+      {
         path: ':rest(.*)*',
         name: 'notFound',
         component: () => import('../pages/NotFoundPage.vue'),
@@ -55,6 +103,8 @@ export function createOffingRouter(history: RouterHistory = createWebHistory()):
   const router = createRouter({ history, routes, scrollBehavior: (_to, _from, saved) => saved ?? { top: 0 } })
 
   router.beforeEach(async (to) => {
+    // A link in an e-mail says by itself who opens it.
+    if (to.meta.withoutSession) return true
     const session = useSession()
     if (session.state === 'unknown') await session.restore().catch(() => undefined)
     const signedIn = session.state === 'in' || session.state === 'ended'
@@ -64,7 +114,7 @@ export function createOffingRouter(history: RouterHistory = createWebHistory()):
   })
 
   router.afterEach((to) => {
-    const station = useStations().byId(Number(to.params.id))
+    const station = to.name === 'station' ? useStations().byId(Number(to.params.id)) : undefined
     const title = station?.name ?? String(to.meta.title ?? '')
     document.title = title ? `${title} – Offing` : 'Offing'
   })

@@ -1,5 +1,7 @@
 /** Where things stand on the rolling ruler: 9 h back, 3 h ahead, now at three quarters. Pure: times and width in, x out. */
 import { clockUtc } from '../../../shared/times.ts'
+import type { AlertView } from '../../../shared/schemas/alert.ts'
+import type { Priority } from '../../../shared/schemas/limit.ts'
 import type { SunTimes } from '../../../shared/sunTimes.ts'
 
 export const hoursBack = 9
@@ -62,5 +64,30 @@ export function rulerSun(sun: readonly SunTimes[], nowMs: number, width: number)
       if (x > nowX && x < nowX + halfLabel + 10) return { x, labelX: nowX + 10, anchor: 'start', words }
       if (x <= nowX && x > nowX - halfLabel - 38) return { x, labelX: nowX - 40, anchor: 'end', words }
       return { x, labelX: x, anchor: 'middle', words }
+    })
+}
+
+export interface RulerAlert {
+  id: number
+  priority: Priority
+  x: number
+  /** Where its strokes stand, one to four. */
+  strokes: number[]
+}
+
+const strokeCount: Record<Priority, number> = { low: 1, medium: 2, high: 3, urgent: 4 }
+
+/** Alerts raised within the ruler. */
+export function rulerAlerts(
+  alerts: readonly Pick<AlertView, 'id' | 'priority' | 'raisedAt'>[],
+  nowMs: number,
+  width: number,
+): RulerAlert[] {
+  return alerts
+    .filter(({ raisedAt }) => Date.parse(raisedAt) > nowMs - hoursBack * hourMs)
+    .map(({ id, priority, raisedAt }) => {
+      const x = rulerX(Date.parse(raisedAt), nowMs, width)
+      const count = strokeCount[priority]
+      return { id, priority, x, strokes: Array.from({ length: count }, (_, n) => x - (count - 1) * 2 + n * 4) }
     })
 }

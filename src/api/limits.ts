@@ -1,0 +1,22 @@
+import { z } from 'zod'
+import { backTestView, limitView, limitWithHistory } from '../../shared/schemas/limit.ts'
+import type { BackTestQuestion, BackTestView, LimitChange, LimitDraft, LimitView } from '../../shared/schemas/limit.ts'
+import { request } from './request.ts'
+
+export type LimitWithHistory = z.infer<typeof limitWithHistory>
+
+export const readLimits = (): Promise<LimitView[]> => request('GET', '/api/limits', z.array(limitView))
+
+export const readLimit = (id: number): Promise<LimitWithHistory> =>
+  request('GET', `/api/limits/${id}`, limitWithHistory)
+
+export const createLimit = (draft: LimitDraft): Promise<LimitView> => request('POST', '/api/limits', limitView, draft)
+
+export const changeLimit = (id: number, version: number, change: LimitChange): Promise<LimitView> =>
+  request('PUT', `/api/limits/${id}`, limitView, change, version)
+
+export const retireLimit = (id: number, version: number, reason: string): Promise<LimitView> =>
+  request('DELETE', `/api/limits/${id}`, limitView, { reason }, version)
+
+export const backTest = (question: BackTestQuestion): Promise<BackTestView> =>
+  request('POST', '/api/backTests', backTestView, question)

@@ -1,0 +1,34 @@
+import { ref } from 'vue'
+import { ProblemError, inWords } from '../api/problem.ts'
+
+/** One thing asked of the server at a time; its faults by field, or as one sentence. */
+export function useAttempt() {
+  const busy = ref(false)
+  const fault = ref<string | null>(null)
+  const fieldFaults = ref<Record<string, string>>({})
+
+  function forget(): void {
+    fault.value = null
+    fieldFaults.value = {}
+  }
+
+  /** True when it was done. */
+  async function attempt(work: () => Promise<unknown>): Promise<boolean> {
+    if (busy.value) return false
+    busy.value = true
+    forget()
+    try {
+      await work()
+      return true
+    } catch (error) {
+      const errors = error instanceof ProblemError ? (error.problem.errors ?? []) : []
+      fieldFaults.value = Object.fromEntries(errors.map(({ path, message }) => [path.replace(/^\//, ''), message]))
+      fault.value = inWords(error)
+      return false
+    } finally {
+      busy.value = false
+    }
+  }
+
+  return { attempt, forget, busy, fault, fieldFaults }
+}
