@@ -19,8 +19,8 @@ export interface ArraySpectra {
 }
 
 /** Share of Nyquist between which the noise floor is read: above the waves, below the anti-alias filter's last part. */
-const floorFrom = 0.72
-const floorTo = 0.9
+export const floorFrom = 0.72
+export const floorTo = 0.9
 /** Greatest turn of phase across a group over the whole array, rad: 0.25 rad costs 0.3 % of coherence. */
 const greatestTurn = 0.25
 /** Greatest width of a group as a share of its frequency. */

@@ -4,6 +4,7 @@ import type { ArraySpectra } from './arraySpectra.ts'
 import { noiseDensity } from './bandMatrices.ts'
 import type { PreparedArray } from './preparedArray.ts'
 import { spectralParameters } from './spectralParameters.ts'
+import { surfaceSpectrum } from './surfaceSpectrum.ts'
 import type { ArrayWindow } from './window.ts'
 
 export function addHeights(
@@ -36,12 +37,7 @@ export function addHeights(
     energyPeriod: parameters.energyPeriod,
     energyFlux: parameters.energyFlux,
     sensors: result.sensors.map((s) => ({ ...s, significantWaveHeight: heightOf.get(s.id) ?? null })),
-    spectrum: {
-      frequency: Array.from(bands.frequency),
-      density: Array.from(surface, (d) => Math.max(0, d)),
-      degreesOfFreedom: 2 * bands.averages[Math.floor(bands.groups / 2)],
-      cutoff: spectra.cutoff,
-    },
+    spectrum: surfaceSpectrum(window, prepared, spectra, 1 / peakFrequency(bands.frequency, surface)),
   }
 }
 
@@ -53,4 +49,11 @@ function sensorHeights({ bands, energyFactor }: ArraySpectra): number[] {
       m0 += (bands.real[g * m * m + i * m + i] - bands.noise[g * m + i]) * bands.width[g]
     return 4 * Math.sqrt(Math.max(0, energyFactor * m0))
   })
+}
+
+/** Frequency of the densest group, Hz: coarse, to choose the length of segments by. */
+function peakFrequency(frequency: Float64Array, density: ArrayLike<number>): number {
+  let peak = 0
+  for (let g = 1; g < frequency.length; g++) if (density[g] > density[peak]) peak = g
+  return frequency[peak]
 }
