@@ -2,6 +2,7 @@
 import type { Parts } from '../config/parts.ts'
 import { sessionCookieName } from '../config/sessionCookie.ts'
 import { alertRoutes } from './alerts.ts'
+import { capRoutes } from './cap.ts'
 import { installationRoutes } from './installation.ts'
 import { jobRoutes } from './jobs.ts'
 import { limitRoutes } from './limits.ts'
@@ -29,6 +30,7 @@ const features: ((parts: Parts) => Route[])[] = [
   stationHealthRoutes,
   limitRoutes,
   alertRoutes,
+  capRoutes,
   messageRoutes,
   listRoutes,
   peopleRoutes,
