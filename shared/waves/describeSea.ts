@@ -14,7 +14,7 @@ import type { SlownessFit } from './slownessFit.ts'
 import { systematicVariance } from './systematicError.ts'
 import { describeTrain } from './trainVector.ts'
 import type { TrainVector } from './trainVector.ts'
-import { firstGroup } from './waveSystems.ts'
+import { firstGroup } from './trainModel.ts'
 import type { ArrayWindow } from './window.ts'
 
 export interface SeaDoubts {

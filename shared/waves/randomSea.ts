@@ -8,7 +8,8 @@ import { greatestUnexplained, unexplainedShare } from './sensorFaults.ts'
 import { systemVector } from './systemVector.ts'
 import type { SeaDoubts } from './describeSea.ts'
 import type { TrainVector } from './trainVector.ts'
-import { findSystems, unrelatedLikelihood } from './waveSystems.ts'
+import { unrelatedLikelihood } from './trainModel.ts'
+import { findSystems } from './waveSystems.ts'
 import type { FoundSystems } from './waveSystems.ts'
 
 export interface RandomSea {

@@ -34,6 +34,8 @@ export interface Evaluation {
    * group's ln L to −2ν Re(e^{−ia} z_s) and a constant.
    */
   turn: Float64Array
+  /** R of each group, groups × sensors². */
+  expected: ComplexMatrix
   /** Gradient and information of the parameters after elimination of the densities. */
   gradient: Float64Array
   information: Float64Array
@@ -98,6 +100,7 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
       dataValue: 0,
       groupValue: new Float64Array(groups),
       turn: new Float64Array(2 * groups * m),
+      expected: { real: new Float64Array(groups * mm), imag: new Float64Array(groups * mm) },
       gradient: new Float64Array(count),
       information: new Float64Array(count * count),
       groupGradient: new Float64Array(groups * count),
@@ -152,6 +155,8 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
         r.real[i * m + i] += own
         change[noiseLocal].real[i * m + i] = own
       }
+      evaluation.expected.real.set(r.real, g * mm)
+      evaluation.expected.imag.set(r.imag, g * mm)
       for (let n = 0; n < mm; n++) {
         c.real[n] = bands.real[g * mm + n]
         c.imag[n] = bands.imag[g * mm + n]

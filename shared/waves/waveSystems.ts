@@ -3,13 +3,14 @@ import { beamSearch } from './beamSearch.ts'
 import type { BandMatrices } from './bandMatrices.ts'
 import { noiseDensity, selectGroups } from './bandMatrices.ts'
 import { phaseSpeed } from './dispersion.ts'
-import { fitPeak, jonswapShape } from './jonswap.ts'
+import { hiddenTrain } from './hiddenTrain.ts'
+import { fitPeak } from './jonswap.ts'
 import type { PeakFit } from './jonswap.ts'
 import { fitSea, quick, thorough } from './seaFit.ts'
 import type { SeaFit } from './seaFit.ts'
-import type { SeaModel } from './seaModel.ts'
-import { currentAt, depthAt, directionAt, parameterCount, parametersPerSystem, spreadAt } from './seaModel.ts'
+import { currentAt, depthAt, directionAt, parametersPerSystem, spreadAt } from './seaModel.ts'
 import { spectralPeaks } from './spectralPeaks.ts'
+import { firstGroup, seaModel, startDensity, unrelatedLikelihood } from './trainModel.ts'
 
 export interface FoundSystems {
   fit: SeaFit
@@ -30,8 +31,6 @@ const leastShare = 0.04
 const mostSystems = 3
 /** ln L over unrelated sensors that a train must gain in its own band before it is fitted thoroughly. */
 const leastStartGain = 5
-/** Usual current across the waves at a nearshore array, m/s: the record must speak clearly for more. */
-const usualCrossCurrent = 0.25
 
 /** Null when nothing stands above the noise. */
 export function findSystems(
@@ -63,8 +62,13 @@ export function findSystems(
     starts.map((start) => start.parameters),
   )
   if (!first) return null
-  const split = peaks.length < mostSystems ? splitByHeading(sea, first) : null
-  return { ...(split ?? first), runnerUp: starts[0].runnerUp }
+  let found = first
+  while (found.peaks.length < mostSystems) {
+    const more = withHiddenTrain(sea, found)
+    if (!more) break
+    found = more
+  }
+  return { ...found, runnerUp: starts[0].runnerUp }
 }
 
 interface SeaSetting {
@@ -88,6 +92,17 @@ function fitTogether(
   ranges: Range[],
   starts: readonly Float64Array[],
 ): FittedTogether | null {
+  const first = firstLook(sea, peaks, ranges, starts)
+  return first && lastLook(sea, first)
+}
+
+/** All trains together, loosely converged. */
+function firstLook(
+  sea: SeaSetting,
+  peaks: readonly PeakFit[],
+  ranges: Range[],
+  starts: readonly Float64Array[],
+): FittedTogether | null {
   const { bands, x, y, depth, gravity } = sea
   const from = firstGroup(bands, bandBelow * Math.min(...peaks.map((p) => p.peak)))
   const to = Math.min(
@@ -97,56 +112,89 @@ function fitTogether(
   const model = seaModel(selectGroups(bands, from, to), x, y, depth, gravity, peaks)
   const parameters = new Float64Array(model.systems * parametersPerSystem + 1)
   starts.forEach((start, j) => parameters.set(start.subarray(0, parametersPerSystem), j * parametersPerSystem))
-  const fit = fitSea(model, { parameters, logDensity: startDensity(model) }, thorough)
-  if (!fit) return null
-  const own = peaks.map((peak, j) => (peaks.length === 1 ? peak : ownPeak(fit, j, peak.peak, ranges[j])))
-  return { fit, from, to, peaks: own, ranges }
+  const fit = fitSea(model, { parameters, logDensity: startDensity(model) }, quick)
+  return fit && { fit, from, to, peaks: ownPeaks(fit, peaks), ranges }
 }
 
-/** Score of a turn of heading at a frequency, in standard deviations, from which a hidden second train is looked for. */
-const turningScore = 4.5
-/** ln L that a hidden train must gain, and the least difference of heading, rad. */
+/** Fully converged, each train now expected to have the shape that the first look gave it. */
+function lastLook(sea: SeaSetting, { fit: first, from, to, peaks, ranges }: FittedTogether): FittedTogether | null {
+  const model = seaModel(selectGroups(sea.bands, from, to), sea.x, sea.y, sea.depth, sea.gravity, peaks)
+  const fit = fitSea(model, first.state, thorough)
+  return fit && { fit, from, to, peaks: ownPeaks(fit, peaks), ranges }
+}
+
+function ownPeaks(fit: SeaFit, peaks: readonly PeakFit[]): PeakFit[] {
+  return peaks.length === 1 ? [...peaks] : peaks.map((_, j) => ownPeak(fit, j))
+}
+
+/** Score, in standard deviations, from which a further train is tried. */
+const leastScore = 3
+/** ln L that a further train must gain, its least difference of heading, rad, and its least share of the energy. */
 const leastTrainGain = 15
 const leastTurn = 0.2
+/** Spread that a further train is looked for with, rad. */
+const usualSpread = 0.4
 
 /**
- * A swell and a wind sea whose peaks run together in the spectrum still differ in heading: where the heading of a fitted train
- * turns with frequency, the band is split there and both parts are fitted together.
+ * A swell and a wind sea whose peaks run together in the spectrum still differ in heading: where the fit leaves something from
+ * another direction, a train of that direction is fitted beside the others, and kept when the likelihood clearly gains.
  */
-function splitByHeading(sea: SeaSetting, found: FittedTogether): FittedTogether | null {
+function withHiddenTrain(sea: SeaSetting, found: FittedTogether): FittedTogether | null {
   const { fit, peaks, ranges } = found
-  const { bands } = fit.model
-  let best = { score: turningScore, system: -1, group: 0 }
-  peaks.forEach((_, j) => {
-    const turning = turnOfHeading(fit, j)
-    if (turning.score > best.score) best = { ...turning, system: j }
-  })
-  if (best.system < 0) return null
-  const border = bands.frequency[best.group]
-  const peak = peaks[best.system].peak
-  const low = { from: Math.min(0.6 * peak, 0.7 * border), to: border }
-  const high = { from: border, to: Math.min(ranges[best.system].to, 2.2 * border) }
-  const parts = [low, high]
+  const hidden = hiddenTrain(fit)
+  if (hidden.score < leastScore) return null
+  const { frequency } = fit.model.bands
+  const middle = Math.sqrt(frequency[hidden.from] * frequency[hidden.to - 1])
+  const beside = peaks.reduce((best, p, j) => (distanceOf(p, middle) < distanceOf(peaks[best], middle) ? j : best), 0)
+  const peak = peaks[beside].peak
+  const start = new Float64Array(parametersPerSystem)
+  start[directionAt] = hidden.direction
+  start[depthAt] = Math.log(sea.depth)
+  start[spreadAt] = Math.log(usualSpread)
+  const starts = peaks.map((_, j) => fit.state.parameters.slice(j * parametersPerSystem, (j + 1) * parametersPerSystem))
   const noise = noiseDensity(sea.bands)
-  const places = [Math.min(peak, 0.85 * border), Math.max(1.15 * border, peak)]
-  const parted = parts.map((range, n) =>
-    fitPeak(sea.bands.frequency, sea.bands.density, sea.bands.averages, noise, places[n], range),
+  const sides = [frequency[hidden.to - 1] > 1.05 * peak ? 1 : 0, frequency[hidden.from] < 0.95 * peak ? -1 : 0]
+  const first = sides
+    .filter((side) => side !== 0)
+    .flatMap((side) => {
+      const above = side > 0
+      const border = above
+        ? Math.max(frequency[hidden.from], 1.05 * peak)
+        : Math.min(frequency[hidden.to - 1], 0.95 * peak)
+      const low = { from: ranges[beside].from, to: border }
+      const high = { from: border, to: Math.max(ranges[beside].to, 1.5 * border) }
+      const own = above ? high : low
+      const near = above ? 1.15 * border : 0.85 * border
+      const added = fitPeak(sea.bands.frequency, sea.bands.density, sea.bands.averages, noise, near, own)
+      const places = [...ranges.map((kept, j) => (j === beside ? (above ? low : high) : kept)), own]
+      return firstLook(sea, [...peaks, added], places, [...starts, start]) ?? []
+    })
+    .sort((a, b) => b.fit.evaluation.dataValue - a.fit.evaluation.dataValue)
+  const joint = first.length > 0 ? lastLook(sea, first[0]) : null
+  if (!joint || !isSeparate(joint)) return null
+  return likelihoodOn(joint, found) - likelihoodOn(found, joint) > leastTrainGain ? joint : null
+}
+
+const distanceOf = (peak: PeakFit, frequency: number): number => Math.abs(Math.log(peak.peak / frequency))
+
+/** Whether the last train is large enough and has a heading of its own. */
+function isSeparate({ fit }: FittedTogether): boolean {
+  const { bands, systems } = fit.model
+  const last = systems - 1
+  let all = 0
+  let own = 0
+  for (let j = 0; j < systems; j++) {
+    for (let g = 0; g < bands.groups; g++) {
+      const energy = Math.exp(fit.state.logDensity[j * bands.groups + g]) * bands.width[g]
+      all += energy
+      if (j === last) own += energy
+    }
+  }
+  if (own < leastShare * all) return false
+  const heading = (j: number) => fit.state.parameters[j * parametersPerSystem + directionAt]
+  return Array.from({ length: last }, (_, j) => heading(last) - heading(j)).every(
+    (turn) => 2 * Math.abs(Math.sin(turn / 2)) > leastTurn,
   )
-  const starts = parts.flatMap((range, n) => bestStart(sea, parted[n].peak, range.from, range.to) ?? [])
-  if (starts.length < 2) return null
-  const others = peaks.map((_, j) => j).filter((j) => j !== best.system)
-  const kept = others.map((j) => fit.state.parameters.slice(j * parametersPerSystem, (j + 1) * parametersPerSystem))
-  const joint = fitTogether(
-    sea,
-    [...others.map((j) => peaks[j]), ...parted],
-    [...others.map((j) => ranges[j]), ...parts],
-    [...kept, ...starts.map((start) => start.parameters)],
-  )
-  if (!joint) return null
-  const at = others.length * parametersPerSystem + directionAt
-  const turn = joint.fit.state.parameters[at] - joint.fit.state.parameters[at + parametersPerSystem]
-  const gain = likelihoodOn(joint, found) - fit.evaluation.dataValue
-  return gain > leastTrainGain && 2 * Math.abs(Math.sin(turn / 2)) > leastTurn ? joint : null
 }
 
 /** ln L of a fit over the groups that another fit looked at: only comparable where the groups are the same. */
@@ -157,109 +205,20 @@ function likelihoodOn(joint: FittedTogether, other: FittedTogether): number {
   return value
 }
 
-/** Where the heading of a train turns most: |Σ scores below| over its standard deviation. */
-function turnOfHeading(fit: SeaFit, system: number): { score: number; group: number } {
-  const groups = fit.model.bands.groups
-  const count = parameterCount(fit.model)
-  const at = system * parametersPerSystem + directionAt
-  const { groupGradient, groupInformation } = fit.evaluation
-  let total = 0
-  for (let g = 0; g < groups; g++) total += groupInformation[g * count + at]
-  let sum = 0
-  let below = 0
-  let best = { score: 0, group: 0 }
-  for (let g = 0; g + 2 < groups; g++) {
-    sum += groupGradient[g * count + at]
-    below += groupInformation[g * count + at]
-    const variance = (below * (total - below)) / total
-    const score = variance > 0 ? Math.abs(sum) / Math.sqrt(variance) : 0
-    if (g >= 2 && score > best.score) best = { score, group: g + 1 }
-  }
-  return best
-}
-
 /** Peak of one train's own density, once the fit has told the trains apart. */
-function ownPeak(fit: SeaFit, system: number, near: number, range: { from: number; to: number }): PeakFit {
+function ownPeak(fit: SeaFit, system: number): PeakFit {
   const { bands } = fit.model
-  const noise = noiseDensity(bands)
-  const density = noise.map((n, g) => n + Math.exp(fit.state.logDensity[system * bands.groups + g]))
-  return fitPeak(bands.frequency, density, bands.averages, noise, near, range)
-}
-
-export function firstGroup(bands: BandMatrices, frequency: number): number {
-  let g = 0
-  while (g < bands.groups && bands.frequency[g] < frequency) g++
-  return g
-}
-
-export function seaModel(
-  bands: BandMatrices,
-  x: Float64Array,
-  y: Float64Array,
-  depth: number,
-  gravity: number,
-  peaks: readonly PeakFit[],
-): SeaModel {
-  const systems = peaks.length
-  const priors = peaks.flatMap(() => [
-    // No heading is likelier than another.
-    { mean: 0, sd: 1e9 },
-    { mean: 0, sd: 1 },
-    { mean: Math.log(depth), sd: 0.25 },
-    { mean: Math.log(0.3), sd: 1 },
-    { mean: 0, sd: usualCrossCurrent },
-  ])
-  priors.push({ mean: 0, sd: 0.7 })
-  let densityPrior = null
-  if (systems > 1) {
-    const mean = new Float64Array(systems * bands.groups)
-    peaks.forEach((peak, j) => {
-      for (let g = 0; g < bands.groups; g++) {
-        const shape = peak.density * jonswapShape(bands.frequency[g], peak.peak, peak.gamma)
-        mean[j * bands.groups + g] = Math.log(Math.max(shape, 1e-3 * bands.density[g]))
-      }
-    })
-    densityPrior = { mean, sd: 1 }
-  }
-  return { bands: withModelError(bands), x, y, systems, gravity, faults: [], priors, densityPrior }
-}
-
-/**
- * What no model of the sea explains of a group's own energy: the width of a group alone costs 0.3 % of coherence (see arraySpectra).
- * Without this floor a record with little noise trusts its quietest frequencies without bound, and they turn the heading.
- */
-const modelError = 0.004
-
-function withModelError(bands: BandMatrices): BandMatrices {
-  const m = bands.sensors
-  const noise = bands.noise.map((own, n) => own + modelError * bands.density[Math.floor(n / m)])
-  return { ...bands, noise }
-}
-
-export function startDensity(model: SeaModel): Float64Array {
-  const { bands, systems, densityPrior } = model
-  const start = new Float64Array(systems * bands.groups)
+  const own = fit.state.logDensity.slice(system * bands.groups, (system + 1) * bands.groups).map(Math.exp)
+  let above = 0
+  let below = 0
   for (let g = 0; g < bands.groups; g++) {
-    let noise = 0
-    for (let i = 0; i < bands.sensors; i++) noise += bands.noise[g * bands.sensors + i] / bands.sensors
-    const surface = Math.max(bands.density[g] - noise, 0.05 * bands.density[g])
-    let expected = 0
-    for (let j = 0; j < systems; j++) expected += densityPrior ? Math.exp(densityPrior.mean[j * bands.groups + g]) : 1
-    for (let j = 0; j < systems; j++) {
-      const share = densityPrior ? Math.exp(densityPrior.mean[j * bands.groups + g]) / expected : 1
-      start[j * bands.groups + g] = Math.log(surface * Math.max(share, 1e-3))
-    }
+    const weight = own[g] ** 2 * bands.width[g]
+    above += weight * bands.frequency[g]
+    below += weight
   }
-  return start
-}
-
-/** ln L of sensors that share nothing but have their own energies. */
-export function unrelatedLikelihood(bands: BandMatrices): number {
-  const m = bands.sensors
-  let value = 0
-  for (let g = 0; g < bands.groups; g++)
-    for (let i = 0; i < m; i++) value -= bands.averages[g] * (Math.log(bands.real[g * m * m + i * m + i] + 1e-300) + 1)
-  return value
+  const noise = noiseDensity(bands)
+  const density = noise.map((n, g) => n + own[g])
+  return fitPeak(bands.frequency, density, bands.averages, noise, above / below)
 }
 
 interface Start {

@@ -121,11 +121,11 @@ export function seededSea(recipe: SeaRecipe): ArrayWindow {
       }
     }
   }
-  const out = fft.createComplexArray()
+  const out = new Float64Array(2 * size)
   // x(t) = Σ 2 Re(X e^{iωt}); the transform below is unscaled, its sign turned by taking conjugates.
   const series = lines.map((line) => {
     for (let n = 1; n < size; n += 2) line[n] = -line[n]
-    fft.transform(out, Array.from(line))
+    fft.transform(out, line)
     const metres = heightAboveBed === undefined ? 1 : (1025 * g) / 1e4
     const still = heightAboveBed === undefined ? 0 : depth - heightAboveBed
     return Float64Array.from({ length }, (_, i) => metres * (still + 2 * out[2 * i] + recipe.noise * normal()))

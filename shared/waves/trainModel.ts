@@ -1,0 +1,85 @@
+/** The sea model of trains about known peaks: what is expected before the record is seen, and where the fit starts. */
+import type { BandMatrices } from './bandMatrices.ts'
+import type { PeakFit } from './jonswap.ts'
+import { jonswapShape } from './jonswap.ts'
+import type { SeaModel } from './seaModel.ts'
+
+/** Usual current across the waves at a nearshore array, m/s: the record must speak clearly for more. */
+const usualCrossCurrent = 0.25
+
+/** First group at or above a frequency. */
+export function firstGroup(bands: BandMatrices, frequency: number): number {
+  let g = 0
+  while (g < bands.groups && bands.frequency[g] < frequency) g++
+  return g
+}
+
+export function seaModel(
+  bands: BandMatrices,
+  x: Float64Array,
+  y: Float64Array,
+  depth: number,
+  gravity: number,
+  peaks: readonly PeakFit[],
+): SeaModel {
+  const systems = peaks.length
+  const priors = peaks.flatMap(() => [
+    // No heading is likelier than another.
+    { mean: 0, sd: 1e9 },
+    { mean: 0, sd: 1 },
+    { mean: Math.log(depth), sd: 0.25 },
+    { mean: Math.log(0.3), sd: 1 },
+    { mean: 0, sd: usualCrossCurrent },
+  ])
+  priors.push({ mean: 0, sd: 0.7 })
+  let densityPrior = null
+  if (systems > 1) {
+    const mean = new Float64Array(systems * bands.groups)
+    peaks.forEach((peak, j) => {
+      for (let g = 0; g < bands.groups; g++) {
+        const shape = peak.density * jonswapShape(bands.frequency[g], peak.peak, peak.gamma)
+        mean[j * bands.groups + g] = Math.log(Math.max(shape, 1e-3 * bands.density[g]))
+      }
+    })
+    densityPrior = { mean, sd: 1 }
+  }
+  return { bands: withModelError(bands), x, y, systems, gravity, faults: [], priors, densityPrior }
+}
+
+/**
+ * What no model of the sea explains of a group's own energy: the width of a group alone costs 0.3 % of coherence (see arraySpectra).
+ * Without this floor a record with little noise trusts its quietest frequencies without bound, and they turn the heading.
+ */
+const modelError = 0.004
+
+function withModelError(bands: BandMatrices): BandMatrices {
+  const m = bands.sensors
+  const noise = bands.noise.map((own, n) => own + modelError * bands.density[Math.floor(n / m)])
+  return { ...bands, noise }
+}
+
+export function startDensity(model: SeaModel): Float64Array {
+  const { bands, systems, densityPrior } = model
+  const start = new Float64Array(systems * bands.groups)
+  for (let g = 0; g < bands.groups; g++) {
+    let noise = 0
+    for (let i = 0; i < bands.sensors; i++) noise += bands.noise[g * bands.sensors + i] / bands.sensors
+    const surface = Math.max(bands.density[g] - noise, 0.05 * bands.density[g])
+    let expected = 0
+    for (let j = 0; j < systems; j++) expected += densityPrior ? Math.exp(densityPrior.mean[j * bands.groups + g]) : 1
+    for (let j = 0; j < systems; j++) {
+      const share = densityPrior ? Math.exp(densityPrior.mean[j * bands.groups + g]) / expected : 1
+      start[j * bands.groups + g] = Math.log(surface * Math.max(share, 1e-3))
+    }
+  }
+  return start
+}
+
+/** ln L of sensors that share nothing but have their own energies. */
+export function unrelatedLikelihood(bands: BandMatrices): number {
+  const m = bands.sensors
+  let value = 0
+  for (let g = 0; g < bands.groups; g++)
+    for (let i = 0; i < m; i++) value -= bands.averages[g] * (Math.log(bands.real[g * m * m + i * m + i] + 1e-300) + 1)
+  return value
+}
