@@ -62,12 +62,14 @@ const isoDay = (ms: number): string => new Date(ms).toISOString().slice(0, 10)
 
 /** Days that are not packed yet come from the estimates themselves. */
 function stretchOf(windows: SeaWindow[], startsAt: number, figures: StoredFigure[]): Stretch {
-  const length = dayMs / minuteMs
+  const steps = windows.slice(1).map(({ windowEndsAt }, n) => windowEndsAt - windows[n].windowEndsAt)
+  const stepMs = Math.min(...steps, steps.length === 0 ? minuteMs : 60 * minuteMs)
+  const length = Math.ceil(dayMs / stepMs)
   const series: Stretch['series'] = {}
   for (const figure of figures) series[figure] = new Float32Array(length).fill(NaN)
-  const stretch: Stretch = { startsAt, stepMs: minuteMs, flags: new Uint8Array(length), series }
+  const stretch: Stretch = { startsAt, stepMs, flags: new Uint8Array(length), series }
   for (const { windowEndsAt, sea } of windows) {
-    const slot = Math.floor((windowEndsAt - startsAt) / minuteMs)
+    const slot = Math.floor((windowEndsAt - startsAt) / stepMs)
     if (slot < 0 || slot >= length) continue
     stretch.flags[slot] = flagOf(sea, false)
     const of = (name: 'swell' | 'windSea') => ({

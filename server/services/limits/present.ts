@@ -11,7 +11,7 @@ import {
 } from '../../../shared/schemas/limit.ts'
 import type { LimitVersionView, LimitView, PersonName, ShelfView, SubjectView } from '../../../shared/schemas/limit.ts'
 import type { Parts } from '../../config/parts.ts'
-import type { Limit} from '../../models/index.ts';
+import type { Limit } from '../../models/index.ts'
 import { Alert, LimitState, LimitVersion, Person, Shelving, Station } from '../../models/index.ts'
 import { fromJson } from './rows.ts'
 
