@@ -27,7 +27,7 @@ export interface TestMailServer {
 
 const fault = ([responseCode, words]: [number, string]): Error => Object.assign(new Error(words), { responseCode })
 
-export async function startTestMailServer(port = 0): Promise<TestMailServer> {
+export async function startTestMailServer(port = 0, host = '127.0.0.1'): Promise<TestMailServer> {
   const sockets = new Map<string, Socket>()
   const server = new SMTPServer({
     disabledCommands: ['AUTH', 'STARTTLS'],
@@ -55,10 +55,10 @@ export async function startTestMailServer(port = 0): Promise<TestMailServer> {
     socket.on('close', () => sockets.delete(key))
   })
   server.on('error', () => undefined)
-  await new Promise<void>((resolve) => server.listen(port, '127.0.0.1', () => resolve()))
+  await new Promise<void>((resolve) => server.listen(port, host, () => resolve()))
   const address = server.server.address() as AddressInfo
   const catcher: TestMailServer = {
-    url: `smtp://127.0.0.1:${address.port}`,
+    url: `smtp://${host}:${address.port}`,
     port: address.port,
     caught: [],
     asked: [],

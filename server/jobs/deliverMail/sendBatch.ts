@@ -25,7 +25,10 @@ export async function sendBatch(parts: Parts, { leased, transport, around }: Bat
       await settleDelivery(parts, letter, outcome)
     }
   }
-  await Promise.all(Array.from({ length: sideBySide }, work))
+  // Each goes on to its end, so that nothing of this batch is still under way when the next one begins.
+  const ends = await Promise.allSettled(Array.from({ length: sideBySide }, work))
+  const failed = ends.find((end) => end.status === 'rejected')
+  if (failed) throw failed.reason
   return isServerUp
 }
 

@@ -62,4 +62,14 @@ describe('a transport', () => {
     expect(server.caught).toEqual([])
     await server.stop()
   })
+
+  test('gives a server on another host nothing in the clear', async () => {
+    // Any address but the named loopback ones counts as another host.
+    const server = await startTestMailServer(0, '127.0.0.2')
+    const transport = createTransport({ url: server.url, from: 'watch@harbour.example', clientName: 'localhost' })
+    const result = await transport.send(written, envelope)
+    expect(result).toMatchObject({ kind: 'later', isServerDown: true })
+    expect([server.asked, server.caught]).toEqual([[], []])
+    await server.stop()
+  })
 })
