@@ -39,14 +39,17 @@ export function blankResult(window: ArrayWindow, prepared: PreparedArray): Estim
   }
 }
 
-/** No vector: flag 9 when nothing came, else 4. What is known of height and period stays. */
+/**
+ * No vector: flag 9 when nothing came, 2 (not evaluated) when the record is sound but holds no wave that the array resolves, else 4.
+ * What is known of height and period stays.
+ */
 export function refuse(result: EstimateResult, reason: UnresolvedReason): EstimateResult {
   const silent = result.completeness === 0
   return {
     ...result,
     resolved: false,
     reason,
-    qualityFlag: silent ? 9 : 4,
+    qualityFlag: silent ? 9 : reason === 'no-resolvable-wave' ? 2 : 4,
     systems: [],
     traceSpeeds: result.traceSpeeds,
   }

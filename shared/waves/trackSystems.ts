@@ -12,6 +12,9 @@ export interface Track {
   peakPeriod: number
   toward: number
   at: number
+  /** The name it goes by, and since when (ms) every window has said the other; null while they agree. */
+  name: WaveSystem['name']
+  contrarySince: number | null
 }
 
 export interface TrackedSystems {
@@ -25,6 +28,25 @@ const frequencyGate = 0.01
 const headingGate = 25
 /** A track not seen for so long is another train of waves when it comes back, ms. */
 const memory = 30 * 60_000
+
+/**
+ * The rule for the name has sampling error (a peak density of a 20-minute record scatters by 10 to 20 %), and windows a minute apart
+ * share most of their readings: a name is changed only when windows over a whole window's length all say the other, ms.
+ */
+const sureAfter = 20 * 60_000
+
+/** The name kept and the doubt about it, once a window has been looked at. */
+function keepName(
+  track: Track | undefined,
+  said: WaveSystem['name'],
+  at: number,
+): Pick<Track, 'name' | 'contrarySince'> {
+  if (!track || track.name === said) return { name: said, contrarySince: null }
+  const since = track.contrarySince ?? at
+  return Math.abs(at - since) >= sureAfter
+    ? { name: said, contrarySince: null }
+    : { name: track.name, contrarySince: since }
+}
 
 /** Squared distance in gates; null when outside. */
 function distance(track: Track, system: WaveSystem): number | null {
@@ -56,8 +78,8 @@ function nearestPairs(tracks: Track[], systems: WaveSystem[]): Map<number, Track
 }
 
 /**
- * Names the systems of the window that ends `at`, given the tracks of its neighbours (earlier ones, or later ones
- * when a past is computed backwards). Returns the same systems in the same order with their keys, the tracks to hand
+ * Keys the systems of the window that ends `at`, given the tracks of its neighbours (earlier ones, or later ones
+ * when a past is computed backwards). Returns the same systems in the same order with their keys and kept names, the tracks to hand
  * to the next call, and the next free key.
  */
 export function trackSystems(
@@ -68,11 +90,13 @@ export function trackSystems(
   const within = known.tracks.filter((track) => Math.abs(track.at - at) <= memory)
   const pairs = nearestPairs(within, systems)
   let nextKey = known.nextKey
-  const named = systems.map((system, index) => ({ ...system, key: pairs.get(index)?.key ?? nextKey++ }))
-  const seen = new Set(named.map((system) => system.key))
-  const tracks = [
-    ...named.map(({ key, peakPeriod, toward }) => ({ key, peakPeriod, toward, at })),
-    ...within.filter((track) => !seen.has(track.key)),
-  ]
+  const followed = systems.map((system, index): Track => {
+    const track = pairs.get(index)
+    const { peakPeriod, toward } = system
+    return { key: track?.key ?? nextKey++, peakPeriod, toward, at, ...keepName(track, system.name, at) }
+  })
+  const named = systems.map((system, index) => ({ ...system, key: followed[index].key, name: followed[index].name }))
+  const seen = new Set(followed.map((track) => track.key))
+  const tracks = [...followed, ...within.filter((track) => !seen.has(track.key))]
   return { systems: named, tracks, nextKey }
 }

@@ -64,3 +64,23 @@ describe('the identity of wave systems', () => {
     expect(keys(trackSystems(newest, [system(10.1, 61)], noon - minute).systems)).toEqual([1])
   })
 })
+
+describe('the name of a followed system', () => {
+  const said = (name: WaveSystem['name'], minutes: number, known: Parameters<typeof trackSystems>[0]) =>
+    trackSystems(known, [{ ...system(8, 60), name }], noon + minutes * minute)
+
+  it('does not flip with a window or two that say the other', () => {
+    const first = said('wind sea', 0, fresh)
+    const doubted = said('swell', 1, first)
+    expect(doubted.systems[0].name).toBe('wind sea')
+    const again = said('wind sea', 10, doubted)
+    expect(said('swell', 25, again).systems[0].name).toBe('wind sea')
+  })
+
+  it('changes once all windows of twenty minutes say the other', () => {
+    let known = said('wind sea', 0, fresh)
+    for (let minutes = 1; minutes <= 20; minutes++) known = said('swell', minutes, known)
+    expect(known.systems[0].name).toBe('wind sea')
+    expect(said('swell', 21, known).systems[0].name).toBe('swell')
+  })
+})

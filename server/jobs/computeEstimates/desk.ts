@@ -33,7 +33,9 @@ export async function openDesk(parts: Parts, timeline: StationTimeline): Promise
   const end = newest ? new Date(newest.windowEndsAt) : new Date(0)
   const recent = await estimates.estimatesBetween(parts, timeline.id, new Date(end.getTime() - trackedMs), end)
   const keys = recent.flatMap(({ systems }) => systems.map(({ key }) => key))
-  const tracks = (newest?.systems ?? []).map(({ key, peakPeriod, toward }) => ({
+  const tracks = (newest?.systems ?? []).map(({ key, peakPeriod, toward, name }) => ({
+    name,
+    contrarySince: null,
     key,
     peakPeriod,
     toward,

@@ -113,7 +113,7 @@ describe('no vector', () => {
       Float64Array.from({ length: 2400 }, () => 0.2 * (next() + next() + next() - 1.5)),
     )
     const result = estimate(windowOf(noise, fiveSensors, 11, 2))
-    expect(result).toMatchObject({ resolved: false, reason: 'no-resolvable-wave', systems: [] })
+    expect(result).toMatchObject({ resolved: false, reason: 'no-resolvable-wave', systems: [], qualityFlag: 2 })
   })
 
   it('is given for a window without a sample, which is missing, not calm', () => {

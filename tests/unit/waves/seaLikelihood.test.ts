@@ -5,7 +5,7 @@ import { checkArray, prepareArray } from '../../../shared/waves/preparedArray.ts
 import { seaLikelihood } from '../../../shared/waves/seaLikelihood.ts'
 import type { SeaState } from '../../../shared/waves/seaModel.ts'
 import { firstMoment, makeSpreadingNodes, spreadExponent, spreadingNodes } from '../../../shared/waves/spreading.ts'
-import { seaModel, startDensity } from '../../../shared/waves/waveSystems.ts'
+import { seaModel, startDensity } from '../../../shared/waves/trainModel.ts'
 import { fiveSensors, spreadSea } from './spreadSea.ts'
 
 const window = spreadSea({
