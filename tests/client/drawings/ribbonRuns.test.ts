@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest'
 import type { SeriesPoint } from '../../../shared/schemas/station.ts'
 import { periodStep } from '../../../src/components/drawings/geometry/periodTone.ts'
 import {
-  openSeaBearing,
+  ribbonMiddle,
   ribbonPoints,
   ribbonScale,
   stretches,
@@ -97,8 +97,18 @@ describe('the runs of a stretch', () => {
 
 describe('the frame of a ribbon', () => {
   it('has the middle of the open sea in its middle', () => {
-    expect(openSeaBearing([[330, 150]])).toBe(240)
-    expect(openSeaBearing([[140, 310]])).toBe(45)
+    expect(ribbonMiddle([[330, 150]], [])).toBe(240)
+    expect(ribbonMiddle([[140, 310]], [])).toBe(45)
+  })
+
+  it('is where the waves came from when no land is known, by energy and across north', () => {
+    const low = { toward: 120, height: 0.2 }
+    const high = [
+      { toward: 175, height: 2 },
+      { toward: 185, height: 2 },
+    ]
+    expect(ribbonMiddle([], [low, ...high, { toward: null, height: null }])).toBe(0)
+    expect(ribbonMiddle([], [])).toBe(180)
   })
 
   it('shows land on both sides where the sector reaches around', () => {

@@ -80,12 +80,32 @@ export function tonedRuns(stretch: readonly RibbonPoint[]): RibbonPoint[][] {
   return runs.filter((run) => run.length > 1)
 }
 
-/** The bearing in the middle of the open sea: opposite the widest land. 240 where no land is given. */
-export function openSeaBearing(landSectors: readonly (readonly [number, number])[]): number {
-  if (landSectors.length === 0) return 240
+/**
+ * The bearing in the middle of the ribbon, degrees true: the open sea where land sectors are known, else where the waves of the span
+ * came from, rounded to 10°, else south.
+ */
+export function ribbonMiddle(
+  landSectors: readonly (readonly [number, number])[],
+  points: readonly Pick<SeriesPoint, 'toward' | 'height'>[],
+): number {
+  if (landSectors.length === 0) return meanFrom(points) ?? 180
   const widths = landSectors.map(([start, end]) => normalise(end - start))
   const [start, end] = landSectors[widths.indexOf(Math.max(...widths))]
   return opposite(start + normalise(end - start) / 2)
+}
+
+/** Energy-weighted mean of the bearings the waves came from; null where none was measured. */
+function meanFrom(points: readonly Pick<SeriesPoint, 'toward' | 'height'>[]): number | null {
+  let east = 0
+  let north = 0
+  for (const { toward, height } of points) {
+    if (toward === null || height === null) continue
+    const from = (opposite(toward) * Math.PI) / 180
+    east += height * height * Math.sin(from)
+    north += height * height * Math.cos(from)
+  }
+  if (east === 0 && north === 0) return null
+  return normalise(360 + Math.round((Math.atan2(east, north) * 18) / Math.PI) * 10)
 }
 
 /** Half width of the ribbon in pixels for each metre; wider for a low sea, so that it stays a ribbon. */
