@@ -1,12 +1,21 @@
-/** Measures what the program does in earnest. Run by `npm run bench`; the figures go to the screen. */
+/**
+ * Measures what the program does in earnest; the figures go to the screen. `npm run bench`, or `npm run bench -- --accuracy [seas of
+ * each kind]` for the errors of the estimator.
+ */
+import { benchAccuracy } from './accuracy.ts'
 import { benchAcknowledgement } from './acknowledgement.ts'
 import { benchAlertMail } from './alertMail.ts'
 import { benchStorage } from './storage.ts'
 
-for (const { what, value, unit } of [
-  ...(await benchStorage()),
-  ...(await benchAcknowledgement()),
-  ...(await benchAlertMail()),
-]) {
-  process.stdout.write(`${what.padEnd(44)} ${Number(value.toPrecision(4)).toString().padStart(10)} ${unit}\n`)
+const words = process.argv.slice(2)
+if (words[0] === '--accuracy') {
+  benchAccuracy(Number(words[1] ?? 12), (line) => process.stdout.write(`${line}\n`))
+} else {
+  for (const { what, value, unit } of [
+    ...(await benchStorage()),
+    ...(await benchAcknowledgement()),
+    ...(await benchAlertMail()),
+  ]) {
+    process.stdout.write(`${what.padEnd(44)} ${Number(value.toPrecision(4)).toString().padStart(10)} ${unit}\n`)
+  }
 }

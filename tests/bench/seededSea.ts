@@ -66,6 +66,15 @@ function jonswap(f: number, peak: number, gamma: number): number {
   return f < 0.3 * peak ? 0 : f ** -5 * Math.exp(-1.25 * (peak / f) ** 4) * gamma ** bump
 }
 
+/** Density of a train at a frequency, m²/Hz, scaled to its height. */
+export function jonswapDensity({ peakPeriod, height, gamma }: SeededTrain): (frequency: number) => number {
+  const peak = 1 / peakPeriod
+  const step = peak / 200
+  let sum = 0
+  for (let n = 1; n < 1600; n++) sum += jonswap(n * step, peak, gamma) * step
+  return (f) => ((height ** 2 / 16) * jonswap(f, peak, gamma)) / sum
+}
+
 const mostDirections = 60
 
 /** Directions about the mean (rad), evenly over what cos^2s leaves, and the square roots of their shares. */
