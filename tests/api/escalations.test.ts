@@ -5,6 +5,7 @@ import type { DeliverMail } from '../../server/jobs/deliverMail.ts'
 import { createTransport } from '../../server/mail/transport.ts'
 import { Absence, Escalation, LogEntry, SettingVersion } from '../../server/models/index.ts'
 import type { Alert, Person } from '../../server/models/index.ts'
+import { confirmReceipt } from '../../server/services/receipts.ts'
 import { makeLimit, makeList, raiseAlert } from '../support/alerts.ts'
 import { makePerson } from '../support/factories.ts'
 import { startTestMailServer } from '../support/mailCatcher.ts'
@@ -63,6 +64,8 @@ async function raisedInSteps() {
 
 const tokenTo = (person: Person): string =>
   /receipt\/([\w.-]+)/.exec(server.caught.find(({ to }) => to === person.email)?.mail.text ?? '')?.[1] ?? ''
+
+const confirm = (person: Person) => confirmReceipt(parts, tokenTo(person))
 
 describe('without a receipt', () => {
   test('people are reminded at the stored times, and the next step tells those who were not told yet', async () => {
@@ -124,12 +127,23 @@ describe('without a receipt', () => {
   })
 })
 
-describe('a confirmed receipt', () => {
-  const confirm = async (person: Person) => {
-    const { confirmReceipt } = await import('../../server/services/receipts.ts')
-    await confirmReceipt(parts, tokenTo(person))
-  }
+describe('in a flood', () => {
+  test('one e-mail reminds of all that a person has not confirmed, and of none confirmed meanwhile', async () => {
+    const pilot = await makeRecipient()
+    const steps = [{ afterSeconds: 0, listIds: [await makeList(parts, 'Pilots', [pilot.id])] }]
+    for (let n = 0; n < 24; n += 1) {
+      await raiseAlert(parts, await makeLimit(parts, { steps, remindEverySeconds: 480 }), { title: `Limit ${n}` })
+    }
+    await pass(0)
+    expect(subjects(pilot)).toHaveLength(11)
+    await confirm(pilot)
+    await pass(480)
+    const reminders = subjects(pilot).slice(11)
+    expect(reminders).toEqual(['23 more alerts without your receipt, first high'])
+  })
+})
 
+describe('a confirmed receipt', () => {
   test('stops the reminders of that person, not of the other one in the step, and the steps to come', async () => {
     const { pilot, mate, office, alert } = await raisedInSteps()
     await pass(0)

@@ -10,12 +10,16 @@ import {
   ListMember,
   Message,
 } from '../../server/models/index.ts'
-import type { TestParts } from './parts.ts'
+import type { Clock } from '../../server/config/clock.ts'
+
+interface WithClock {
+  clock: Clock
+}
 
 const everyPriority: Priority[] = ['low', 'medium', 'high', 'urgent']
 
 export async function makeList(
-  { clock }: Pick<TestParts, 'clock'>,
+  { clock }: WithClock,
   name: string,
   members: (number | { personId: number; hours?: TimeSpan['hours']; priorities?: Priority[] })[],
   isSafety = false,
@@ -46,7 +50,7 @@ const condition: Condition = {
   latches: false,
 }
 
-export async function makeLimit({ clock }: Pick<TestParts, 'clock'>, wanted: LimitWanted): Promise<LimitVersion> {
+export async function makeLimit({ clock }: WithClock, wanted: LimitWanted): Promise<LimitVersion> {
   const now = clock.now()
   const limit = await Limit.create({
     subjectKind: 'station',
@@ -73,7 +77,7 @@ export async function makeLimit({ clock }: Pick<TestParts, 'clock'>, wanted: Lim
 
 /** With its first message and the stored times of its steps, as the transaction that raises it leaves them. */
 export async function raiseAlert(
-  { clock }: Pick<TestParts, 'clock'>,
+  { clock }: WithClock,
   version: LimitVersion,
   { isExercise = false, title = null as string | null } = {},
 ): Promise<Alert> {
@@ -110,7 +114,7 @@ export async function raiseAlert(
 }
 
 export async function tell(
-  { clock }: Pick<TestParts, 'clock'>,
+  { clock }: WithClock,
   alert: Alert,
   kind: 'alert' | 'allClear',
   title: string | null = null,

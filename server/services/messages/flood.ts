@@ -36,7 +36,7 @@ export async function holdInFlood(
             MAX(IF(m.kind = 'flood', d.createdAt, NULL)) AS newestRoot
      FROM deliveries d JOIN messages m ON m.id = d.messageId
      WHERE d.personId IN (:people) AND d.createdAt > :since AND d.state <> 'merged' AND m.isExercise = 0
-       AND m.kind IN ('alert', 'escalation', 'allClear', 'flood')
+       AND m.kind IN ('alert', 'escalation', 'reminder', 'allClear', 'flood')
      GROUP BY d.personId`,
     { people: recipients.map(({ personId }) => personId), since: new Date(now - floodMs) },
     transaction,
@@ -61,6 +61,13 @@ interface Held {
 export async function mergeFlood(parts: Parts): Promise<number[]> {
   const now = parts.clock.now()
   const roots = await inTransaction(parts.sequelize, async (transaction) => {
+    // Who has confirmed meanwhile need not be told again.
+    await execute(
+      parts.sequelize,
+      "UPDATE deliveries SET nextAttemptAt = NULL WHERE state = 'merged' AND nextAttemptAt IS NOT NULL AND receivedAt IS NOT NULL",
+      {},
+      transaction,
+    )
     const held = await select<Held>(
       parts.sequelize,
       `SELECT id, messageId, personId, address FROM deliveries
@@ -106,6 +113,15 @@ async function writeRoot(parts: Parts, group: Held[], transaction: Transaction):
 }
 
 const isCleared = ({ kind }: Message): boolean => kind === 'allClear'
+const isReminder = ({ kind }: Message): boolean => kind === 'reminder'
+const mark = (message: Message): string => (isCleared(message) ? 'Cleared, ' : isReminder(message) ? 'Reminder, ' : '')
+
+/** `30 more alerts in a short time`; of reminders alone, what they remind of. */
+function countOf(messages: Message[]): string {
+  const alerts = messages.length === 1 ? '1 more alert' : `${messages.length} more alerts`
+  return messages.every(isReminder) ? `${alerts} without your receipt` : `${alerts} in a short time`
+}
+
 const rank = (message: Message): number =>
   (isCleared(message) ? -10 : 0) + priority.options.indexOf(message.content?.priority ?? 'low')
 
@@ -114,10 +130,10 @@ function tellAll(messages: Message[]): { subject: string; text: string; content:
   const sorted = [...messages].sort((a, b) => rank(b) - rank(a) || b.id - a.id)
   const contents = sorted.flatMap((message) => (message.content ? [{ message, content: message.content }] : []))
   const lines = contents.map(({ message, content }) => ({
-    line: `${isCleared(message) ? 'Cleared, ' : ''}${content.priorityWords.split(',')[0]}: ${content.title} ${content.value}. ${content.when}`,
+    line: `${mark(message)}${content.priorityWords.split(',')[0]}: ${content.title} ${content.value}. ${content.when}`,
     path: content.path,
   }))
-  const count = `${sorted.length} more ${sorted.length === 1 ? 'alert' : 'alerts'} in a short time`
+  const count = countOf(sorted)
   const first = contents.at(0)
   const unlisted = lines.length - mostLines
   const text = [
@@ -128,9 +144,9 @@ function tellAll(messages: Message[]): { subject: string; text: string; content:
     '',
     first?.content.caution ?? '',
   ].join('\n')
-  const marks = first?.content.isDemonstration ? 'DEMONSTRATION ' : ''
+  const marked = first?.content.isDemonstration ? 'DEMONSTRATION ' : ''
   return {
-    subject: `${marks}${count}${first ? `, first ${first.content.priority}: ${first.content.title}` : ''}`,
+    subject: `${marked}${count}${first ? `, first ${first.content.priority}: ${first.content.title}` : ''}`,
     text,
     content: first ? { ...first.content, others: lines.slice(1, mostLines) } : null,
   }

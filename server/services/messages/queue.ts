@@ -40,9 +40,7 @@ async function queueNext(parts: Parts, timeZone: string, transaction: Transactio
     ? await chosenFor(parts, message, alert, timeZone, transaction)
     : nobody
   const held =
-    alert && !message.isExercise && message.kind !== 'reminder'
-      ? await holdInFlood(parts, recipients, alert.priority, transaction)
-      : recipients
+    alert && !message.isExercise ? await holdInFlood(parts, recipients, alert.priority, transaction) : recipients
   await addDeliveries(parts, message.id, held, transaction)
   await message.update({ queuedAt: parts.clock.now() }, { transaction })
   if (alert) await tell(parts, message, alert, { count: recipients.length, unreached, isNobody }, transaction)
