@@ -200,6 +200,10 @@ export async function writeLetter(letter: Letter, around: Surroundings): Promise
       : []),
     ...(page.chart && chartSvg ? [{ cid: page.chart.cid, name: 'history.png', svg: chartSvg }] : []),
   ]
-  const pictures = await Promise.all(drawings.map(async ({ cid, name, svg }) => ({ cid, name, png: await pngOf(svg) })))
+  // One that cannot be made is left out: its alternative text says the same.
+  const made = await Promise.allSettled(
+    drawings.map(async ({ cid, name, svg }) => ({ cid, name, png: await pngOf(svg) })),
+  )
+  const pictures = made.flatMap((one) => (one.status === 'fulfilled' ? [one.value] : []))
   return { subject: page.subject, text: textOf(letter, page), html: renderPage(page), pictures }
 }

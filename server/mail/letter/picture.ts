@@ -14,6 +14,7 @@ export function pngOf(svg: string): Promise<Buffer> {
   const known = drawn.get(svg)
   if (known) return known
   const png = draw(svg)
+  png.catch(() => drawn.delete(svg))
   drawn.set(svg, png)
   const [oldest] = drawn.keys()
   if (drawn.size > mostKept && oldest !== undefined) drawn.delete(oldest)
