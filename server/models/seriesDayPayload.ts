@@ -15,11 +15,14 @@ export function packDay({ values, flags }: DayValues): Buffer {
   return deflateRawSync(bytes)
 }
 
+/** Most machines keep numbers as they are packed, lowest byte first: then a copy of the bytes is the values. */
+const isPackedAsKept = new Uint8Array(Uint16Array.of(1).buffer)[0] === 1
+
 export function unpackDay(payload: Buffer): DayValues {
   const bytes = inflateRawSync(payload)
   const length = bytes.length / 5
-  return {
-    values: Float32Array.from({ length }, (_, n) => bytes.readFloatLE(n * 4)),
-    flags: Uint8Array.from(bytes.subarray(length * 4)),
-  }
+  const values = new Float32Array(length)
+  if (isPackedAsKept) new Uint8Array(values.buffer).set(bytes.subarray(0, length * 4))
+  else for (let n = 0; n < length; n += 1) values[n] = bytes.readFloatLE(n * 4)
+  return { values, flags: Uint8Array.from(bytes.subarray(length * 4)) }
 }

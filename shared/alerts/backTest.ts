@@ -79,55 +79,69 @@ export interface BackTest {
   judgedMs: number
 }
 
+/** Looks at one stretch at a time, so that its series are looked up once. */
 interface Judge {
-  ask(stretch: Stretch, slot: number): Verdict
+  turnTo(stretch: Stretch): void
+  ask(slot: number): Verdict
   /** What it compared last. */
   compared: number
-}
-
-const heights = /Height$/
-
-/** Relative error of a quantity from the total height's, as the live reading has it. */
-function sdOf(key: QuantityKey, value: number, stretch: Stretch, slot: number): number {
-  const total = stretch.series.significantWaveHeight?.[slot] ?? NaN
-  const relative = (stretch.series.significantWaveHeightSd?.[slot] ?? NaN) / total
-  if (key === 'energyFlux') return 2 * relative * value
-  return heights.test(key) && key !== 'surgeHeight' ? relative * value : NaN
 }
 
 /** The value of an earlier window, looked up by time in the stretches that were passed. */
 type Earlier = (figure: StoredFigure, at: number) => number
 
+/** How many times the relative error of the total height a quantity has, as the live reading has it; 0: not known. */
+function relativeErrors(key: QuantityKey): number {
+  if (key === 'energyFlux') return 2
+  return key === 'significantWaveHeight' || isOfSystem(key) ? 1 : 0
+}
+
+const isOfSystem = (key: QuantityKey): boolean => /^(leading|swell|windSea)Height$/.test(key)
+const empty: Float32Array = new Float32Array()
+const valueIn = (series: Float32Array, slot: number): number => (slot < series.length ? series[slot] : NaN)
+
 function judgeOf(comparison: Comparison, condition: Condition, earlier: Earlier): Judge {
   const key = comparison.quantity
   const figure = storedFigureOf(key)
-  const { isCircular } = quantityOf(key)
-  const isOfSystem = /^(leading|swell|windSea)Height$/.test(key)
   const other = otherOf[key]
-  if (!figure) return { ask: () => 'unknown', compared: NaN }
+  const { isCircular } = quantityOf(key)
+  const errors = relativeErrors(key)
+  const hasBound = isOfSystem(key)
   const rise = comparison.kind === 'above' ? comparison.riseOverSeconds : null
-  const judge: Judge = { ask, compared: NaN }
-  return judge
+  let stretch: Stretch | null = null
+  let values: Float32Array = empty
+  let others: Float32Array = empty
+  let totals: Float32Array = empty
+  let totalSds: Float32Array = empty
 
-  function ask(stretch: Stretch, slot: number): Verdict {
-    if (!figure) return 'unknown'
-    let value = stretch.series[figure]?.[slot] ?? NaN
-    let sd = Number.isNaN(value) ? NaN : sdOf(key, value, stretch, slot)
-    let atMost = NaN
+  function ask(slot: number): Verdict {
+    let value = valueIn(values, slot)
     if (isCircular) value = opposite(value)
-    if (rise !== null) {
-      const at = stretch.startsAt + slot * stretch.stepMs
-      const before = earlier(figure, at - rise * 1000)
-      sd = Math.hypot(sd, sdOf(key, before, stretch, slot))
+    const total = valueIn(totals, slot)
+    const totalSd = valueIn(totalSds, slot)
+    let sd = errors === 0 ? NaN : (errors * value * totalSd) / total
+    let atMost = NaN
+    if (rise !== null && figure && stretch) {
+      const before = earlier(figure, stretch.startsAt + slot * stretch.stepMs - rise * 1000)
+      if (errors !== 0) sd = Math.hypot(sd, (errors * before * totalSd) / total)
       value -= before
-    } else if (isOfSystem && Number.isNaN(value)) {
-      const total = stretch.series.significantWaveHeight?.[slot] ?? NaN
-      atMost = heightLeft(total, other ? (stretch.series[other]?.[slot] ?? NaN) : NaN)
-      sd = stretch.series.significantWaveHeightSd?.[slot] ?? NaN
+    } else if (hasBound && Number.isNaN(value)) {
+      atMost = heightLeft(total, valueIn(others, slot))
+      sd = totalSd
     }
     judge.compared = value
     return judgeComparison(comparison, value, sd, atMost, condition.clearSigmas)
   }
+  function turnTo(next: Stretch): void {
+    const { series } = next
+    stretch = next
+    values = (figure && series[figure]) ?? empty
+    others = (other && series[other]) ?? empty
+    totals = series.significantWaveHeight ?? empty
+    totalSds = series.significantWaveHeightSd ?? empty
+  }
+  const judge: Judge = { ask, turnTo, compared: NaN }
+  return judge
 }
 
 function createEarlier(stretches: Stretch[]): Earlier {
@@ -156,24 +170,30 @@ export function backTest(condition: Condition, stretches: Stretch[], from: numbe
   let open: Episode | null = null
   let judgedMs = 0
   let track: Track = atRest
+  let isOwn = false
   for (const stretch of stretches) {
     const { startsAt, stepMs, flags } = stretch
+    for (const judge of judges) judge.turnTo(stretch)
     for (let slot = 0; slot < flags.length; slot += 1) {
       const at = startsAt + slot * stepMs
       if (at < from || !isUsable(flags[slot]) || flags[slot] > worst) continue
       let verdict: Verdict = 'raise'
-      for (const judge of judges) verdict = joinVerdicts(verdict, judge.ask(stretch, slot))
+      // One that is clear clears them all.
+      for (let n = 0; n < judges.length && verdict !== 'clear'; n += 1) {
+        verdict = joinVerdicts(verdict, judges[n].ask(slot))
+      }
       if (!isIn(at)) verdict = 'clear'
       if (verdict === 'unknown') continue
       judgedMs += stepMs
-      const isIdle = !track.isActive && verdict !== 'raise' && track.pendingSince === null
-      if (isIdle) {
-        // Nothing but the newest moment changes, so that a calm year makes no objects.
-        if (track.lastKnownAt === null || track === atRest) track = { ...atRest }
+      if (verdict !== (track.isActive ? 'clear' : 'raise') && track.pendingSince === null) {
+        // Nothing but the newest moment changes, so that a quiet year makes no objects.
+        if (!isOwn) track = { ...track }
+        isOwn = true
         track.lastKnownAt = at
-        continue
+      } else {
+        track = follow(track, verdict, at, condition)
+        isOwn = false
       }
-      track = { ...follow(track, verdict, at, condition) }
       if (track.isActive && !open) {
         open = { raisedAt: at, clearedAt: null, extreme: null, extremeAt: at }
         episodes.push(open)
