@@ -1,5 +1,6 @@
 /** The sea model of trains about known peaks: what is expected before the record is seen, and where the fit starts. */
 import type { BandMatrices } from './bandMatrices.ts'
+import { groupSpeed } from './dispersion.ts'
 import type { PeakFit } from './jonswap.ts'
 import { jonswapShape } from './jonswap.ts'
 import type { SeaModel } from './seaModel.ts'
@@ -43,19 +44,39 @@ export function seaModel(
     })
     densityPrior = { mean, sd: 1 }
   }
-  return { bands: withModelError(bands), x, y, systems, gravity, faults: [], priors, densityPrior }
+  return {
+    bands: withModelError(bands, x, y, depth, gravity),
+    x,
+    y,
+    systems,
+    gravity,
+    faults: [],
+    priors,
+    densityPrior,
+  }
 }
 
 /**
- * What no model of the sea explains of a group's own energy: the width of a group alone costs 0.3 % of coherence (see arraySpectra).
- * Without this floor a record with little noise trusts its quietest frequencies without bound, and they turn the heading.
+ * What no model of the sea explains of a group's own energy: the turn φ of phase across a group's width over the array costs φ²/24 of
+ * coherence, and a thousandth is granted for sensors that are not quite alike. Without this floor a record with little
+ * noise trusts its quietest frequencies without bound, and they turn the heading.
  */
-const modelError = 0.004
+const usualModelError = 0.001
 
-function withModelError(bands: BandMatrices): BandMatrices {
+function withModelError(
+  bands: BandMatrices,
+  x: Float64Array,
+  y: Float64Array,
+  depth: number,
+  gravity: number,
+): BandMatrices {
   const m = bands.sensors
-  const noise = bands.noise.map((own, n) => own + modelError * bands.density[Math.floor(n / m)])
-  return { ...bands, noise }
+  const aperture = 2 * Math.max(...Array.from(x, (xi, i) => Math.hypot(xi, y[i])))
+  const floor = Array.from(bands.frequency, (f, g) => {
+    const turn = (2 * Math.PI * bands.width[g] * aperture) / groupSpeed(1 / f, depth, gravity)
+    return bands.density[g] * (usualModelError + (turn * turn) / 24)
+  })
+  return { ...bands, noise: bands.noise.map((own, n) => own + floor[Math.floor(n / m)]) }
 }
 
 export function startDensity(model: SeaModel): Float64Array {
