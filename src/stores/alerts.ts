@@ -38,6 +38,14 @@ export const useAlerts = defineStore('alerts', () => {
   })
   const counts = computed(() => tally(rows.value))
   const activeRows = computed(() => rows.value.filter((row) => isActive(row.state)))
+  /** A limit on waves is exceeded, acknowledged, shelved or put aside; exercises are not the sea. */
+  const isWaveExceeded = computed(() =>
+    rows.value.some(({ alert, limit }) =>
+      alert
+        ? alert.limitClass === 'wave' && !alert.isExercise && alert.clearedAt === null
+        : limit?.limitClass === 'wave' && limit.isActive,
+    ),
+  )
   const judged = computed(() => board.value?.judged ?? 0)
   const notJudged = computed(() => board.value?.notJudged ?? [])
   const flood = computed(() => board.value?.flood ?? null)
@@ -179,7 +187,7 @@ export const useAlerts = defineStore('alerts', () => {
   )
 
   return {
-    ...{ loaded, isUnread, rows, activeRows, counts, judged, notJudged, flood, messagesNotOut },
+    ...{ loaded, isUnread, rows, activeRows, counts, isWaveExceeded, judged, notJudged, flood, messagesNotOut },
     ...{ byId, detail, history, apply, watchAll, leave, openAlert, closeAlert, readPast: api.readPast },
     ...{ acknowledge, shelve, beginDrill, endDrill, mayAcknowledge, mayShelve },
     ...{ unshelve: onLimit(api.unshelve), reset: onLimit(api.reset), takeOut: onLimit(api.takeOut) },
