@@ -7,6 +7,7 @@ import { parseArgs } from 'node:util'
 import type { FaultReport } from '../../server/setup/testReports.ts'
 import { databaseAbsentAtStart, databaseFrozen, serverAskedToEnd } from './cuts.ts'
 import { carryOut, planKills } from './kills.ts'
+import { killsBetweenAlertAndEmail } from './mailKills.ts'
 import { setScene } from './scene.ts'
 import type { Scene } from './scene.ts'
 
@@ -63,6 +64,10 @@ async function main(): Promise<void> {
     } finally {
       await scene.stop()
     }
+  }
+  if (!values.short) {
+    console.log('\nkills between alert and e-mail')
+    checks.push(...(await killsBetweenAlertAndEmail(seed, say)))
   }
   for (const { name, passed, detail } of checks)
     console.log(passed ? `  passed  ${name}` : `  FAILED  ${name}: ${detail}`)

@@ -21,6 +21,8 @@ export interface TestMailServer {
   answers: Map<string, [code: number, words: string][]>
   /** So many e-mails are taken whole and then the connection is cut before the answer. */
   dropAfterData: number
+  /** Milliseconds between having the whole e-mail and saying so. */
+  slowness: number
   subjectsTo(address: string): string[]
   stop(): Promise<void>
 }
@@ -41,7 +43,7 @@ export async function startTestMailServer(port = 0, host = '127.0.0.1'): Promise
       simpleParser(stream).then(
         (mail) => {
           for (const { address } of session.envelope.rcptTo) catcher.caught.push({ to: address, mail })
-          if (catcher.dropAfterData === 0) return done()
+          if (catcher.dropAfterData === 0) return void setTimeout(done, catcher.slowness)
           catcher.dropAfterData -= 1
           for (const socket of sockets.values()) socket.destroy()
         },
@@ -64,6 +66,7 @@ export async function startTestMailServer(port = 0, host = '127.0.0.1'): Promise
     asked: [],
     answers: new Map(),
     dropAfterData: 0,
+    slowness: 0,
     subjectsTo: (to) => catcher.caught.filter((one) => one.to === to).map(({ mail }) => mail.subject ?? ''),
     stop: () => new Promise((resolve) => server.close(() => resolve())),
   }
