@@ -1,6 +1,7 @@
 /** The answer before anything is known of the waves, and the answer that says why nothing is. */
 import type { EstimateResult, UnresolvedReason } from '../schemas/estimate.ts'
 import type { PreparedArray } from './preparedArray.ts'
+import { surgeHeight } from './surge.ts'
 import type { ArrayWindow } from './window.ts'
 
 export function blankResult(window: ArrayWindow, prepared: PreparedArray): EstimateResult {
@@ -14,7 +15,7 @@ export function blankResult(window: ArrayWindow, prepared: PreparedArray): Estim
     meanPeriod: null,
     energyPeriod: null,
     energyFlux: null,
-    surgeHeight: null,
+    surgeHeight: window.surge ? surgeHeight(window.surge.level, window.surge.sampleRate) : null,
     waterDepth: window.waterDepth,
     waterDepthSource: window.waterDepthSource,
     completeness: prepared.sensors.reduce((sum, s) => sum + s.completeness, 0) / Math.max(1, prepared.sensors.length),
