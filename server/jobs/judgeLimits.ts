@@ -6,7 +6,7 @@ import { statfs } from 'node:fs/promises'
 import { schedule } from 'node-cron'
 import type { Parts, RunningPart } from '../config/parts.ts'
 import { officeOf } from '../presenters/office.ts'
-import { judgeHealth, judgeStation, keepTimers, noteLateWindows } from '../services/alerts.ts'
+import { judgeHealth, judgeStation, keepTimers, logFlood, noteLateWindows } from '../services/alerts.ts'
 import { linkOf } from '../services/readings.ts'
 import { listStations } from '../services/stations.ts'
 
@@ -56,6 +56,7 @@ export function startJudgeLimits(parts: Parts, { isUnscheduled = false } = {}): 
     }
     const clockOffsetOf = (stationId: number) => linkOf(stationId).clockOffsetSeconds
     await guarded('data health', () => judgeHealth(parts, office, { clockOffsetOf, diskFree }))
+    await guarded('flood', () => logFlood(parts))
   }
 
   async function drain(): Promise<void> {

@@ -1,5 +1,5 @@
-import { describe, expect, it } from 'vitest'
-import { Alert, Audit, Escalation, LimitState, LogEntry, Station } from '../../server/models/index.ts'
+import { describe, expect, it, vi } from 'vitest'
+import { Alert, Audit, Escalation, LogEntry, Message, Station } from '../../server/models/index.ts'
 import { judgeStation } from '../../server/services/alerts.ts'
 import { officeOf } from '../../server/presenters/office.ts'
 import { at, judgedStation, plainCondition } from '../support/judgedStation.ts'
@@ -71,6 +71,21 @@ describe('a wave limit', () => {
     await held.judge()
     const [alert] = await held.alerts(limitId)
     expect(alert).toMatchObject({ crossedAt: at(0), raisedAt: at(10), windowEndsAt: at(12) })
+    expect(await held.messages(alert?.id ?? 0)).toEqual(['alert'])
+  })
+
+  it('whose judgement breaks off in the middle leaves nothing half done, and is judged again', async () => {
+    const limitId = await held.setLimit({ condition: { ...plainCondition, onDelaySeconds: 0 } })
+    const broken = vi.spyOn(Message, 'create').mockRejectedValueOnce(new Error('the server stopped'))
+    await held.sea(0, 0, { height: 2.8 })
+    expect(broken).toHaveBeenCalledTimes(1)
+    broken.mockRestore()
+    expect(await held.alerts(limitId)).toEqual([])
+    expect(await held.state(limitId)).toMatchObject({ state: 'normal', isActive: false, lastWindowEndsAt: null })
+    await held.restart()
+    await held.judge()
+    const [alert] = await held.alerts(limitId)
+    expect(await held.events(alert?.id ?? 0)).toEqual(['raised'])
     expect(await held.messages(alert?.id ?? 0)).toEqual(['alert'])
   })
 
@@ -224,77 +239,5 @@ describe('a limit put aside', () => {
     await held.desk.post(`/api/limits/${limitId}/returnToService`).send({ reason: 'Surveyed' }).expect(200)
     expect((await held.state(limitId)).state).toBe('unacknowledgedActive')
     expect(await held.messages(alert?.id ?? 0)).toEqual(['alert'])
-  })
-})
-
-describe('a change of a limit', () => {
-  it('needs the version it was made from: 428 without, 412 with the one that holds now', async () => {
-    const limitId = await held.setLimit()
-    const change = { content: held.contentOf({ note: 'Port order 5' }), reason: 'New order' }
-    await held.desk.put(`/api/limits/${limitId}`).send(change).expect(428)
-    const { body } = await held.desk.put(`/api/limits/${limitId}`).set('If-Match', '"1"').send(change).expect(200)
-    expect(body).toMatchObject({ version: 2, current: { number: 2, author: { name: 'Duty officer A' } } })
-    const late = await held.otherDesk.put(`/api/limits/${limitId}`).set('If-Match', '"1"').send(change).expect(412)
-    expect(late.body.current).toMatchObject({ version: 2, current: { content: { note: 'Port order 5' } } })
-    const history = (await held.desk.get(`/api/limits/${limitId}`).expect(200)).body
-    expect(history.versions.map(({ number }: { number: number }) => number)).toEqual([2, 1])
-  })
-
-  it('that makes it urgent needs a second person, or a written reason of who is alone', async () => {
-    const limitId = await held.setLimit()
-    const urgent = { content: held.contentOf({ priority: 'urgent' }), reason: 'Worse than thought' }
-    const put = (body: object) => held.desk.put(`/api/limits/${limitId}`).set('If-Match', '"1"').send(body)
-    await put(urgent).expect(422)
-    await put({ ...urgent, consentById: held.officer.id }).expect(422)
-    await put({ ...urgent, consentById: held.otherOfficer.id }).expect(200)
-  })
-
-  it.each([
-    ['a bearing above a value', { kind: 'above', quantity: 'swellFrom', raise: 10, clear: 5, riseOverSeconds: null }],
-    [
-      'clear above raise',
-      { kind: 'above', quantity: 'significantWaveHeight', raise: 1, clear: 2, riseOverSeconds: null },
-    ],
-    [
-      'a height out of range',
-      { kind: 'above', quantity: 'significantWaveHeight', raise: 99, clear: 1, riseOverSeconds: null },
-    ],
-    ['the disk of a station', { kind: 'below', quantity: 'diskFree', raise: 0.1, clear: 0.2 }],
-  ])('to %s is refused', async (_, comparison) => {
-    const content = { ...held.contentOf(), condition: { ...plainCondition, comparisons: [comparison] } }
-    await held.desk
-      .post('/api/limits')
-      .send({ ...held.draftOf(), content })
-      .expect(422)
-  })
-
-  it('that retires it closes its open alert and keeps both', async () => {
-    const limitId = await held.setLimit()
-    await held.sea(0, 10, { height: 2.8 })
-    const retire = held.desk.delete(`/api/limits/${limitId}`).set('If-Match', '"1"').send({ reason: 'Berth closed' })
-    expect((await retire.expect(200)).body.retiredAt).not.toBeNull()
-    expect((await held.alerts(limitId))[0]).toMatchObject({ state: 'normal' })
-    expect(await LimitState.count({ where: { limitId } })).toBe(1)
-  })
-})
-
-describe('a drill', () => {
-  it('raises an exercise beside the real one, is acknowledged and ended, and counts in no measure', async () => {
-    const limitId = await held.setLimit()
-    const countHigh = async () => {
-      const { body } = await held.desk.get('/api/alerts/performance?days=1').expect(200)
-      return body.byPriority.find(({ priority }: { priority: string }) => priority === 'high').count
-    }
-    held.parts.clock.set(at(1))
-    const before = await countHigh()
-    const order = { limitId, value: 3.4, note: 'Monthly drill' }
-    const { body } = await held.desk.post('/api/drills').send(order).expect(201)
-    expect(body).toMatchObject({ isExercise: true, state: 'unacknowledgedActive', value: 3.4 })
-    await held.desk.post('/api/drills').send(order).expect(409)
-    await held.sea(0, 10, { height: 2.8 })
-    expect((await held.alerts(limitId)).map(({ isExercise }) => Boolean(isExercise))).toEqual([true, false])
-    await held.desk.post(`/api/alerts/${body.id}/acknowledge`).send({}).expect(200)
-    await held.desk.post(`/api/drills/${body.id}/end`).send({}).expect(200)
-    expect(await countHigh()).toBe(before + 1)
   })
 })

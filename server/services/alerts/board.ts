@@ -1,43 +1,24 @@
 /** The list of alerts: what is open in the order in which it is shown, what is put aside, and what was judged at all. */
-import { Op } from 'sequelize'
-import { byUrgency, floodSince } from '../../../shared/alerts/order.ts'
+import { byUrgency } from '../../../shared/alerts/order.ts'
 import { isAside } from '../../../shared/alerts/transition.ts'
 import type { AlertBoard, AlertView } from '../../../shared/schemas/alert.ts'
-import type { LimitView } from '../../../shared/schemas/limit.ts'
+import type { LimitView, NotJudgedReason } from '../../../shared/schemas/limit.ts'
 import type { Parts } from '../../config/parts.ts'
 import { Alert, Limit } from '../../models/index.ts'
 import { select } from '../../models/sql.ts'
 import { presentLimits } from '../limits/present.ts'
+import { currentFlood } from './floodLine.ts'
 import { presentAlerts } from './present.ts'
 
 const hourMs = 3_600_000
 
 /** In words: the number of limits judged is never said without those that were not. */
-const reasons: Record<string, string> = {
+const reasons: Record<NotJudgedReason, string> = {
   stale: 'its figures are stale',
   failed: 'its newest figures failed',
   noValue: 'the quantity cannot be told',
   outOfService: 'out of service',
   neverYet: 'never judged yet',
-}
-
-interface StationAge {
-  id: number
-  staleAfterSeconds: number
-}
-
-/** Wave limits are judged on windows: where these stopped, they are not judged. */
-async function staleLimits({ sequelize, clock }: Parts, limits: LimitView[]): Promise<Set<number>> {
-  const stations = await select<StationAge>(sequelize, 'SELECT id, staleAfterSeconds FROM stations')
-  const now = clock.now().getTime()
-  return new Set(
-    limits
-      .filter(({ limitClass, subject, lastJudgedAt }) => {
-        const stale = stations.find(({ id }) => id === subject.id)?.staleAfterSeconds ?? Infinity
-        return limitClass === 'wave' && lastJudgedAt !== null && now - Date.parse(lastJudgedAt) > stale * 1000
-      })
-      .map(({ id }) => id),
-  )
 }
 
 function countsOf(alerts: AlertView[], limits: LimitView[]): AlertBoard['counts'] {
@@ -57,17 +38,8 @@ function countsOf(alerts: AlertView[], limits: LimitView[]): AlertBoard['counts'
 }
 
 async function floodOf(parts: Parts, alerts: AlertView[]): Promise<AlertBoard['flood']> {
-  const now = parts.clock.now().getTime()
-  const rows = await Alert.findAll({
-    where: { isExercise: false, announcedAt: { [Op.gt]: new Date(now - hourMs) } },
-    attributes: ['announcedAt'],
-    order: [['announcedAt', 'ASC']],
-  })
-  const since = floodSince(
-    rows.flatMap(({ announcedAt }) => (announcedAt ? [announcedAt.getTime()] : [])),
-    now,
-  )
-  if (since === null) return null
+  const flood = await currentFlood(parts)
+  if (!flood) return null
   const causes = new Map<string, NonNullable<AlertBoard['flood']>['causes'][number]>()
   for (const { id, subject, isExercise } of alerts) {
     if (isExercise) continue
@@ -75,7 +47,7 @@ async function floodOf(parts: Parts, alerts: AlertView[]): Promise<AlertBoard['f
     causes.set(`${subject.kind}/${subject.id}`, { ...cause, count: cause.count + 1, alertIds: [...cause.alertIds, id] })
   }
   const grouped = [...causes.values()].sort((a, b) => b.count - a.count)
-  return { since: new Date(since).toISOString(), count: rows.length, causes: grouped }
+  return { since: new Date(flood.since).toISOString(), count: flood.count, causes: grouped }
 }
 
 async function messagesNotOut({ sequelize, clock }: Parts): Promise<AlertBoard['messagesNotOut']> {
@@ -95,11 +67,9 @@ export async function readBoard(parts: Parts): Promise<AlertBoard> {
     Limit.findAll({ where: { retiredAt: null }, order: [['id', 'ASC']] }).then((rows) => presentLimits(parts, rows)),
     messagesNotOut(parts),
   ])
-  const stale = await staleLimits(parts, limits)
-  const notJudged = limits.flatMap(({ id, title, notJudged: because }) => {
-    const reason = because === null && stale.has(id) ? 'stale' : because
-    return reason === null ? [] : [{ limitId: id, title, reason: reasons[reason] ?? reason }]
-  })
+  const notJudged = limits.flatMap(({ id, title, notJudged: reason }) =>
+    reason === null ? [] : [{ limitId: id, title, reason: reasons[reason] }],
+  )
   const aside = limits.filter(({ state, openAlertId }) => isAside(state) && openAlertId === null)
   return {
     serverTime: parts.clock.now().toISOString(),

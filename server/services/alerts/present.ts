@@ -52,7 +52,7 @@ export async function presentAlerts(parts: Pick<Parts, 'sequelize' | 'clock'>, a
       alerts.map(({ id }) => id),
     ),
   ])
-  const subjectOf = await subjectsOf(limits)
+  const subjects = await subjectsOf(limits)
   const nameOf = await namesOf([
     ...alerts.map(({ acknowledgedById }) => acknowledgedById),
     ...[...shelves.values()].flatMap(({ personId, secondPersonId }) => [personId, secondPersonId]),
@@ -64,9 +64,10 @@ export async function presentAlerts(parts: Pick<Parts, 'sequelize' | 'clock'>, a
     if (!limit || !version) return []
     const judged = condition.parse(fromJson(version.condition))
     const { unit, toUnit, decimals, key } = quantityOf(judged.comparisons[0].quantity)
-    const subject = subjectOf(limit)
+    const subject = subjects.viewOf(limit)
     const shelf = shelves.get(limit.id)
     const isOpen = alert.closedAt === null
+    const isHeld = (state?.notJudged ?? null) !== null || subjects.isStale(limit, state, parts.clock.now())
     const view: AlertView = {
       ...{ id: alert.id, version: alert.version, isExercise: Boolean(alert.isExercise), limitId: limit.id },
       limitVersionNumber: version.number,
@@ -91,7 +92,7 @@ export async function presentAlerts(parts: Pick<Parts, 'sequelize' | 'clock'>, a
       closedAt: iso(alert.closedAt),
       shelf: isOpen && !alert.isExercise && shelf ? presentShelf(shelf, nameOf) : null,
       outOfServiceSince: isOpen ? iso(limit.outOfServiceAt) : null,
-      isHeld: isOpen && !alert.isExercise && state?.notJudged !== null && state?.notJudged !== undefined,
+      isHeld: isOpen && !alert.isExercise && isHeld,
       deliveries: counts.get(alert.id) ?? none,
     }
     return [view]

@@ -25,22 +25,36 @@ export async function namesOf(personIds: (number | null)[]): Promise<NameOf> {
   return (personId) => (personId === null ? null : (byId.get(personId) ?? null))
 }
 
-export type SubjectOf = (limit: Pick<Limit, 'subjectKind' | 'subjectId'>) => SubjectView
+export interface Subjects {
+  viewOf(limit: Pick<Limit, 'subjectKind' | 'subjectId'>): SubjectView
+  /** Wave limits are judged on windows: where these stopped for the station's stale limit, they are not judged. */
+  isStale(
+    limit: Pick<Limit, 'subjectKind' | 'subjectId' | 'limitClass'>,
+    state: LimitState | undefined,
+    now: Date,
+  ): boolean
+}
 
-export async function subjectsOf(limits: Pick<Limit, 'subjectKind' | 'subjectId'>[]): Promise<SubjectOf> {
+export async function subjectsOf(limits: Pick<Limit, 'subjectKind' | 'subjectId'>[]): Promise<Subjects> {
   const ids = limits.flatMap(({ subjectKind, subjectId }) =>
     subjectKind === 'station' && subjectId ? [subjectId] : [],
   )
   const stations = ids.length === 0 ? [] : await Station.findAll({ where: { id: [...new Set(ids)] } })
-  return ({ subjectKind: kind, subjectId: id }) => {
-    const station = kind === 'station' ? stations.find((one) => one.id === id) : undefined
-    if (station) return { kind, id, name: station.name, code: station.code }
-    return {
-      kind,
-      id,
-      name: kind === 'system' ? 'Offing itself' : `${kind} ${id}`,
-      code: kind === 'system' ? 'SYSTEM' : '',
-    }
+  const stationOf = ({ subjectKind, subjectId }: Pick<Limit, 'subjectKind' | 'subjectId'>) =>
+    subjectKind === 'station' ? stations.find(({ id }) => id === subjectId) : undefined
+  return {
+    viewOf(limit) {
+      const { subjectKind: kind, subjectId: id } = limit
+      const station = stationOf(limit)
+      if (station) return { kind, id, name: station.name, code: station.code }
+      const isSystem = kind === 'system'
+      return { kind, id, name: isSystem ? 'Offing itself' : `${kind} ${id}`, code: isSystem ? 'SYSTEM' : '' }
+    },
+    isStale(limit, state, now) {
+      const last = state?.lastWindowEndsAt ?? null
+      const staleAfter = stationOf(limit)?.staleAfterSeconds ?? Infinity
+      return limit.limitClass === 'wave' && last !== null && now.getTime() - last.getTime() > staleAfter * 1000
+    },
   }
 }
 
@@ -87,7 +101,7 @@ export async function shelvesInForce(
 export async function presentLimits(parts: Pick<Parts, 'clock'>, limits: Limit[]): Promise<LimitView[]> {
   const ids = limits.map(({ id }) => id)
   if (ids.length === 0) return []
-  const [versions, states, shelves, alerts, subjectOf] = await Promise.all([
+  const [versions, states, shelves, alerts, subjects] = await Promise.all([
     LimitVersion.findAll({ where: { id: limits.flatMap(({ currentVersionId }) => currentVersionId ?? []) } }),
     LimitState.findAll({ where: { limitId: ids } }),
     shelvesInForce(parts, ids),
@@ -104,9 +118,10 @@ export async function presentLimits(parts: Pick<Parts, 'clock'>, limits: Limit[]
     const state = states.find(({ limitId }) => limitId === limit.id)
     if (!version || !state) return []
     const shelf = shelves.get(limit.id)
-    const subject = subjectOf(limit)
-    const current = presentVersion(version, nameOf)
     const { outOfServiceAt, outOfServiceReason, outOfServiceById } = limit
+    const subject = subjects.viewOf(limit)
+    const judgedNot = outOfServiceAt ? 'outOfService' : (state.notJudged ?? (subjects.isStale(limit, state, parts.clock.now()) ? 'stale' : null)) // prettier-ignore
+    const current = presentVersion(version, nameOf)
     const view: LimitView = {
       id: limit.id,
       version: limit.version,
@@ -119,7 +134,7 @@ export async function presentLimits(parts: Pick<Parts, 'clock'>, limits: Limit[]
       stateSince: state.since.toISOString(),
       isActive: Boolean(state.isActive),
       lastJudgedAt: state.lastWindowEndsAt?.toISOString() ?? null,
-      notJudged: outOfServiceAt ? 'outOfService' : notJudgedReason.nullable().parse(state.notJudged),
+      notJudged: notJudgedReason.nullable().parse(judgedNot),
       value: state.value,
       valueSd: state.valueSd,
       shelf: shelf ? presentShelf(shelf, nameOf) : null,

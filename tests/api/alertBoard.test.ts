@@ -1,0 +1,50 @@
+import { describe, expect, it } from 'vitest'
+import { LogEntry } from '../../server/models/index.ts'
+import { at, judgedStation, plainCondition } from '../support/judgedStation.ts'
+
+const held = judgedStation()
+
+describe('a flood', () => {
+  it('is grouped by cause on the board and goes into the log once', async () => {
+    const condition = { ...plainCondition, onDelaySeconds: 0 }
+    for (let n = 0; n < 11; n += 1) await held.setLimit({ condition, priority: 'low' })
+    await held.sea(0, 0, { height: 2.8 })
+    await held.judge()
+    const { body } = await held.desk.get('/api/alerts').expect(200)
+    expect(body.flood).toMatchObject({ count: 11, causes: [{ subject: { id: held.station.id }, count: 11 }] })
+    expect(body.counts).toMatchObject({ open: 11, unacknowledged: 11, byPriority: { low: 11 } })
+    expect(await LogEntry.count({ where: { kind: 'flood' } })).toBe(1)
+  })
+})
+
+describe('a station whose figures stop', () => {
+  it('keeps its alert, shown as held, and its limit as not judged', async () => {
+    const limitId = await held.setLimit()
+    await held.sea(0, 10, { height: 2.8 })
+    held.parts.clock.set(at(30))
+    await held.judge()
+    const { body } = await held.desk.get('/api/alerts').expect(200)
+    const own = body.alerts.find((alert: { limitId: number }) => alert.limitId === limitId)
+    expect(own).toMatchObject({ state: 'unacknowledgedActive', isHeld: true, value: 2.8 })
+    const limit = (await held.desk.get(`/api/limits/${limitId}`).expect(200)).body
+    expect(limit.notJudged).toBe('stale')
+  })
+})
+
+describe('a drill', () => {
+  it('raises an exercise beside the real one, is acknowledged and ended, and counts in no measure', async () => {
+    const limitId = await held.setLimit()
+    const order = { limitId, value: 3.4, note: 'Monthly drill' }
+    const { body } = await held.desk.post('/api/drills').send(order).expect(201)
+    expect(body).toMatchObject({ isExercise: true, state: 'unacknowledgedActive', value: 3.4 })
+    await held.desk.post('/api/drills').send(order).expect(409)
+    await held.sea(0, 10, { height: 2.8 })
+    expect((await held.alerts(limitId)).map(({ isExercise }) => Boolean(isExercise))).toEqual([true, false])
+    await held.desk.post(`/api/alerts/${body.id}/acknowledge`).send({}).expect(200)
+    await held.desk.post(`/api/drills/${body.id}/end`).send({}).expect(200)
+    held.parts.clock.set(at(20))
+    const measured = (await held.desk.get('/api/alerts/performance?days=1').expect(200)).body
+    const own = measured.topOffenders.find((offender: { limitId: number }) => offender.limitId === limitId)
+    expect(own.count).toBe(1)
+  })
+})
