@@ -5,9 +5,10 @@ export function median(series: Float64Array): number {
   return quantile(finite(series), 0.5)
 }
 
-/** The value below which the given share of the finite samples lies; NaN when there is none. */
-export function quantileOf(series: Float64Array, share: number): number {
-  return quantile(finite(series), share)
+/** The values below which the given shares of the finite samples lie; NaN when there is none. */
+export function quantilesOf(series: Float64Array, shares: readonly number[]): number[] {
+  const values = finite(series)
+  return shares.map((share) => quantile(values, share))
 }
 
 /** 1.4826 times the median distance from the median: the standard deviation of a Gaussian record. */

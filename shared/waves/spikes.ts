@@ -7,7 +7,8 @@ import { bridgeGaps } from './bridgeGaps.ts'
 import { detrend } from './detrend.ts'
 import { autocovariance, runInterpolation, runScore } from './interpolation.ts'
 import type { RunInterpolation } from './interpolation.ts'
-import { quantileOf, robustSpread } from './robust.ts'
+import { quantilesOf, robustSpread } from './robust.ts'
+import { invertSymmetric } from './symmetric.ts'
 
 /** Longest run looked for, samples. */
 const longestSpike = 3
@@ -59,12 +60,14 @@ function findRuns(flat: Float64Array, spread: number, side: number, sigmas: numb
   for (let look = 0; look < looks; look++) {
     const last = look === looks - 1
     const filled = fillGaps(flat, covariance, side)
+    const one = runInterpolation(covariance, side, 1)
+    if (!one) return []
+    const whitened = whiten(one, flat, filled)
     candidates = []
-    for (let length = 1; length <= longestSpike; length++) {
-      const run = runInterpolation(covariance, side, length)
-      if (!run) return []
-      candidates.push(...standingOut(run, flat, filled, last ? leastSize * spread : 0, last ? sigmas : suspectSigmas))
-    }
+    for (let length = 1; length <= longestSpike; length++)
+      candidates.push(
+        ...standingOut(one, length, whitened, last ? leastSize * spread : 0, last ? sigmas : suspectSigmas),
+      )
     if (last || candidates.length === 0) break
     const trusted = flat.slice()
     for (const { from, length } of candidates) trusted.fill(NaN, from, from + length)
@@ -78,25 +81,44 @@ function findRuns(flat: Float64Array, spread: number, side: number, sigmas: numb
   return chosen
 }
 
+/** (Pz) at every sample; NaN at missing ones and where neighbours are. */
+function whiten(one: RunInterpolation, flat: Float64Array, filled: Float64Array): Float64Array {
+  const whitened = new Float64Array(flat.length).fill(NaN)
+  const score = new Float64Array(1)
+  for (let i = 0; i < flat.length; i++) {
+    if (flat[i] !== flat[i]) continue
+    runScore(one, filled, i, score)
+    whitened[i] = score[0]
+  }
+  return whitened
+}
+
+/**
+ * Runs of one length whose residual P_BB⁻¹(Pz)_B is beyond the limit. Far from its ends P is the same from row to row, so one row
+ * serves all samples of a run.
+ */
 function standingOut(
-  run: RunInterpolation,
-  flat: Float64Array,
-  filled: Float64Array,
+  { rows, side }: RunInterpolation,
+  length: number,
+  whitened: Float64Array,
   leastResidual: number,
   sigmas: number,
 ): Run[] {
-  const { length, covariance } = run
-  const scores = new Float64Array(flat.length).fill(NaN)
-  const sizes = new Float64Array(flat.length)
-  const score = new Float64Array(length)
-  for (let from = 0; from + length <= flat.length; from++) {
-    runScore(run, filled, from, score)
+  const own = Float64Array.from(
+    { length: length * length },
+    (_, at) => rows[side + Math.abs(Math.floor(at / length) - (at % length))],
+  )
+  const covariance = invertSymmetric(length, own)
+  if (!covariance) return []
+  const scores = new Float64Array(whitened.length).fill(NaN)
+  const sizes = new Float64Array(whitened.length)
+  for (let from = 0; from + length <= whitened.length; from++) {
     let square = 0
     let largest = 0
     for (let i = 0; i < length; i++) {
-      let residual = flat[from + i] - flat[from + i]
-      for (let j = 0; j < length; j++) residual += covariance[i * length + j] * score[j]
-      square += residual * score[i]
+      let residual = 0
+      for (let j = 0; j < length; j++) residual += covariance[i * length + j] * whitened[from + j]
+      square += residual * whitened[from + i]
       largest = Math.max(largest, Math.abs(residual))
     }
     scores[from] = Math.sqrt(square)
@@ -104,9 +126,10 @@ function standingOut(
   }
   // The residual's own tail sets the scale where it is heavier than that of a Gaussian sea.
   const n = length - 1
-  const scale = Math.max(quantileOf(scores, 0.5) / chiMedian[n], quantileOf(scores, 0.8) / chiTail[n])
+  const [median, tail] = quantilesOf(scores, [0.5, 0.8])
+  const scale = Math.max(median / chiMedian[n], tail / chiTail[n])
   const limit = scale * sigmas
-  const price = n * Math.log(flat.length)
+  const price = n * Math.log(scores.length)
   const found: Run[] = []
   for (let from = 0; from < scores.length; from++)
     if (scores[from] > limit && sizes[from] > leastResidual)
