@@ -5,6 +5,7 @@
 import { benchAccuracy } from './accuracy.ts'
 import { benchAcknowledgement } from './acknowledgement.ts'
 import { benchAlertMail } from './alertMail.ts'
+import { benchAlerts } from './alerts.ts'
 import { benchStorage } from './storage.ts'
 
 const words = process.argv.slice(2)
@@ -14,6 +15,7 @@ if (words[0] === '--accuracy') {
   for (const { what, value, unit } of [
     ...(await benchStorage()),
     ...(await benchAcknowledgement()),
+    ...(await benchAlerts()),
     ...(await benchAlertMail()),
   ]) {
     process.stdout.write(`${what.padEnd(44)} ${Number(value.toPrecision(4)).toString().padStart(10)} ${unit}\n`)
