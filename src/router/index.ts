@@ -4,6 +4,7 @@ import type { RouteRecordRaw, Router, RouterHistory } from 'vue-router'
 import WatchLayout from '../layouts/WatchLayout.vue'
 import { useSession } from '../stores/session.ts'
 import { useStations } from '../stores/stations.ts'
+import { pages } from './pages.ts'
 
 const routes: RouteRecordRaw[] = [
   {
@@ -109,7 +110,8 @@ export function createOffingRouter(history: RouterHistory = createWebHistory()):
     if (session.state === 'unknown') await session.restore().catch(() => undefined)
     const signedIn = session.state === 'in' || session.state === 'ended'
     if (to.meta.open) return signedIn && session.state === 'in' ? { name: 'watch' } : true
-    if (signedIn) return true
+    const page = pages.find((one) => one.name === to.meta.page)
+    if (signedIn) return !page || session.allows(page.action) ? true : { name: 'watch' }
     return { name: 'signIn', query: to.fullPath === '/' || to.path === '/watch' ? {} : { to: to.fullPath } }
   })
 

@@ -87,11 +87,11 @@ describe('lost contact', () => {
     FakeWebSocket.last.end(1006)
     vi.advanceTimersByTime(5_000)
     await nextTick()
-    expect(wordsOf(band.find('.band').element)).toContain('No contact since 14:31:02 UTC, 5 s. Nothing new')
+    expect(wordsOf(band.find('.band').element)).toContain('No contact since 14:31:02 UTC, 5 s. No new alerts')
     vi.advanceTimersByTime(60_000)
     await nextTick()
     expect(wordsOf(band.find('.band').element)).toContain(
-      '65 s. Nothing new reaches this screen. The hatched figures are not live.',
+      '65 s. No new alerts can reach this screen. The hatched figures are not live.',
     )
     expect(band.find('[role=status]').text()).toBe('No contact since 14:31:02 UTC.')
   })

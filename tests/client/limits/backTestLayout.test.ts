@@ -38,7 +38,7 @@ describe('the drawing of a back-test', () => {
 describe('an axis', () => {
   it('has round steps that hold both ends', () => {
     expect(niceTicks(0, 1.5)).toEqual([0, 0.5, 1, 1.5])
-    expect(niceTicks(0, 11)).toEqual([0, 5, 10, 15])
+    expect(niceTicks(0, 11)).toEqual([0, 2, 4, 6, 8, 10, 12])
     expect(tickPlaces(niceTicks(0, 0.09))).toBe(2)
     expect(niceTicks(3, 3)).toEqual([3])
   })

@@ -6,7 +6,7 @@ export function niceTicks(least: number, most: number, about = 4): number[] {
   if (!(span > 0)) return [least]
   const raw = span / about
   const power = 10 ** Math.floor(Math.log10(raw))
-  const step = ([1, 2, 5, 10].find((one) => one * power >= raw - 1e-12) ?? 10) * power
+  const step = ([1, 2, 5, 10].find((one) => one * power >= raw * 0.7) ?? 10) * power
   const first = Math.floor(least / step + 1e-9) * step
   const ticks: number[] = []
   for (let n = 0; ; n += 1) {
