@@ -1,5 +1,5 @@
 /** Limits: set, changed as new versions, tried on stored figures, retired. */
-import { limitWithHistory } from '../../shared/schemas/limit.ts'
+import type { limitWithHistory } from '../../shared/schemas/limit.ts'
 import type { LimitView } from '../../shared/schemas/limit.ts'
 import type { z } from 'zod'
 import type { Parts } from '../config/parts.ts'

@@ -1,4 +1,7 @@
-/** The demonstration's lists and limits. The numbers are invented for the invented coast and are nobody's rule. */
+/**
+ * The demonstration's lists and limits. The numbers are invented for the invented coast and are nobody's rule: they lie so
+ * that its own weather raises some of them, scenario `quiet` none, and a gale the urgent one.
+ */
 import type { Condition, LimitContent, Priority } from '../schemas/limit.ts'
 
 export interface DemonstrationList {
@@ -99,7 +102,7 @@ const waveLimits: DemonstrationLimit[] = [
   {
     stationCode: 'OL',
     steps: dutyOnly,
-    content: content('low', condition([above('swellHeight', 1, 0.85)]), 'Which boats are out.'),
+    content: content('low', condition([above('swellHeight', 1.35, 1.2)]), 'Which boats are out.'),
   },
   {
     stationCode: 'OL',
@@ -111,7 +114,7 @@ const waveLimits: DemonstrationLimit[] = [
     steps: harbour,
     content: content(
       'medium',
-      condition([above('swellHeight', 1.4, 1.2), fromSouthWest]),
+      condition([above('swellHeight', 1.3, 1.15), fromSouthWest]),
       'Entrance traffic of the next hours; small craft at the outer berths.',
       { title: 'Swell into the entrance', isPublished: true },
     ),
@@ -121,7 +124,7 @@ const waveLimits: DemonstrationLimit[] = [
     steps: harbour,
     content: content(
       'high',
-      condition([above('significantWaveHeight', 2.5, 2.1)]),
+      condition([above('significantWaveHeight', 1.45, 1.25)]),
       'Pilot boarding; moorings at berths 3 to 6; the walk on the Long Arm.',
       { isPublished: true },
     ),
@@ -131,7 +134,7 @@ const waveLimits: DemonstrationLimit[] = [
     steps: everybody,
     content: content(
       'urgent',
-      condition([above('significantWaveHeight', 2.8, 2.4)], { onDelaySeconds: 0 }),
+      condition([above('significantWaveHeight', 2.4, 2)], { onDelaySeconds: 0 }),
       'Close the walk and the bar; tell the patrol by telephone.',
       { title: 'Sea at the bar', isPublished: true },
     ),
