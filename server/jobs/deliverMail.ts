@@ -13,6 +13,7 @@ import { createRateLimit } from './deliverMail/rateLimit.ts'
 import { sendBatch } from './deliverMail/sendBatch.ts'
 
 const aBatch = 12
+const queuedAtOnce = 100
 const mostAMinute = 300
 
 export interface DeliverMailOptions {
@@ -39,8 +40,6 @@ export async function startDeliverMail(parts: Parts, options: DeliverMailOptions
   async function deliver(): Promise<void> {
     const { portName, timeZone } = await settingInForce(parts, 'port')
     await recoverLeases(parts)
-    await queueMessages(parts, timeZone)
-    await mergeFlood(parts)
     const isDemonstration = parts.environment.installationKind === 'demonstration'
     const { publicUrl } = parts.environment
     const histories = createHistories(parts)
@@ -48,10 +47,21 @@ export async function startDeliverMail(parts: Parts, options: DeliverMailOptions
       ...{ publicUrl, portName, timeZone, isDemonstration },
       history: await histories.of(letter),
     })
-    for (let goesOn = true; goesOn;) {
+    // In a flood the most serious go out while the others are still being queued.
+    for (let isServerUp = true, isAllQueued = false; !isAllQueued;) {
+      isAllQueued = (await queueMessages(parts, timeZone, queuedAtOnce)) < queuedAtOnce
+      if (isAllQueued) await mergeFlood(parts)
+      isServerUp = isServerUp && (await sendDue(around))
+    }
+  }
+
+  /** False: the mail server does not answer. */
+  async function sendDue(around: (letter: Leased) => Promise<Surroundings>): Promise<boolean> {
+    for (;;) {
       const leased = await leaseDeliveries(parts, Math.min(aBatch, rate.free()))
       rate.take(leased.length)
-      goesOn = leased.length > 0 && (await sendBatch(parts, { leased, transport, around }))
+      if (leased.length === 0) return true
+      if (!(await sendBatch(parts, { leased, transport, around }))) return false
     }
   }
 

@@ -1,5 +1,4 @@
 /** One e-mail to one person on its way to the mail server. */
-import { Op } from 'sequelize'
 import type { Parts } from '../config/parts.ts'
 import { Delivery } from '../models/index.ts'
 import { recordAudit } from './audit.ts'
@@ -10,15 +9,6 @@ export { handOver, leaseDeliveries, recoverLeases } from './deliveries/lease.ts'
 export type { Leased } from './deliveries/lease.ts'
 export { settleDelivery } from './deliveries/settle.ts'
 export type { Outcome } from './deliveries/settle.ts'
-
-/** When the next one is due; null: nothing waits. */
-export async function nextDueAt(): Promise<Date | null> {
-  const first = await Delivery.findOne({
-    where: { state: ['queued', 'unknown'], nextAttemptAt: { [Op.ne]: null } },
-    order: [['nextAttemptAt', 'ASC']],
-  })
-  return first?.nextAttemptAt ?? null
-}
 
 /** An operator has it tried again, at once. */
 export async function retryDelivery(parts: Parts, deliveryId: number, byPersonId: number): Promise<number> {

@@ -11,7 +11,6 @@ export { writeDueHeartbeat } from './messages/heartbeat.ts'
 export { queueMessages } from './messages/queue.ts'
 export { writeTestMessage } from './messages/test.ts'
 export { writeMessage } from './messages/write.ts'
-export type { NewMessage } from './messages/write.ts'
 
 const aPage = 50
 

@@ -11,40 +11,72 @@ import { announcedSince } from './announced.ts'
 import { holdInFlood } from './flood.ts'
 import { membersOf, reachablePeople } from './people.ts'
 import { chooseRecipients } from './recipients.ts'
+import type { Reachable } from './recipients.ts'
 import { addDeliveries } from './write.ts'
 import type { Recipient } from './write.ts'
 
-/** Answers how many messages were queued. `timeZone`: the port's, in which all hours are kept. */
-export async function queueMessages(parts: Parts, timeZone: string): Promise<number> {
-  for (let count = 0; ; count += 1) {
-    const message = await inTransaction(parts.sequelize, (transaction) => queueNext(parts, timeZone, transaction))
-    if (!message) return count
-    parts.bus.publish('message.changed', { messageId: message.id, alertId: message.alertId })
+const atOnce = 20
+
+/**
+ * Answers how many messages were queued; fewer than `most` when none is left. `timeZone`: the port's, in which all
+ * hours are kept.
+ */
+export async function queueMessages(parts: Parts, timeZone: string, most = Infinity): Promise<number> {
+  let count = 0
+  for (;;) {
+    const queued = await inTransaction(parts.sequelize, (transaction) => queueSome(parts, timeZone, transaction))
+    for (const { id, alertId } of queued) parts.bus.publish('message.changed', { messageId: id, alertId })
+    count += queued.length
+    if (queued.length === 0 || count >= most) return count
   }
 }
 
-async function queueNext(parts: Parts, timeZone: string, transaction: Transaction): Promise<Message | null> {
-  const [next] = await select<{ id: number }>(
-    parts.sequelize,
+async function queueSome(parts: Parts, timeZone: string, transaction: Transaction): Promise<Message[]> {
+  const messages = await lockSome(parts, transaction)
+  const people = messages.length > 0 ? await reachablePeople(parts.clock.now(), transaction) : new Map()
+  for (const message of messages) await queueOne(parts, message, { timeZone, people }, transaction)
+  return messages
+}
+
+/** The most serious first; of one alert in the order of their writing. */
+async function lockSome({ sequelize }: Parts, transaction: Transaction): Promise<Message[]> {
+  const waiting = await select<{ id: number }>(
+    sequelize,
     // A first step that is not to be taken at once has its message written and its time stored.
-    `SELECT id FROM messages WHERE queuedAt IS NULL AND NOT (kind = 'alert' AND EXISTS (
-       SELECT 1 FROM escalations e WHERE e.alertId = messages.alertId AND e.step = messages.step AND e.sentAt IS NULL))
-     ORDER BY id LIMIT 1 FOR UPDATE SKIP LOCKED`,
-    {},
+    `SELECT m.id FROM messages m LEFT JOIN alerts a ON a.id = m.alertId
+     WHERE m.queuedAt IS NULL AND NOT (m.kind = 'alert' AND EXISTS (
+       SELECT 1 FROM escalations e WHERE e.alertId = m.alertId AND e.step = m.step AND e.sentAt IS NULL))
+     ORDER BY a.priority + 0 DESC, m.id LIMIT :atOnce`,
+    { atOnce },
     transaction,
   )
-  const message = next ? await Message.findByPk(next.id, { transaction }) : null
-  if (!message) return null
+  if (waiting.length === 0) return []
+  const order = waiting.map(({ id }) => id)
+  const locked = await select<{ id: number }>(
+    sequelize,
+    'SELECT id FROM messages WHERE id IN (:order) AND queuedAt IS NULL FOR UPDATE SKIP LOCKED',
+    { order },
+    transaction,
+  )
+  const messages = await Message.findAll({ where: { id: locked.map(({ id }) => id) }, transaction })
+  return messages.sort((one, other) => order.indexOf(one.id) - order.indexOf(other.id))
+}
+
+interface Around {
+  timeZone: string
+  people: Map<number, Reachable>
+}
+
+async function queueOne(parts: Parts, message: Message, around: Around, transaction: Transaction): Promise<void> {
   const alert = message.alertId === null ? null : await Alert.findByPk(message.alertId, { transaction })
   const { recipients, unreached, isNobody } = alert
-    ? await chosenFor(parts, message, alert, timeZone, transaction)
+    ? await chosenFor(parts, message, alert, around, transaction)
     : nobody
   const held =
     alert && !message.isExercise ? await holdInFlood(parts, recipients, alert.priority, transaction) : recipients
   await addDeliveries(parts, message.id, held, transaction)
   await message.update({ queuedAt: parts.clock.now() }, { transaction })
   if (alert) await tell(parts, message, alert, { count: recipients.length, unreached, isNobody }, transaction)
-  return message
 }
 
 interface Choice {
@@ -60,7 +92,7 @@ async function chosenFor(
   parts: Parts,
   message: Message,
   alert: Alert,
-  timeZone: string,
+  { timeZone, people }: Around,
   transaction: Transaction,
 ): Promise<Choice> {
   if (message.kind === 'allClear') return { ...nobody, recipients: await toldOf(parts, alert.id, transaction) }
@@ -70,10 +102,14 @@ async function chosenFor(
   const version = await LimitVersion.findByPk(alert.limitVersionId, { transaction })
   const step = recipientsShape.parse(version?.steps).steps.at(message.step ?? 0)
   if (!step) return nobody
-  const at = parts.clock.now()
   const members = await membersOf(step.listIds, transaction)
-  const people = await reachablePeople(at, transaction)
-  const chosen = chooseRecipients({ members, people, priority: alert.priority, at: at.getTime(), timeZone })
+  const chosen = chooseRecipients({
+    members,
+    people,
+    priority: alert.priority,
+    at: parts.clock.now().getTime(),
+    timeZone,
+  })
   // Over all steps each person is told of an alert once; after that they are reminded.
   const told = await toldBefore(parts, alert.id, transaction)
   return {
