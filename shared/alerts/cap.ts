@@ -167,7 +167,8 @@ function messageOf(facts: CapFacts, event: CapEvent, msgType: CapMessage['msgTyp
         : `Measured at ${facts.subjectName}: ${event.value}. Limit: ${facts.words}`,
       instruction: [facts.toCheck, facts.caution].filter((text) => text !== '').join(' '),
       web: facts.web,
-      parameter: event.number === null ? [] : [{ valueName: 'value_SI', value: String(event.number) }],
+      parameter:
+        event.number === null ? [] : [{ valueName: 'value_SI', value: String(Number(event.number.toPrecision(4))) }],
       area: {
         areaDesc: facts.subjectName,
         polygon: facts.ring && facts.ring.length >= 4 ? capPolygon(facts.ring) : null,
