@@ -134,7 +134,10 @@ function lagsDisagree(trains: readonly TrainVector[], measured: readonly LagFit[
   const coherence = median(Float64Array.from(measured[0].lags, (lag) => lag.coherence))
   if (coherence < leastLagCoherence) return false
   const turn = 2 * Math.abs(Math.sin((Math.atan2(lagged.y, lagged.x) - trains[0].direction) / 2))
-  return turn > greatestTurn && turn > 5 * Math.sqrt(trains[0].directionVariance)
+  // Lags that do not agree among themselves have no heading to set against the fit's.
+  const { x, y, xx, xy, yy } = lagged
+  const own = (y * y * xx - 2 * x * y * xy + x * x * yy) / (x * x + y * y) ** 2
+  return turn > greatestTurn && turn > 5 * Math.sqrt(trains[0].directionVariance) && turn > 3 * Math.sqrt(own)
 }
 
 function unexplainedTest({ unexplained }: SeaDoubts): QualityTest {

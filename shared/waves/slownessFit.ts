@@ -54,8 +54,9 @@ export function fitSlowness(x: ArrayLike<number>, y: ArrayLike<number>, lags: re
   }
   const sensors = x.length
   const residual = Math.sqrt(squares / weights)
-  // Pairs of sensor errors: Σ over pairs of (e_j − e_i)² = M Σ e²; M − 3 degrees of freedom are left.
-  const sensorVariance = sensors > 3 ? (residual * residual * (lags.length / sensors)) / (sensors - 3) : 0
+  // Pairs of sensor errors: Σ over pairs of (e_j − e_i)² = M Σ e²; M − 3 degrees of freedom are left. With three sensors what is left
+  // is their closure.
+  const sensorVariance = (residual * residual * (lags.length / sensors)) / Math.max(1, sensors - 3)
   const q = spreadOfSensors(x, y)
   const qDeterminant = q.xx * q.yy - q.xy * q.xy
   return {

@@ -16,8 +16,11 @@ const longestSpike = 3
 const neighbourSeconds = 3
 const fewestNeighbours = 6
 const mostNeighbours = 16
-/** A spike stands off its interpolation by at least this share of the record's standard deviation; H_m0 is four of these. */
-const leastSize = 0.8
+/**
+ * A spike stands off its interpolation by at least so many standard deviations of the record, three eighths of H_m0: the crests of steep
+ * real seas are sharper than a Gaussian sea's, but not by that much.
+ */
+const leastSize = 1.5
 const mostPasses = 6
 /** How often the record is looked at in a pass, and the limit from which a run is suspected in all but the last look. */
 const looks = 3
