@@ -4,6 +4,7 @@
  */
 import type { EstimateResult } from '../schemas/estimate.ts'
 import { leastAxisRatio } from './arrayGeometry.ts'
+import { arrayDirections } from './arrayDirections.ts'
 import { arraySpectra } from './arraySpectra.ts'
 import { blankResult, refusalForData, refuse } from './blankResult.ts'
 import { addHeights } from './heights.ts'
@@ -14,7 +15,6 @@ import { findRegularSea } from './regularSea.ts'
 import { coherenceTest, describeSea } from './describeSea.ts'
 import { blameFaults, doubtGeometry, judgeSensors } from './sensorVerdicts.ts'
 import type { FaultVerdict } from './sensorVerdicts.ts'
-import { trainDirections } from './trainDirections.ts'
 import type { ArrayWindow } from './window.ts'
 
 /** ln L gained over unrelated sensors below which no wave is claimed; noise alone loses by this measure. */
@@ -59,7 +59,7 @@ export function estimate(window: ArrayWindow): EstimateResult {
     if (ambiguous) return refuse(doubtGeometry(result), 'geometry-doubtful')
     const described = {
       ...describeSea(result, window, prepared, spectra, sea.trains, sea.doubts),
-      directionalSpectrum: sea.doubts.unexplained === null ? trainDirections(sea.found.fit, prepared.frame.axis) : null,
+      directionalSpectrum: arrayDirections(spectra, prepared.frame, window.waterDepth, window.settings.gravity),
     }
     if (faults.length === 0 || !described.tests.some((test) => test.test === coherenceTest)) return described
     // Without the sensor blamed the sea is still not understood, so it was not the sensor.
