@@ -43,7 +43,6 @@ export function startJudgeLimits(parts: Parts, { isUnscheduled = false } = {}): 
   async function judgeOne(stationId: number): Promise<void> {
     const office = await officeOf(parts)
     await guarded(`station ${stationId}`, () => judgeStation(parts, office, stationId))
-    await guarded(`late windows of station ${stationId}`, () => noteLateWindows(parts, office, stationId))
   }
 
   async function judgeAll(): Promise<void> {
@@ -53,6 +52,7 @@ export function startJudgeLimits(parts: Parts, { isUnscheduled = false } = {}): 
     for (const { id } of await listStations(parts)) {
       saved.delete(id)
       await judgeOne(id)
+      await guarded(`late windows of station ${id}`, () => noteLateWindows(parts, office, id))
     }
     const clockOffsetOf = (stationId: number) => linkOf(stationId).clockOffsetSeconds
     await guarded('data health', () => judgeHealth(parts, office, { clockOffsetOf, diskFree }))

@@ -145,9 +145,34 @@ describe('a wave limit', () => {
     await held.judge()
     expect(await held.alerts(limitId)).toEqual([])
     const line = await LogEntry.findOne({ where: { kind: 'alert' }, order: [['id', 'DESC']] })
-    expect(line?.text).toContain('exceeded in 1 windows, most 3.20 m. Nobody was told.')
+    expect(line?.text).toContain('12:05 UTC: exceeded in 1 window, most 3.20 m. Nobody was told.')
     await held.judge()
     expect((await LogEntry.findOne({ where: { kind: 'alert' }, order: [['id', 'DESC']] }))?.id).toBe(line?.id)
+  })
+
+  it('tells of all windows of one back-fill in one line, once no more of them come', async () => {
+    await held.setLimit({ condition: { ...plainCondition, onDelaySeconds: 0 } })
+    await held.sea(10, 12, { height: 1 })
+    const lines = async () =>
+      (await LogEntry.findAll({ where: { kind: 'alert' } })).filter(({ text }) => text.includes('Filled in late'))
+    const before = (await lines()).length
+    for (const [computed, window] of [
+      [12, 4],
+      [13, 5],
+      [14, 6],
+    ] as const) {
+      // prettier-ignore
+      held.parts.clock.set(at(computed))
+      await held.estimate(window, { height: 3.2, origin: 'late' })
+      held.parts.clock.set(at(computed + 0.5))
+      await held.judge()
+    }
+    expect(await lines()).toHaveLength(before)
+    held.parts.clock.set(at(16))
+    await held.judge()
+    expect((await lines()).slice(before).map(({ text }) => text)).toEqual([
+      expect.stringContaining('12:04 to 12:06 UTC: exceeded in 3 windows'),
+    ])
   })
 })
 

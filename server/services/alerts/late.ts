@@ -20,6 +20,8 @@ import type { SeaWindow } from './seaFigures.ts'
 const lookBackMs = 2 * 86_400_000
 /** A window is written at most so long after it was computed: until then it may still be on its way. */
 const settledAfterMs = 60_000
+/** While more of them come they are told of together, but not later than this. */
+const longestWaitMs = 3_600_000
 const job = { job: 'judgeLate', subjectKind: 'station' }
 
 async function notedUpTo({ sequelize }: Parts, stationId: number): Promise<number | null> {
@@ -31,11 +33,23 @@ async function notedUpTo({ sequelize }: Parts, stationId: number): Promise<numbe
   return row?.doneUpTo?.getTime() ?? null
 }
 
+async function areStillComing({ sequelize }: Parts, stationId: number, until: number): Promise<boolean> {
+  const rows = await select(
+    sequelize,
+    `SELECT 1 FROM estimates WHERE stationId = :stationId AND runId = 0 AND windowEndsAt > :from AND computedAt > :until
+     AND origin IN ('late', 'import') LIMIT 1`,
+    { stationId, from: new Date(until - lookBackMs), until: new Date(until) },
+  )
+  return rows.length > 0
+}
+
 /** Looks at what was computed late since the last time. Without a last time nothing is old news yet. */
 export async function noteLateWindows(parts: Parts, office: Office, stationId: number): Promise<void> {
   const now = parts.clock.now().getTime()
   const until = now - settledAfterMs
   const since = await notedUpTo(parts, stationId)
+  const mayWait = since !== null && now - since < longestWaitMs
+  if (mayWait && (await areStillComing(parts, stationId, until))) return
   const which = `l.subjectKind = 'station' AND l.subjectId = :stationId AND l.limitClass = 'wave'`
   const limits = since === null ? [] : await limitsInForce(parts.sequelize, which, { stationId })
   const windows =
@@ -83,8 +97,10 @@ async function noteLate(desk: Desk, limit: LimitInForce, windows: SeaWindow[]): 
   if (!first || !last) return
   const quantity = quantityOf(limit.condition.comparisons[0].quantity)
   const most = exceeded.reduce((best, one) => ((one.value ?? -Infinity) > (best.value ?? -Infinity) ? one : best))
-  const span = `${momentUtc(first.windowEndsAt, desk.now)} to ${momentUtc(last.windowEndsAt, desk.now)} UTC`
-  const text = `Filled in late, ${span}: exceeded in ${exceeded.length} windows, most ${valueWords(quantity, most.value)}. Nobody was told.`
+  const [from, to] = [first, last].map(({ windowEndsAt }) => momentUtc(windowEndsAt, desk.now))
+  const span = `${from === to ? from : `${from} to ${to}`} UTC`
+  const windowsWords = exceeded.length === 1 ? '1 window' : `${exceeded.length} windows`
+  const text = `Filled in late, ${span}: exceeded in ${windowsWords}, most ${valueWords(quantity, most.value)}. Nobody was told.`
   const where = { limitId: limit.limitId, isExercise: false, closedAt: null }
   const alert = await Alert.findOne({ where, transaction: desk.transaction })
   if (alert) await addEvent(desk, alert.id, { kind: 'late', text, value: most.value })
