@@ -20,11 +20,14 @@ export function client(folder: string): Router {
   return router
 }
 
+/** The signed links of e-mails have points in them and are no files. */
+const isFile = (path: string): boolean => /\.\w+$/.test(path) && !/^\/receipt\/[^/]+$/.test(path)
+
 /** Every path of the client's router is the same page; a missing file is missing and no page. */
 const page =
   (folder: string): RequestHandler =>
   (request, response, next) => {
-    if (/\.\w+$/.test(request.path)) return next()
+    if (isFile(request.path)) return next()
     response.sendFile(
       join(folder, 'index.html'),
       { cacheControl: false, headers: { 'Cache-Control': 'no-cache' } },
