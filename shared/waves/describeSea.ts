@@ -137,7 +137,7 @@ function lagsDisagree(trains: readonly TrainVector[], measured: readonly LagFit[
   // Lags that do not agree among themselves have no heading to set against the fit's.
   const { x, y, xx, xy, yy } = lagged
   const own = (y * y * xx - 2 * x * y * xy + x * x * yy) / (x * x + y * y) ** 2
-  return turn > greatestTurn && turn > 5 * Math.sqrt(trains[0].directionVariance) && turn > 3 * Math.sqrt(own)
+  return turn > greatestTurn && turn > 5 * Math.sqrt(trains[0].directionVariance + own)
 }
 
 function unexplainedTest({ unexplained }: SeaDoubts): QualityTest {
