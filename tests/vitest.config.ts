@@ -2,7 +2,7 @@ import vue from '@vitejs/plugin-vue'
 import { quasar } from '@quasar/vite-plugin'
 import { defineConfig } from 'vitest/config'
 
-/** Unit and reference tests run in parallel; API tests share one database and run one file at a time. */
+/** API tests share one database server, each file with a schema of its own, two files at a time; browser tests share one program. */
 export default defineConfig({
   root: new URL('..', import.meta.url).pathname,
   plugins: [vue(), quasar()],
@@ -25,7 +25,8 @@ export default defineConfig({
           include: ['tests/api/**/*.test.ts'],
           environment: 'node',
           globalSetup: ['tests/support/databaseServer.ts'],
-          fileParallelism: false,
+          fileParallelism: true,
+          maxWorkers: 2,
           testTimeout: 20_000,
           hookTimeout: 60_000,
         },
