@@ -8,7 +8,9 @@ import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
 import { z } from 'zod'
+import { systemClock } from '../../server/config/clock.ts'
 import { createDatabase } from '../../server/config/database.ts'
+import { startMailCatcher } from '../../server/mail/mailCatcher.ts'
 import { execute } from '../../server/models/sql.ts'
 import { readDemonstrationPeople, stationKeysFile } from '../../server/setup/demonstrationPeople.ts'
 import type { DemonstrationPerson } from '../../server/setup/demonstrationPeople.ts'
@@ -85,9 +87,15 @@ export interface ProgramOptions {
   /** Run after the database is seeded and before anything is streamed. */
   prepare?: (databaseUrl: string) => Promise<void>
   variables?: Record<string, string>
+  /** With the demonstration's own mail server, as `npm start` has it; it outlives the kills of the server. */
+  catchesMail?: boolean
 }
 
-export async function startProgram({ prepare, variables = {} }: ProgramOptions = {}): Promise<Program> {
+export async function startProgram({
+  prepare,
+  variables = {},
+  catchesMail = false,
+}: ProgramOptions = {}): Promise<Program> {
   const dataFolder = await mkdtemp(join(tmpdir(), 'offing-run-'))
   const databaseServer = await startMariadb({ durable: true })
   const databaseUrl = `${databaseServer.url}offing_run`
@@ -96,6 +104,7 @@ export async function startProgram({ prepare, variables = {} }: ProgramOptions =
   await outside.close()
   const port = await freePort()
   const url = `http://127.0.0.1:${port}`
+  const catcher = catchesMail ? await startMailCatcher({ folder: join(dataFolder, 'mail'), clock: systemClock }) : null
   const secretFile = join(dataFolder, 'jwt-secret')
   await writeFile(secretFile, randomBytes(36).toString('base64url'))
   const env = {
@@ -109,6 +118,7 @@ export async function startProgram({ prepare, variables = {} }: ProgramOptions =
     JWT_SECRET_FILE: secretFile,
     BCRYPT_COST: '4',
     WORKERS: '1',
+    ...(catcher && { SMTP_URL: catcher.url }),
     ...variables,
   }
   const logOf = (name: string) => join(dataFolder, `${name}.log`)
@@ -118,6 +128,7 @@ export async function startProgram({ prepare, variables = {} }: ProgramOptions =
   async function stop(): Promise<void> {
     for (const simulator of simulators) await simulator.kill()
     await server.kill()
+    await catcher?.stop()
     await databaseServer.stop()
     await rm(dataFolder, { recursive: true, force: true })
   }

@@ -60,7 +60,7 @@ async function serveControl(parts: Record<string, Killable>, program: Program) {
 export default async function setup(project: TestProject): Promise<() => Promise<void>> {
   const stale = await staleClient(root)
   if (stale !== null) await buildClient(root, stale)
-  const program = await startProgram()
+  const program = await startProgram({ catchesMail: true })
   const browser = await launchBrowser()
   const simulator = await program.simulator(['--scenario', 'quiet', '--backfill', '25m'])
   await simulator.start()
