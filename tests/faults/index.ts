@@ -7,6 +7,7 @@ import { parseArgs } from 'node:util'
 import type { FaultReport } from '../../server/setup/testReports.ts'
 import { databaseAbsentAtStart, databaseFrozen, serverAskedToEnd } from './cuts.ts'
 import { carryOut, planKills } from './kills.ts'
+import { mailServerAwayThenRefusing } from './mailCuts.ts'
 import { killsBetweenAlertAndEmail } from './mailKills.ts'
 import { setScene } from './scene.ts'
 import type { Scene } from './scene.ts'
@@ -68,6 +69,8 @@ async function main(): Promise<void> {
   if (!values.short) {
     console.log('\nkills between alert and e-mail')
     checks.push(...(await killsBetweenAlertAndEmail(seed, say)))
+    console.log('\nmail server away, then refusing')
+    checks.push(...(await mailServerAwayThenRefusing(say)))
   }
   for (const { name, passed, detail } of checks)
     console.log(passed ? `  passed  ${name}` : `  FAILED  ${name}: ${detail}`)

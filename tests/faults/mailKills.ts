@@ -2,6 +2,7 @@
 import { z } from 'zod'
 import type { FaultReport } from '../../server/setup/testReports.ts'
 import { limitView } from '../../shared/schemas/limit.ts'
+import type { LimitView } from '../../shared/schemas/limit.ts'
 import { messageList } from '../../shared/schemas/message.ts'
 import type { MessageView } from '../../shared/schemas/message.ts'
 import { startTestMailServer } from '../support/mailCatcher.ts'
@@ -18,10 +19,10 @@ const patienceMs = 90_000
 const limits = z.array(limitView)
 const alert = z.object({ id: z.number() })
 
-type Ask = <T>(method: string, path: string, shape: z.ZodType<T>, body?: unknown) => Promise<T>
+export type Ask = <T>(method: string, path: string, shape: z.ZodType<T>, body?: unknown) => Promise<T>
 
 /** As the officer on watch; the session outlives the kills. */
-async function onWatch({ url, people }: Program): Promise<Ask> {
+export async function onWatch({ url, people }: Program): Promise<Ask> {
   const headers = { 'X-Offing': '1', 'Content-Type': 'application/json' }
   const { email, password } = people.find(({ role }) => role === 'operator') ?? { email: '', password: '' }
   const signedIn = await fetch(`${url}/api/session`, {
@@ -38,7 +39,7 @@ async function onWatch({ url, people }: Program): Promise<Ask> {
   }
 }
 
-async function allMessages(ask: Ask): Promise<MessageView[]> {
+export async function allMessages(ask: Ask): Promise<MessageView[]> {
   const found: MessageView[] = []
   for (let before: number | null = Infinity; before !== null;) {
     const query: string = before === Infinity ? '' : `?before=${before}`
@@ -49,7 +50,13 @@ async function allMessages(ask: Ask): Promise<MessageView[]> {
   return found
 }
 
-const isUnderWay = ({ deliveries }: MessageView): boolean =>
+/** Those of which somebody is told. */
+export const waveLimits = async (ask: Ask): Promise<LimitView[]> =>
+  (await ask('GET', '/limits', limits)).filter(
+    ({ limitClass, current }) => limitClass === 'wave' && current.content.recipients.steps.length > 0,
+  )
+
+export const isUnderWay = ({ deliveries }: MessageView): boolean =>
   deliveries.length === 0 || deliveries.some(({ state, nextAttemptAt }) => state === 'leased' || nextAttemptAt !== null)
 
 export async function killsBetweenAlertAndEmail(
@@ -62,10 +69,7 @@ export async function killsBetweenAlertAndEmail(
   const program = await startProgram({ variables: { SMTP_URL: server.url } })
   try {
     const ask = await onWatch(program)
-    const all = await ask('GET', '/limits', limits)
-    const told = all.filter(
-      ({ limitClass, current }) => limitClass === 'wave' && current.content.recipients.steps.length > 0,
-    )
+    const told = await waveLimits(ask)
     const drills: number[] = []
     for (let round = 0; round < rounds; round += 1) {
       const open: number[] = []
