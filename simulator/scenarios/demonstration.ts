@@ -33,8 +33,9 @@ function windSea(hours: number): OffshoreSystem {
   return {
     key: 'wind sea',
     name: 'wind sea',
-    significantWaveHeight: (0.75 + 0.36 * blown) * strength,
-    peakPeriod: (5.2 + 0.62 * blown) * strength ** 0.3,
+    significantWaveHeight: (0.86 + 0.42 * blown) * strength,
+    // Steep as a sea under its wind is; kept so as it grows: period goes with the root of height.
+    peakPeriod: (4.7 + 0.7 * blown) * strength ** 0.5,
     from: 282 + 10.3 * blown + turn(hours * 1.3),
     directionalSpread: 27,
     peakedness: 3.3,
