@@ -162,6 +162,8 @@ export const alertBoard = z.object({
   /** "No limit exceeded among N judged, M not judged" with the reasons. */
   judged: z.number().int(),
   notJudged: z.array(z.object({ limitId: z.number().int(), title: z.string(), reason: z.string() })),
+  /** Beyond their line, but not yet for their on-delay: no alert, and no calm either. */
+  pending: z.array(z.object({ limitId: z.number().int(), title: z.string(), since: time })),
   /** More than 10 announced in 10 min: since when, and by cause. */
   flood: z
     .object({

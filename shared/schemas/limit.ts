@@ -263,6 +263,8 @@ export const limitView = z.object({
   stateSince: time,
   /** Raised with its delays, whatever the life cycle says. */
   isActive: z.boolean(),
+  /** The value is beyond its line since then and waits out the on-delay; null when it is not, or is raised. */
+  pendingSince: time.nullable(),
   /** End of the newest window judged, or the newest moment for data health. */
   lastJudgedAt: time.nullable(),
   notJudged: notJudgedReason.nullable(),

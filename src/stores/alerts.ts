@@ -49,6 +49,7 @@ export const useAlerts = defineStore('alerts', () => {
   const judged = computed(() => board.value?.judged ?? 0)
   const notJudged = computed(() => board.value?.notJudged ?? [])
   const flood = computed(() => board.value?.flood ?? null)
+  const pending = computed(() => board.value?.pending ?? [])
   const messagesNotOut = computed(() => board.value?.messagesNotOut ?? { count: 0, since: null })
 
   const byId = (id: number): AlertView | undefined => held.get(id)
@@ -187,7 +188,19 @@ export const useAlerts = defineStore('alerts', () => {
   )
 
   return {
-    ...{ loaded, isUnread, rows, activeRows, counts, isWaveExceeded, judged, notJudged, flood, messagesNotOut },
+    ...{
+      loaded,
+      isUnread,
+      rows,
+      activeRows,
+      counts,
+      isWaveExceeded,
+      judged,
+      notJudged,
+      pending,
+      flood,
+      messagesNotOut,
+    },
     ...{ byId, detail, history, apply, watchAll, leave, openAlert, closeAlert, readPast: api.readPast },
     ...{ acknowledge, shelve, beginDrill, endDrill, mayAcknowledge, mayShelve },
     ...{ unshelve: onLimit(api.unshelve), reset: onLimit(api.reset), takeOut: onLimit(api.takeOut) },

@@ -81,6 +81,9 @@ export async function readBoard(parts: Parts): Promise<AlertBoard> {
     ),
     judged: limits.length - notJudged.length,
     notJudged,
+    pending: limits.flatMap(({ id, title, pendingSince, state }) =>
+      pendingSince === null || isAside(state) ? [] : [{ limitId: id, title, since: pendingSince }],
+    ),
     flood: await floodOf(parts, alerts),
     messagesNotOut: notOut,
   }

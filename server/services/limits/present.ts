@@ -133,6 +133,7 @@ export async function presentLimits(parts: Pick<Parts, 'clock'>, limits: Limit[]
       state: alertState.parse(state.state),
       stateSince: state.since.toISOString(),
       isActive: Boolean(state.isActive),
+      pendingSince: state.isActive ? null : (state.pendingSince?.toISOString() ?? null),
       lastJudgedAt: state.lastWindowEndsAt?.toISOString() ?? null,
       notJudged: notJudgedReason.nullable().parse(judgedNot),
       value: state.value,

@@ -140,11 +140,24 @@ const reasonWords = (reason: string): string =>
   reason in notJudgedWords ? notJudgedWords[reason as NotJudgedReason] : reason
 
 /** Never a bare all-clear: `No limit exceeded among 12 judged; 2 not judged: Breakers, Pennow Sands (stale).` */
-export function noneExceededWords(judged: number, notJudged: AlertBoard['notJudged'], most = 2): string {
+export function noneExceededWords(
+  { judged, notJudged, pending }: Pick<AlertBoard, 'judged' | 'notJudged' | 'pending'>,
+  most = 2,
+): string {
   if (judged === 0 && notJudged.length === 0) return 'No limit is set, so none can be exceeded.'
-  const first = judged === 0 ? 'No limit could be judged' : `No limit exceeded among ${judged} judged`
-  if (notJudged.length === 0) return `${first}, 0 not judged.`
-  const named = notJudged.slice(0, most).map(({ title, reason }) => `${title} (${reasonWords(reason)})`)
-  const rest = notJudged.length - named.length
-  return `${first}; ${notJudged.length} not judged: ${named.join(', ')}${rest > 0 ? ` and ${rest} more` : ''}.`
+  const waiting = pending.map(({ title }) => title)
+  const first =
+    judged === 0
+      ? 'No limit could be judged'
+      : waiting.length > 0
+        ? `${waiting.length} of ${judged} judged beyond their limit, not yet for their delay: ${firstFew(waiting, most)}`
+        : `No limit exceeded among ${judged} judged`
+  if (notJudged.length === 0) return `${first}${waiting.length > 0 ? '; ' : ', '}0 not judged.`
+  const named = notJudged.map(({ title, reason }) => `${title} (${reasonWords(reason)})`)
+  return `${first}; ${notJudged.length} not judged: ${firstFew(named, most)}.`
+}
+
+function firstFew(names: readonly string[], most: number): string {
+  const rest = names.length - most
+  return `${names.slice(0, most).join(', ')}${rest > 0 ? ` and ${rest} more` : ''}`
 }

@@ -52,12 +52,26 @@ describe('an alert in words', () => {
 
 describe('the summary', () => {
   it('is never a bare all-clear', () => {
-    expect(noneExceededWords(12, [])).toBe('No limit exceeded among 12 judged, 0 not judged.')
-    expect(noneExceededWords(12, [{ limitId: 1, title: 'Breakers, Pennow Sands', reason: 'stale' }])).toBe(
-      'No limit exceeded among 12 judged; 1 not judged: Breakers, Pennow Sands (stale).',
+    expect(noneExceededWords({ judged: 12, notJudged: [], pending: [] })).toBe(
+      'No limit exceeded among 12 judged, 0 not judged.',
     )
-    expect(noneExceededWords(0, [{ limitId: 1, title: 'A', reason: 'stale' }])).toMatch(/^No limit could be judged; 1/)
-    expect(noneExceededWords(0, [])).toBe('No limit is set, so none can be exceeded.')
+    expect(
+      noneExceededWords({
+        judged: 12,
+        notJudged: [{ limitId: 1, title: 'Breakers, Pennow Sands', reason: 'stale' }],
+        pending: [],
+      }),
+    ).toBe('No limit exceeded among 12 judged; 1 not judged: Breakers, Pennow Sands (stale).')
+    expect(
+      noneExceededWords({ judged: 0, notJudged: [{ limitId: 1, title: 'A', reason: 'stale' }], pending: [] }),
+    ).toMatch(/^No limit could be judged; 1/)
+    const pending = ['A', 'B', 'C'].map((title, n) => ({ limitId: n + 1, title, since: '2026-11-12T14:24:00.000Z' }))
+    expect(noneExceededWords({ judged: 12, notJudged: [], pending })).toBe(
+      '3 of 12 judged beyond their limit, not yet for their delay: A, B and 1 more; 0 not judged.',
+    )
+    expect(noneExceededWords({ judged: 0, notJudged: [], pending: [] })).toBe(
+      'No limit is set, so none can be exceeded.',
+    )
   })
 
   it('counts those that wait after clearing and those on the shelf', () => {
