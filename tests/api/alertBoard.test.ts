@@ -31,6 +31,28 @@ describe('a station whose figures stop', () => {
   })
 })
 
+describe('a limit whose value waits out its on-delay', () => {
+  it('is told as beyond its line, on the board and by itself, until it is raised', async () => {
+    const limitId = await held.setLimit({ condition: { ...plainCondition, onDelaySeconds: 600 } })
+    const pendingOnBoard = async () => {
+      const { body } = await held.desk.get('/api/alerts').expect(200)
+      return body.pending.filter((limit: { limitId: number }) => limit.limitId === limitId)
+    }
+    held.parts.clock.set(at(60))
+    await held.sea(55, 60, { height: 2.8 })
+    await held.judge()
+    const limit = (await held.desk.get(`/api/limits/${limitId}`).expect(200)).body
+    expect(limit).toMatchObject({ isActive: false, pendingSince: new Date(at(55)).toISOString() })
+    expect(await pendingOnBoard()).toMatchObject([{ since: limit.pendingSince }])
+    await held.sea(61, 66, { height: 2.8 })
+    expect((await held.desk.get(`/api/limits/${limitId}`).expect(200)).body).toMatchObject({
+      isActive: true,
+      pendingSince: null,
+    })
+    expect(await pendingOnBoard()).toEqual([])
+  })
+})
+
 describe('a drill', () => {
   it('raises an exercise beside the real one, is acknowledged and ended, and counts in no measure', async () => {
     const limitId = await held.setLimit()
