@@ -1,18 +1,21 @@
-/** At the start and every night: months ahead get their partitions, months past their retention go. */
+/** At the start and every night: months ahead get their partitions, months past their retention go, old details are thinned. */
 import { schedule } from 'node-cron'
 import type { Parts, RunningPart } from '../config/parts.ts'
+import { thinDetails } from '../services/estimates.ts'
 import { keepPartitions } from '../services/readings.ts'
 import { settingInForce } from '../services/settings.ts'
 
-export async function startRetention(parts: Pick<Parts, 'clock' | 'logger'>): Promise<RunningPart> {
+export async function startRetention(parts: Pick<Parts, 'clock' | 'logger' | 'sequelize'>): Promise<RunningPart> {
   let running: Promise<void> = Promise.resolve()
   const keep = async (): Promise<void> => {
     try {
       const months = await settingInForce(parts, 'retention')
       for (const change of await keepPartitions(parts.clock.now(), months))
         parts.logger.info(change, 'partitions changed')
+      const thinned = await thinDetails(parts)
+      if (thinned > 0) parts.logger.info({ thinned }, 'details of old estimates went')
     } catch (error) {
-      parts.logger.error({ error }, 'partitions could not be kept now; they are tried again the next night')
+      parts.logger.error({ error }, 'retention could not be kept now; it is tried again the next night')
     }
   }
   await keep()

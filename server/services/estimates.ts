@@ -11,6 +11,7 @@ export { Superseded, takeOver } from './estimates/watermark.ts'
 export type { Mark } from './estimates/watermark.ts'
 export { passOver, saveEstimate } from './estimates/save.ts'
 export type { ComputedEstimate, WindowOutcome } from './estimates/save.ts'
+export { thinDetails } from './estimates/thinDetails.ts'
 export { estimateRow, inventedNote } from './estimates/row.ts'
 export type { EstimateFigures, EstimateMaking, Origin } from './estimates/row.ts'
 export {
