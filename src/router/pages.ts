@@ -8,13 +8,15 @@ export interface PageEntry {
   action: Action
   /** Has its place in the bars of narrow screens; the others stand under More there. */
   isFirst: boolean
+  /** Has its place in the wide bar; the others stand in the account's menu and on the pages they belong to. */
+  isInBar: boolean
 }
 
 export const pages: readonly PageEntry[] = [
-  { name: 'watch', title: 'Watch', keys: 'g w', action: 'stations.read', isFirst: true },
-  { name: 'stations', title: 'Stations', keys: 'g s', action: 'stations.read', isFirst: true },
-  { name: 'alerts', title: 'Alerts', keys: 'g a', action: 'alerts.read', isFirst: true },
-  { name: 'limits', title: 'Limits', keys: 'g i', action: 'limits.read', isFirst: false },
-  { name: 'messages', title: 'Messages', keys: 'g m', action: 'messages.read', isFirst: false },
-  { name: 'lists', title: 'Lists', keys: 'g t', action: 'profile.read', isFirst: false },
+  { name: 'watch', title: 'Watch', keys: 'g w', action: 'stations.read', isFirst: true, isInBar: true },
+  { name: 'stations', title: 'Stations', keys: 'g s', action: 'stations.read', isFirst: true, isInBar: true },
+  { name: 'alerts', title: 'Alerts', keys: 'g a', action: 'alerts.read', isFirst: true, isInBar: true },
+  { name: 'limits', title: 'Limits', keys: 'g i', action: 'limits.read', isFirst: false, isInBar: true },
+  { name: 'messages', title: 'Messages', keys: 'g m', action: 'messages.read', isFirst: false, isInBar: false },
+  { name: 'lists', title: 'Lists', keys: 'g t', action: 'profile.read', isFirst: false, isInBar: false },
 ]
