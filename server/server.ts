@@ -127,7 +127,9 @@ async function prepareDatabase(parts: Parts): Promise<void> {
   await claimInstallation(parts)
   if (environment.installationKind === 'demonstration') await seedDemonstration(parts)
   const file = await offerSetUp(parts)
-  if (file) logger.warn({ file }, 'there is no administrator yet: the one-time set-up token lies in this file')
+  if (!file) return
+  const page = `${environment.publicUrl}/first-administrator`
+  logger.warn({ file, page }, 'there is no administrator yet: the one-time set-up token lies in this file, its page is')
 }
 
 async function closeDatabase(sequelize: Sequelize, logger: Logger): Promise<void> {

@@ -14,9 +14,9 @@ const routes: RouteRecordRaw[] = [
     meta: { title: 'Sign in', open: true },
   },
   {
-    path: '/set-up',
-    name: 'setUp',
-    component: () => import('../pages/SetUpFirstPage.vue'),
+    path: '/first-administrator',
+    name: 'firstAdministrator',
+    component: () => import('../pages/FirstAdministratorPage.vue'),
     meta: { title: 'First administrator', open: true },
   },
   {

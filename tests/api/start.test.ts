@@ -88,6 +88,7 @@ describe('the server', () => {
     const { log } = await start({ INSTALLATION_KIND: 'real', DATABASE_URL: await createSchema() })
     const file = join(folder, 'set-up-token')
     expect(log.join()).toContain(JSON.stringify(file))
+    expect(log.join()).toContain('/first-administrator')
     expect(log.join()).not.toContain((await readFile(file, 'utf8')).trim())
   })
 

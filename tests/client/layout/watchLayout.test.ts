@@ -78,7 +78,7 @@ describe('whoever is not signed in', () => {
       },
     })
     const router = await openAt('/')
-    await vi.waitFor(() => expect(router.currentRoute.value.name).toBe('setUp'))
+    await vi.waitFor(() => expect(router.currentRoute.value.name).toBe('firstAdministrator'))
   })
 })
 

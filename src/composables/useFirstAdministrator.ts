@@ -4,7 +4,7 @@ import { ProblemError, inWords } from '../api/problem.ts'
 import { useSession } from '../stores/session.ts'
 
 /** Makes the first administrator; faults that the server finds come back by field or as one sentence. */
-export function useSetUp() {
+export function useFirstAdministrator() {
   const session = useSession()
   const busy = ref(false)
   const fault = ref<string | null>(null)

@@ -2,7 +2,7 @@
 import { longestPasswordBytes, setUpRequest, shortestPassword } from '../../../shared/schemas/session.ts'
 import type { SetUpRequest } from '../../../shared/schemas/session.ts'
 
-export type SetUpFaults = Partial<Record<keyof SetUpRequest, string>>
+export type FirstAdministratorFaults = Partial<Record<keyof SetUpRequest, string>>
 
 const words: Record<keyof SetUpRequest, string> = {
   token: 'Copy the whole token from the server’s first lines.',
@@ -11,8 +11,8 @@ const words: Record<keyof SetUpRequest, string> = {
   password: `Use at least ${shortestPassword} characters.`,
 }
 
-export function setUpFaults(details: SetUpRequest): SetUpFaults {
-  const faults: SetUpFaults = {}
+export function firstAdministratorFaults(details: SetUpRequest): FirstAdministratorFaults {
+  const faults: FirstAdministratorFaults = {}
   const parsed = setUpRequest.safeParse(details)
   for (const issue of parsed.error?.issues ?? []) {
     const field = issue.path[0]
