@@ -36,6 +36,17 @@ export type Action =
   | 'deliveries.change'
   | 'receipts.read'
   | 'receipts.confirm'
+  | 'accounts.read'
+  | 'passphraseLinks.read'
+  | 'passphraseLinks.complete'
+  | 'secondFactor.read'
+  | 'secondFactor.change'
+  | 'audits.confirm'
+  | 'settingVersions.read'
+  | 'settings.change'
+  | 'configuration.read'
+  | 'configuration.change'
+  | 'system.read'
 
 const everyone: readonly Role[] = ['admin', 'operator', 'partner']
 const anybody = 'anybody'
@@ -77,6 +88,18 @@ const rows: Record<Action, readonly Role[] | typeof anybody> = {
   // The token in the link says who.
   'receipts.read': anybody,
   'receipts.confirm': anybody,
+  'accounts.read': ['admin'],
+  // The token in the link, or the address that the link is sent to, says who.
+  'passphraseLinks.read': anybody,
+  'passphraseLinks.complete': anybody,
+  'secondFactor.read': everyone,
+  'secondFactor.change': everyone,
+  'audits.confirm': ['admin'],
+  'settingVersions.read': ['admin'],
+  'settings.change': ['admin'],
+  'configuration.read': ['admin'],
+  'configuration.change': ['admin'],
+  'system.read': ['admin'],
 }
 
 export const actions = Object.keys(rows) as Action[]

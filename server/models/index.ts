@@ -28,6 +28,7 @@ import { defineLongJob } from './longJob.ts'
 import { defineMessage } from './message.ts'
 import { definePerson } from './person.ts'
 import { defineReadingBlock } from './readingBlock.ts'
+import { defineRecoveryCode } from './recoveryCode.ts'
 import { defineRun } from './run.ts'
 import { defineSensor } from './sensor.ts'
 import { defineSeriesDay } from './seriesDay.ts'
@@ -69,6 +70,7 @@ export { LongJob } from './longJob.ts'
 export { Message } from './message.ts'
 export { Person } from './person.ts'
 export { ReadingBlock } from './readingBlock.ts'
+export { RecoveryCode } from './recoveryCode.ts'
 export { Run } from './run.ts'
 export { Sensor } from './sensor.ts'
 export { SeriesDay } from './seriesDay.ts'
@@ -111,6 +113,7 @@ const definitions = [
   defineMessage,
   definePerson,
   defineReadingBlock,
+  defineRecoveryCode,
   defineRun,
   defineSensor,
   defineSeriesDay,

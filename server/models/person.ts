@@ -9,7 +9,11 @@ export class Person extends Model<InferAttributes<Person>, InferCreationAttribut
   declare role: 'admin' | 'operator' | 'partner' | null
   declare team: 'harbour' | 'beach safety' | null
   declare passwordHash: string | null
+  /** Sealed with a key of the installation's secret. In force only where `totpSince` stands. */
   declare totpSecret: string | null
+  declare totpSince: Date | null
+  /** The newest step whose code was taken: no code is taken twice. */
+  declare totpLastStep: number | null
   declare disabledAt: Date | null
   declare preferences: Record<string, unknown> | null
   declare timeZone: CreationOptional<string>
@@ -30,7 +34,9 @@ export const definePerson = (sequelize: Sequelize): void => {
       role: DataTypes.ENUM('admin', 'operator', 'partner'),
       team: DataTypes.ENUM('harbour', 'beach safety'),
       passwordHash: DataTypes.STRING(72),
-      totpSecret: DataTypes.STRING(120),
+      totpSecret: DataTypes.STRING(160),
+      totpSince: DataTypes.DATE(3),
+      totpLastStep: DataTypes.BIGINT.UNSIGNED,
       disabledAt: DataTypes.DATE(3),
       preferences: DataTypes.JSON,
       timeZone: { type: DataTypes.STRING(60), allowNull: false, defaultValue: 'Etc/UTC' },

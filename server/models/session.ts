@@ -12,6 +12,8 @@ export class Session extends Model<InferAttributes<Session>, InferCreationAttrib
   declare absoluteUntil: Date
   declare endedAt: Date | null
   declare endReason: string | null
+  /** What the browser says of itself, in two words. */
+  declare device: string | null
 }
 
 export const defineSession = (sequelize: Sequelize): void => {
@@ -26,6 +28,7 @@ export const defineSession = (sequelize: Sequelize): void => {
       absoluteUntil: { type: DataTypes.DATE(3), allowNull: false },
       endedAt: DataTypes.DATE(3),
       endReason: DataTypes.STRING(40),
+      device: DataTypes.STRING(60),
     },
     { sequelize, tableName: 'sessions' },
   )
