@@ -13,6 +13,13 @@ export type Action =
   | 'stationKeys.read'
   | 'stationKeys.change'
   | 'stationHealth.read'
+  | 'stationSetUp.read'
+  | 'stationSetUp.change'
+  | 'imports.read'
+  | 'imports.change'
+  | 'auxiliary.read'
+  | 'auxiliary.change'
+  | 'auxiliaryFeed.change'
   | 'jobs.read'
   | 'jobs.cancel'
   | 'log.read'
@@ -62,6 +69,14 @@ const rows: Record<Action, readonly Role[] | typeof anybody> = {
   'settings.read': everyone,
   'stations.read': everyone,
   'stationHealth.read': ['admin', 'operator'],
+  'stationSetUp.read': ['admin'],
+  'stationSetUp.change': ['admin'],
+  'imports.read': ['admin'],
+  'imports.change': ['admin'],
+  'auxiliary.read': everyone,
+  'auxiliary.change': ['admin'],
+  // The station's key says who.
+  'auxiliaryFeed.change': anybody,
   'stationKeys.read': ['admin'],
   'stationKeys.change': ['admin'],
   'jobs.read': everyone,
@@ -112,7 +127,8 @@ export function may(role: Role | null, action: Action): boolean {
 }
 
 /** Actions that change something: refused while a session is read-only (past its absolute limit). */
-export const changes = (action: Action): boolean => /\.(change|cancel|complete|acknowledge|shelve|confirm)$/.test(action)
+export const changes = (action: Action): boolean =>
+  /\.(change|cancel|complete|acknowledge|shelve|confirm)$/.test(action)
 
 /** Which action a live room asks for; null for a room that does not exist. */
 export function actionOfRoom(room: string): Action | null {

@@ -24,6 +24,10 @@ export const stationSettingsContent = z.strictObject({
   graceSeconds: z.number().int().min(0).max(600),
   /** Bearings (degrees true, clockwise from first to second) from which no wave can come. */
   landSectors: z.array(z.tuple([z.number(), z.number()])),
+  /** Bearings (degrees true, clockwise from first to second) of the open sea; absent: all that is not land. */
+  openSeaSector: z.tuple([z.number(), z.number()]).optional(),
+  /** Shortest and longest period the array is meant to read, s; absent: 4 to 20. The design check asks about them. */
+  periodRange: z.tuple([z.number().min(2), z.number().max(40)]).optional(),
   estimate: estimateSettings,
 })
 export type StationSettingsContent = z.infer<typeof stationSettingsContent>
