@@ -13,6 +13,8 @@ export interface Padding {
 
 export interface PlanFrame {
   project: (longitude: number, latitude: number) => Point
+  /** Back from a point of the drawing. */
+  locate: (x: number, y: number) => { longitude: number; latitude: number }
   metresPerUnit: number
 }
 
@@ -52,6 +54,10 @@ export function planFrame(
       centre[0] + ((longitude - middle.longitude) * eastPerDegree) / metresPerUnit,
       centre[1] - ((latitude - middle.latitude) * metresPerDegree) / metresPerUnit,
     ],
+    locate: (x, y) => ({
+      longitude: middle.longitude + ((x - centre[0]) * metresPerUnit) / eastPerDegree,
+      latitude: middle.latitude - ((y - centre[1]) * metresPerUnit) / metresPerDegree,
+    }),
   }
 }
 
