@@ -20,11 +20,19 @@ const words: Record<UnresolvedReason, { title: string; sentence: string }> = {
   },
   ambiguous: {
     title: 'Direction ambiguous',
-    sentence: 'Two directions fit the lags nearly equally well, so that none is given.',
+    sentence: 'Two directions fit the lags nearly equally well. The one before is held until one of them clearly fits.',
   },
   'geometry-doubtful': {
     title: 'Frozen: geometry doubtful',
     sentence: 'Parts of the array disagree: a position or a clock does not fit. No vector until a person has decided.',
+  },
+  'standing-sea': {
+    title: 'Standing or reflected sea',
+    sentence: 'Waves of one period run against each other with locked phases, as before a wall: no single vector.',
+  },
+  'surf-zone': {
+    title: 'Surf zone over the array',
+    sentence: 'The waves break over the array (height above 0.6 of the depth): no single vector.',
   },
   clock: {
     title: 'Clock too far off',

@@ -25,7 +25,7 @@ export interface EstimateAnswer {
 
 export type EstimateFigures = Omit<
   EstimateResult,
-  'spectrum' | 'directionalSpectrum' | 'tests' | 'traceSpeeds' | 'subArrays'
+  'spectrum' | 'directionalSpectrum' | 'tests' | 'traceSpeeds' | 'subArrays' | 'waveByWave' | 'opposedTrains'
 >
 
 export interface WorkerRequest {

@@ -1,10 +1,11 @@
 /** A worker thread: takes a window, answers its estimate. One at a time, in the order they come. */
 import { setPriority } from 'node:os'
 import { parentPort } from 'node:worker_threads'
+import type { EstimateResult } from '../../shared/schemas/estimate.ts'
 import { estimate } from '../../shared/waves/estimate.ts'
 import { judgeStationClock } from '../../shared/waves/stationClock.ts'
 import { trackSystems } from '../../shared/waves/trackSystems.ts'
-import type { EstimateAnswer, EstimateTask, WorkerReply, WorkerRequest } from './estimateTask.ts'
+import type { EstimateAnswer, EstimateFigures, EstimateTask, WorkerReply, WorkerRequest } from './estimateTask.ts'
 import { packDetail } from './packDetail.ts'
 import { resultDigest } from './resultDigest.ts'
 
@@ -13,8 +14,18 @@ function answer({ window, windowEndsAt, clockOffset, known }: EstimateTask): Est
   const judged = judgeStationClock(bare, clockOffset)
   const { systems, tracks, nextKey } = trackSystems(known, judged.systems, windowEndsAt)
   const result = { ...judged, systems }
-  const { spectrum: _s, directionalSpectrum: _d, tests: _t, traceSpeeds: _p, subArrays: _a, ...figures } = result
-  return { figures, known: { tracks, nextKey }, digest: resultDigest(bare), detail: packDetail(result) }
+  return {
+    figures: figuresOf(result),
+    known: { tracks, nextKey },
+    digest: resultDigest(bare),
+    detail: packDetail(result),
+  }
+}
+
+function figuresOf(result: EstimateResult): EstimateFigures {
+  const { spectrum: _s, directionalSpectrum: _d, waveByWave: _w, opposedTrains: _o, ...rest } = result
+  const { tests: _t, traceSpeeds: _p, subArrays: _a, ...figures } = rest
+  return figures
 }
 
 /** Linux keeps a priority for each thread: readings and pages go before estimates. Elsewhere it is the process's. */

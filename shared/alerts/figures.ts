@@ -63,7 +63,14 @@ export interface Reading {
 export const nothing: Reading = { value: NaN, sd: NaN, atMost: NaN }
 
 /** These refuse a direction while height and period stand. */
-const directionOnly: UnresolvedReason[] = ['no-resolvable-wave', 'ambiguous', 'geometry-doubtful', 'collinear-array']
+const directionOnly: UnresolvedReason[] = [
+  'no-resolvable-wave',
+  'ambiguous',
+  'geometry-doubtful',
+  'collinear-array',
+  'standing-sea',
+  'surf-zone',
+]
 
 /**
  * The flag that a quantity carries. A refused vector does not fail the height: a calm that clears has no resolvable

@@ -10,7 +10,8 @@ export const qualityFlag = z.union([z.literal(1), z.literal(2), z.literal(3), z.
 export type QualityFlag = z.infer<typeof qualityFlag>
 
 /**
- * Why no vector is given. `clock`: the station's clock is too far off for a live estimate. `not-computed`: the
+ * Why no vector is given. `standing-sea`: waves run against each other with locked phases, as before a wall. `surf-zone`: waves break
+ * over the array. `clock`: the station's clock is too far off for a live estimate. `not-computed`: the
  * computation of this window failed twice, so nothing is known of it.
  */
 export const unresolvedReason = z.enum([
@@ -20,6 +21,8 @@ export const unresolvedReason = z.enum([
   'no-resolvable-wave',
   'ambiguous',
   'geometry-doubtful',
+  'standing-sea',
+  'surf-zone',
   'clock',
   'not-computed',
 ])
@@ -92,6 +95,11 @@ export const sensorVerdict = z.object({
   /** Estimated clock offset in seconds, when the `clock` finding stands. */
   clockOffset: z.number().nullable(),
   clockOffsetSd: z.number().nullable(),
+  /** Estimated displacement along the waves' way in metres, when the `position` finding stands. */
+  positionOffset: z.number().nullable().default(null),
+  positionOffsetSd: z.number().nullable().default(null),
+  /** Depth of still water, m, that the sensor's own mean level says; for the drift of one against the others. */
+  waterDepth: z.number().nullable().default(null),
 })
 export type SensorVerdict = z.infer<typeof sensorVerdict>
 
@@ -114,6 +122,44 @@ export const subArrayFit = z.object({
   toward: z.number(),
   speed: z.number(),
   agrees: z.boolean(),
+})
+
+/** Wave by wave, up-crossing to up-crossing, on the surface within the band of the spectrum. */
+export const waveByWave = z.object({
+  /** H_1/3, mean height of the highest third, mean over the sensors, m. */
+  significantHeight: z.number(),
+  /** The highest single wave, m, and the sensor it passed. */
+  greatestHeight: z.number(),
+  greatestAt: z.string(),
+  /** T_z, mean time between up-crossings, s. */
+  meanPeriod: z.number(),
+  /** Waves counted, mean over the sensors: fewer than 100 say little of H_1/3. */
+  waves: z.number(),
+  /** The surface was reconstructed from pressure by linear theory. */
+  isReconstructed: z.boolean(),
+})
+export type WaveByWave = z.infer<typeof waveByWave>
+
+/** Two trains of one period against each other with locked phases. */
+export const opposedTrains = z.object({
+  /** Travel of the stronger train, and of the weaker, degrees true. */
+  toward: z.number(),
+  opposedToward: z.number(),
+  /** s */
+  period: z.number(),
+  /** Amplitude of the weaker over that of the stronger, 0 to 1. */
+  amplitudeRatio: z.number(),
+  /** 1: every wave comes back with the same lag; unrelated seas lie near 0. */
+  phaseLock: z.number(),
+})
+export type OpposedTrains = z.infer<typeof opposedTrains>
+
+/** Another method's directional density, in hundredths of its own highest, row by frequency, toward 0°, 10°, 20° … */
+export const besideMethod = z.object({
+  method: z.string(),
+  /** m²/Hz/deg that 100 stands for. */
+  highest: z.number(),
+  hundredths: z.array(z.array(z.number().int())),
 })
 
 export const estimateResult = z.object({
@@ -153,6 +199,8 @@ export const estimateResult = z.object({
       degreesOfFreedom: z.number(),
       /** Above this no energy is claimed, Hz. */
       cutoff: z.number(),
+      /** What a tail S ∝ f^exponent above the cut-off would make of H_m0, m; no height given here holds it. */
+      tail: z.object({ exponent: z.number(), significantWaveHeight: z.number() }).nullable().default(null),
     })
     .nullable(),
   /** Directional density on `directions` (toward, degrees true) by `frequency`, m²/Hz/deg; null where the array gives none. */
@@ -163,7 +211,11 @@ export const estimateResult = z.object({
       frequency: z.array(z.number()),
       directions: z.array(z.number()),
       density: z.array(z.array(z.number())),
+      /** Conventional beam and Capon's method at the same frequencies. */
+      beside: z.array(besideMethod).default([]),
     })
     .nullable(),
+  waveByWave: waveByWave.nullable().default(null),
+  opposedTrains: opposedTrains.nullable().default(null),
 })
 export type EstimateResult = z.infer<typeof estimateResult>

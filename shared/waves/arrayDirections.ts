@@ -1,12 +1,14 @@
 /**
- * Directional density of the sea by frequency, of any shape and number of trains, by IMLM. Neighbouring groups are put together until
+ * Directional density of the sea by frequency, of any shape and number of trains, by IMLM, with the conventional beam and Capon's
+ * method beside it. Neighbouring groups are put together until
  * the matrix has twice as many averages as sensors; the directions are steered with the wave numbers of still water.
  */
-import type { EstimateResult } from '../schemas/estimate.ts'
+import type { z } from 'zod'
+import type { besideMethod, EstimateResult } from '../schemas/estimate.ts'
 import type { ArrayFrame } from './arrayGeometry.ts'
 import type { ArraySpectra } from './arraySpectra.ts'
 import { noiseDensity } from './bandMatrices.ts'
-import { iteratedCapon, steering } from './directionalMethods.ts'
+import { capon, conventional, iteratedCapon, steering } from './directionalMethods.ts'
 import { waveNumber } from './dispersion.ts'
 import { complexMatrix } from './waveMatrices.ts'
 import type { ComplexMatrix } from './waveMatrices.ts'
@@ -21,7 +23,12 @@ const leastDensity = 0.01
 /** Share of the energy at frequencies that must have settled for the whole to count as converged. */
 const settledShare = 0.95
 
-/** Densities in m²/Hz/degree with four digits, directions toward, degrees true; null where no frequency has enough averages. */
+/** Densities below this share of the highest are kept as nothing. */
+const leastShare = 1e-4
+/** The other methods keep every so many directions. */
+const besideEvery = 2
+
+/** Densities in m²/Hz/degree with three digits, directions toward, degrees true; null where no frequency has enough averages. */
 export function arrayDirections(
   spectra: ArraySpectra,
   frame: ArrayFrame,
@@ -32,26 +39,55 @@ export function arrayDirections(
   const stretches = mergeGroups(spectra)
   const frequency: number[] = []
   const density: number[][] = []
+  const beam: number[][] = []
+  const maximumLikelihood: number[][] = []
   let energy = 0
   let settled = 0
   for (const stretch of stretches) {
     const k = waveNumber(2 * Math.PI * stretch.frequency, depth, gravity)
     const steer = steering(frame.x, frame.y, k, count, Math.PI / 2 - frame.axis)
     const found = iteratedCapon(steer, stretch.coherence, stretch.noise)
-    if (!found) continue
+    const likeliest = capon(steer, stretch.coherence)
+    if (!found || !likeliest) continue
     energy += stretch.energy
     if (found.converged) settled += stretch.energy
     frequency.push(stretch.frequency)
-    // Angles run anticlockwise from north, bearings clockwise.
-    density.push(
-      Array.from({ length: count }, (_, d) =>
-        Number(((stretch.density * found.share[(count - d) % count]) / step).toPrecision(4)),
-      ),
-    )
+    density.push(byBearing(found.share, stretch.density))
+    beam.push(byBearing(conventional(steer, stretch.coherence), stretch.density))
+    maximumLikelihood.push(byBearing(likeliest, stretch.density))
   }
   if (frequency.length === 0) return null
   const directions = Array.from({ length: count }, (_, d) => d * step)
-  return { method: 'IMLM', converged: settled >= settledShare * energy, frequency, directions, density }
+  const beside = [inHundredths('conventional', beam), inHundredths('Capon', maximumLikelihood)]
+  return {
+    method: 'IMLM',
+    converged: settled >= settledShare * energy,
+    frequency,
+    directions,
+    density: rounded(density),
+    beside,
+  }
+}
+
+/** Far below the error of any of them; what is nothing beside the highest is kept as nothing. */
+function rounded(density: readonly number[][]): number[][] {
+  const highest = Math.max(...density.map((row) => Math.max(...row)))
+  return density.map((row) => row.map((value) => (value < leastShare * highest ? 0 : Number(value.toPrecision(3)))))
+}
+
+/** Densities per degree toward 0, 5, 10 … degrees true: the angles run anticlockwise from north, bearings clockwise. */
+function byBearing(share: Float64Array, density: number): number[] {
+  const count = share.length
+  return Array.from({ length: count }, (_, d) => (density * share[(count - d) % count]) / step)
+}
+
+/** Coarse on purpose: the detail of every minute is kept, and these two are there to look at. */
+function inHundredths(method: string, density: readonly number[][]): z.infer<typeof besideMethod> {
+  const highest = Math.max(...density.map((row) => Math.max(...row)))
+  const hundredths = density.map((row) =>
+    row.flatMap((value, d) => (d % besideEvery === 0 ? Math.round((100 * value) / highest) : [])),
+  )
+  return { method, highest: Number(highest.toPrecision(3)), hundredths }
 }
 
 interface Stretch {

@@ -29,6 +29,9 @@ export function blankResult(window: ArrayWindow, prepared: PreparedArray): Estim
       significantWaveHeight: null,
       clockOffset: null,
       clockOffsetSd: null,
+      positionOffset: null,
+      positionOffsetSd: null,
+      waterDepth: null,
     })),
     traceSpeeds: [],
     tests: prepared.tests,
@@ -37,6 +40,8 @@ export function blankResult(window: ArrayWindow, prepared: PreparedArray): Estim
     runnerUp: null,
     spectrum: null,
     directionalSpectrum: null,
+    waveByWave: null,
+    opposedTrains: null,
   }
 }
 

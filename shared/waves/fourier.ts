@@ -24,6 +24,20 @@ export function fourierPlan(size: number): FourierPlan {
   return plan
 }
 
+/** Real series x(t) = Re Σ_k c_k exp(i 2π k t / size) of one-sided coefficients c (interleaved, from bin `first` on). */
+export function realSeries(size: number, first: number, coefficients: Float64Array): Float64Array {
+  const known = inverses.get(size)
+  const fft = known ?? new FFT(size)
+  if (!known) inverses.set(size, fft)
+  const input = new Float64Array(2 * size)
+  input.set(coefficients, 2 * first)
+  const output = new Float64Array(2 * size)
+  fft.inverseTransform(output, input)
+  return Float64Array.from({ length: size }, (_, n) => output[2 * n] * size)
+}
+
+const inverses = new Map<number, FFT>()
+
 /** Smallest power of two not below n, at least 2. */
 export function powerOfTwoFrom(n: number): number {
   let size = 2

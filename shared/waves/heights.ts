@@ -5,6 +5,7 @@ import { noiseDensity } from './bandMatrices.ts'
 import type { PreparedArray } from './preparedArray.ts'
 import { spectralParameters } from './spectralParameters.ts'
 import { surfaceSpectrum } from './surfaceSpectrum.ts'
+import { waveByWave } from './waveByWave.ts'
 import type { ArrayWindow } from './window.ts'
 
 export function addHeights(
@@ -37,6 +38,7 @@ export function addHeights(
     energyPeriod: parameters.energyPeriod,
     energyFlux: parameters.energyFlux,
     sensors: result.sensors.map((s) => ({ ...s, significantWaveHeight: heightOf.get(s.id) ?? null })),
+    waveByWave: waveByWave(window, prepared, spectra),
     spectrum: surfaceSpectrum(window, prepared, spectra, 1 / peakFrequency(bands.frequency, surface)),
   }
 }

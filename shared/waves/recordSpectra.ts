@@ -6,7 +6,7 @@
 import { fourierPlan, powerOfTwoFrom } from './fourier.ts'
 
 /** Share of the record tapered by a cosine at each end (Tukey 1967). */
-const taperShare = 0.04
+export const taperShare = 0.04
 
 export interface FineSpectra {
   /** Distance of the bins, Hz. */
@@ -22,6 +22,8 @@ export interface FineSpectra {
   padding: number
   /** Independent averages that one bin stands for (below 1 for a zero-padded record). */
   averagesPerBin: number
+  /** What the transform of the tapered record was multiplied by. */
+  scale: number
 }
 
 /**
@@ -69,7 +71,16 @@ export function fineSpectra(
   })
   // Bins within one taper's bandwidth say the same: Σw²² / (N Σw⁴) of a bin of the unpadded record.
   const averagesPerBin = ((power * power) / (length * fourth)) * (length / size) * covered
-  return { step, first: firstBin * step, count, series: spectra, energyFactor, padding: size / length, averagesPerBin }
+  return {
+    step,
+    first: firstBin * step,
+    count,
+    series: spectra,
+    energyFactor,
+    padding: size / length,
+    averagesPerBin,
+    scale,
+  }
 }
 
 const tapers = new Map<number, Float64Array>()

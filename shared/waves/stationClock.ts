@@ -63,5 +63,7 @@ export function withoutFigures(result: Verdicts): EstimateResult {
     runnerUp: null,
     spectrum: null,
     directionalSpectrum: null,
+    waveByWave: null,
+    opposedTrains: null,
   }
 }

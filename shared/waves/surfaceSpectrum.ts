@@ -8,7 +8,10 @@ import { floorFrom, floorTo, metresPerDecibar } from './arraySpectra.ts'
 import { pressureResponse, waveNumber } from './dispersion.ts'
 import type { PreparedArray } from './preparedArray.ts'
 import { independentAverages, segmentSpectra, welchDensity } from './spectrum.ts'
+import { heightWithTail, tailExponent } from './spectralTail.ts'
 import type { ArrayWindow } from './window.ts'
+
+type Tail = NonNullable<EstimateResult['spectrum']>['tail']
 
 /** Segments of about two minutes; a longer swell needs finer bins than 0.008 Hz. */
 const usualSegmentSeconds = 128
@@ -48,7 +51,16 @@ export function surfaceSpectrum(
     density,
     degreesOfFreedom: Math.round(2 * independentAverages(segments.segments)),
     cutoff: spectra.cutoff,
+    tail: tailOf(frequency, density, segments.step, spectra.cutoff),
   }
+}
+
+function tailOf(frequency: number[], density: number[], step: number, cutoff: number): Tail {
+  const m0 = density.reduce((sum, value) => sum + value * step, 0)
+  const last = density.filter((_, n) => frequency[n] > 0.9 * cutoff)
+  const atCutoff = last.length > 0 ? last.reduce((sum, value) => sum + value, 0) / last.length : 0
+  const height = heightWithTail(4 * Math.sqrt(m0), cutoff, atCutoff)
+  return m0 > 0 ? { exponent: tailExponent, significantWaveHeight: height } : null
 }
 
 function surfacePerDecibar(window: ArrayWindow, frequency: number, heightAboveBed: number): number {

@@ -66,6 +66,9 @@ function answerTo({ window, known, windowEndsAt }: EstimateTask): EstimateAnswer
       significantWaveHeight: null,
       clockOffset: null,
       clockOffsetSd: null,
+      positionOffset: null,
+      positionOffsetSd: null,
+      waterDepth: null,
     })),
     traceSpeeds: [],
     tests: [],
@@ -74,6 +77,8 @@ function answerTo({ window, known, windowEndsAt }: EstimateTask): EstimateAnswer
     runnerUp: null,
     spectrum: null,
     directionalSpectrum: null,
+    waveByWave: null,
+    opposedTrains: null,
   }
   return {
     figures: result,

@@ -19,7 +19,7 @@ const good: EstimateResult = {
   ...bare,
   resolved: true,
   significantWaveHeight: 1.23456789,
-  spectrum: { frequency: [0.05, 0.1], density: [0.123456789, 1e-9], degreesOfFreedom: 48, cutoff: 0.3 },
+  spectrum: { frequency: [0.05, 0.1], density: [0.123456789, 1e-9], degreesOfFreedom: 48, cutoff: 0.3, tail: null },
   systems: [
     {
       key: 1,

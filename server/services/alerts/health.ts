@@ -33,7 +33,8 @@ const newest = (sequelize: Parts['sequelize'], stationId: number, which: string)
 
 /** As `flagOf` has it: a refused direction leaves the height, a failed window gives none. */
 const usable = `significantWaveHeight IS NOT NULL AND (qualityFlag IN (1, 2, 3)
-  OR reason IN ('no-resolvable-wave', 'ambiguous', 'geometry-doubtful', 'collinear-array'))`
+  OR reason IN ('no-resolvable-wave', 'ambiguous', 'geometry-doubtful', 'collinear-array',
+  'standing-sea', 'surf-zone'))`
 
 const none: HealthFigures = {
   dataAge: null,

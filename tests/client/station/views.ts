@@ -27,6 +27,9 @@ export const detail = (changes: Partial<EstimateResult> = {}): EstimateResult =>
     significantWaveHeight: 2.3,
     clockOffset: null,
     clockOffsetSd: null,
+    positionOffset: null,
+    positionOffsetSd: null,
+    waterDepth: null,
   })),
   traceSpeeds: [
     { between: ['OL-2', 'OL-1'], distance: 33, lag: -1.6, lagSd: 0.03, speed: 20, coherence: 0.9, residual: 0.02 },
@@ -43,8 +46,10 @@ export const detail = (changes: Partial<EstimateResult> = {}): EstimateResult =>
   ],
   lagResidualRms: 0.06,
   runnerUp: { toward: 112, speed: 7.2, ratio: 0.41 },
-  spectrum: { frequency: [0.05, 0.08, 0.1, 0.2], density: [0.5, 12.1, 3, 0.2], degreesOfFreedom: 32, cutoff: 0.3 },
+  spectrum: { frequency: [0.05, 0.08, 0.1, 0.2], density: [0.5, 12.1, 3, 0.2], degreesOfFreedom: 32, cutoff: 0.3, tail: null },
   directionalSpectrum: null,
+  waveByWave: null,
+  opposedTrains: null,
   ...changes,
 })
 
