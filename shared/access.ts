@@ -33,6 +33,10 @@ export type Action =
   | 'cap.read'
   | 'limits.read'
   | 'limits.change'
+  | 'dailyEmail.read'
+  | 'dailyEmail.change'
+  | 'watchRules.read'
+  | 'watchRules.change'
   | 'lists.read'
   | 'lists.change'
   | 'people.read'
@@ -43,6 +47,10 @@ export type Action =
   | 'deliveries.change'
   | 'receipts.read'
   | 'receipts.confirm'
+  | 'places.read'
+  | 'places.change'
+  | 'notices.change'
+  | 'observations.change'
   | 'accounts.read'
   | 'passphraseLinks.read'
   | 'passphraseLinks.complete'
@@ -92,6 +100,11 @@ const rows: Record<Action, readonly Role[] | typeof anybody> = {
   'cap.read': anybody,
   'limits.read': ['admin', 'operator'],
   'limits.change': ['operator'],
+  'dailyEmail.read': ['admin', 'operator'],
+  'dailyEmail.change': ['admin', 'operator'],
+  'watchRules.read': ['admin', 'operator'],
+  // Who is bound by a rule does not lift it.
+  'watchRules.change': ['admin'],
   'lists.read': ['admin', 'operator'],
   'lists.change': ['admin', 'operator'],
   'people.read': ['admin', 'operator'],
@@ -103,6 +116,11 @@ const rows: Record<Action, readonly Role[] | typeof anybody> = {
   // The token in the link says who.
   'receipts.read': anybody,
   'receipts.confirm': anybody,
+  'places.read': everyone,
+  'places.change': ['admin'],
+  // Partners at the places of their team alone, which their services ask.
+  'notices.change': ['operator', 'partner'],
+  'observations.change': ['operator', 'partner'],
   'accounts.read': ['admin'],
   // The token in the link, or the address that the link is sent to, says who.
   'passphraseLinks.read': anybody,
@@ -135,6 +153,7 @@ export function actionOfRoom(room: string): Action | null {
   if (room === 'stations' || /^(station|traces):\d+$/.test(room)) return 'stations.read'
   if (room === 'system') return 'jobs.read'
   if (room === 'alerts') return 'alerts.read'
+  if (room === 'places' || /^place:\d+$/.test(room)) return 'places.read'
   if (room === 'limits') return 'limits.read'
   if (room === 'messages') return 'messages.read'
   return null

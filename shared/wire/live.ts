@@ -1,8 +1,8 @@
 /** Live: messages between the server and a browser on `/live` (session cookie and Origin checked before the upgrade). */
 import { z } from 'zod'
 
-/** Rooms: `stations`, `station:ID`, `traces:ID`, `system`, `alerts`, `limits`, `messages`; places and watch join with their features. */
-export const roomName = z.string().regex(/^(stations|system|alerts|limits|messages|(station|traces):[1-9][0-9]{0,8})$/)
+/** Rooms: `stations`, `station:ID`, `traces:ID`, `system`, `alerts`, `limits`, `messages`, `places`, `place:ID`; watch joins with its feature. */
+export const roomName = z.string().regex(/^(stations|system|alerts|limits|messages|places|(station|traces|place):[1-9][0-9]{0,8})$/)
 
 export const liveClientMessage = z.discriminatedUnion('type', [
   z.strictObject({ type: z.literal('subscribe'), rooms: z.array(roomName).min(1).max(100) }),
@@ -50,4 +50,6 @@ export const liveEventKinds = {
   limit: 'limit',
   /** room `messages`; body: messageView */
   message: 'message',
+  /** rooms `places` and `place:ID`; body: placeView */
+  place: 'place',
 } as const
