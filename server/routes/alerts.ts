@@ -6,6 +6,7 @@ import { acknowledgeAlert, beginDrill, endDrill, listAlerts, measurePerformance,
 import { idInPath } from './parameters.ts'
 import { route } from './registry.ts'
 import type { Route } from './registry.ts'
+import { consentDeadline, consentIn } from './secondPerson.ts'
 
 const alertInPath = z.object({ alertId: idInPath })
 const wholeNumber = (least: number, most: number, usual: number) =>
@@ -89,9 +90,11 @@ export const alertRoutes = (parts: Parts): Route[] => [
     params: alertInPath,
     body: shelving,
     answer: alertView,
-    async handle({ params: { alertId }, body, caller }) {
+    deadlineMilliseconds: consentDeadline,
+    async handle({ params: { alertId }, body, caller, request }) {
       const { limitId } = await readAlert(parts, alertId)
-      await shelveLimit(parts, await officeOf(parts), limitId, body, caller.person.id)
+      const order = { ...body, consent: await consentIn(parts, body, caller, request) }
+      await shelveLimit(parts, await officeOf(parts), limitId, order, caller.person.id)
       return readAlert(parts, alertId)
     },
   }),

@@ -18,6 +18,7 @@ import { setUpRoutes } from './setUp.ts'
 import { stationHealthRoutes } from './stationHealth.ts'
 import { stationKeyRoutes } from './stationKeys.ts'
 import { stationRoutes } from './stations.ts'
+import { watchRulesRoutes } from './watchRules.ts'
 
 const features: ((parts: Parts) => Route[])[] = [
   installationRoutes,
@@ -35,6 +36,7 @@ const features: ((parts: Parts) => Route[])[] = [
   listRoutes,
   peopleRoutes,
   receiptRoutes,
+  watchRulesRoutes,
 ]
 
 export const allRoutes = (parts: Parts): Route[] =>

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { presentQuantity, quantities } from '../../shared/alerts/quantities.ts'
-import { shelving, withReason } from '../../shared/schemas/alert.ts'
+import { shelving, withReason, withReasonAndConsent } from '../../shared/schemas/alert.ts'
 import { backTestQuestion, backTestView, limitChange, limitDraft, limitView, limitWithHistory, quantityView } from '../../shared/schemas/limit.ts' // prettier-ignore
 import type { Parts } from '../config/parts.ts'
 import { officeOf } from '../presenters/office.ts'
@@ -9,6 +9,7 @@ import type { Office } from '../services/alerts.ts'
 import { askBackTest, changeLimit, createLimit, listLimits, readLimit, readLimitHistory, retireLimit } from '../services/limits.ts' // prettier-ignore
 import { versionIn } from './ifMatch.ts'
 import { idInPath } from './parameters.ts'
+import { consentDeadline, consentIn } from './secondPerson.ts'
 import { route } from './registry.ts'
 import type { Route } from './registry.ts'
 
@@ -74,8 +75,10 @@ export const limitRoutes = (parts: Parts): Route[] => [
     body: limitDraft,
     answer: limitView,
     status: 201,
-    async handle({ body, caller }) {
-      const limitId = await createLimit(parts, await officeOf(parts), body, caller.person.id)
+    deadlineMilliseconds: consentDeadline,
+    async handle({ body, caller, request }) {
+      const consent = await consentIn(parts, body, caller, request)
+      const limitId = await createLimit(parts, await officeOf(parts), { ...body, consent }, caller.person.id)
       return readLimit(parts, limitId)
     },
   }),
@@ -87,8 +90,11 @@ export const limitRoutes = (parts: Parts): Route[] => [
     params: limitInPath,
     body: limitChange,
     answer: limitView,
+    deadlineMilliseconds: consentDeadline,
     async handle({ params: { limitId }, body, caller, request }) {
-      const change = { limitId, version: versionIn(request), change: body, personId: caller.person.id }
+      const version = versionIn(request)
+      const consent = await consentIn(parts, body, caller, request)
+      const change = { limitId, version, change: { ...body, consent }, personId: caller.person.id }
       await changeLimit(parts, await officeOf(parts), change)
       return readLimit(parts, limitId)
     },
@@ -99,10 +105,13 @@ export const limitRoutes = (parts: Parts): Route[] => [
     action: 'limits.change',
     summary: 'Retire a limit, with a reason; it is kept with its alerts; needs If-Match',
     params: limitInPath,
-    body: withReason,
+    body: withReasonAndConsent,
     answer: limitView,
+    deadlineMilliseconds: consentDeadline,
     async handle({ params: { limitId }, body, caller, request }) {
-      const order = { limitId, version: versionIn(request), reason: body.reason, personId: caller.person.id }
+      const version = versionIn(request)
+      const consent = await consentIn(parts, body, caller, request)
+      const order = { limitId, version, reason: body.reason, consent, personId: caller.person.id }
       await retireLimit(parts, await officeOf(parts), order)
       return readLimit(parts, limitId)
     },
@@ -115,14 +124,31 @@ export const limitRoutes = (parts: Parts): Route[] => [
     params: limitInPath,
     body: shelving,
     answer: limitView,
-    async handle({ params: { limitId }, body, caller }) {
-      await shelveLimit(parts, await officeOf(parts), limitId, body, caller.person.id)
+    deadlineMilliseconds: consentDeadline,
+    async handle({ params: { limitId }, body, caller, request }) {
+      const order = { ...body, consent: await consentIn(parts, body, caller, request) }
+      await shelveLimit(parts, await officeOf(parts), limitId, order, caller.person.id)
       return readLimit(parts, limitId)
     },
   }),
   act(parts, 'unshelve', 'alerts.shelve', 'Take a limit off the shelf; it is asked afresh', unshelveLimit),
   act(parts, 'reset', 'alerts.shelve', 'Let go an alert that has latched', resetLimit),
-  act(parts, 'takeOutOfService', 'limits.change', 'Take a limit out of service', takeOutOfService),
+  route({
+    method: 'post',
+    path: '/api/limits/:limitId/takeOutOfService',
+    action: 'limits.change',
+    summary: 'Take a limit out of service; an urgent one needs a second person or a written reason',
+    params: limitInPath,
+    body: withReasonAndConsent,
+    answer: limitView,
+    deadlineMilliseconds: consentDeadline,
+    async handle({ params: { limitId }, body, caller, request }) {
+      const consent = await consentIn(parts, body, caller, request)
+      const by = { personId: caller.person.id, note: body.reason, consent }
+      await takeOutOfService(parts, await officeOf(parts), limitId, by)
+      return readLimit(parts, limitId)
+    },
+  }),
   act(parts, 'returnToService', 'limits.change', 'Put a limit back in service; it is asked afresh', returnToService),
   route({
     method: 'post',

@@ -2,7 +2,7 @@ import { sessionView, signInRequest } from '../../shared/schemas/session.ts'
 import type { Parts } from '../config/parts.ts'
 import { sessionCookieName, sessionCookieOptions } from '../config/sessionCookie.ts'
 import { endSession, presentSession, signIn } from '../services/sessions.ts'
-import { createSignInThrottle } from '../services/sessions/signInThrottle.ts'
+import { throttleOf } from '../services/sessions/signInThrottle.ts'
 import { route } from './registry.ts'
 import type { Route } from './registry.ts'
 
@@ -10,7 +10,7 @@ import type { Route } from './registry.ts'
 const signInDeadline = 20_000
 
 export function sessionRoutes(parts: Parts): Route[] {
-  const throttle = createSignInThrottle(parts.clock)
+  const throttle = throttleOf(parts)
   const cookieName = sessionCookieName(parts.environment)
   const cookieOptions = sessionCookieOptions(parts.environment)
   return [

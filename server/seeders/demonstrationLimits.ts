@@ -1,13 +1,14 @@
 /** The demonstration's lists and limits, once: what people made of them since is theirs. */
 import { demonstrationLimits, demonstrationLists } from '../../shared/demonstration/limits.ts'
 import type { DemonstrationLimit } from '../../shared/demonstration/limits.ts'
-import type { LimitDraft, Recipients } from '../../shared/schemas/limit.ts'
+import type { Recipients } from '../../shared/schemas/limit.ts'
 import type { Parts } from '../config/parts.ts'
 import { DistributionList, Limit, ListMember, Person, Station } from '../models/index.ts'
 import { officeOf } from '../presenters/office.ts'
-import { atDesk } from '../services/alerts.ts'
+import { atDesk, noConsent } from '../services/alerts.ts'
 import type { Desk } from '../services/alerts.ts'
 import { addLimit, staleContent } from '../services/limits.ts'
+import type { NewLimit } from '../services/limits.ts'
 
 const remindEverySeconds = 480
 
@@ -36,13 +37,12 @@ function recipientsOf(steps: DemonstrationLimit['steps'], lists: Map<string, num
   }
 }
 
-const draftOf = (stationId: number | null, content: LimitDraft['content']): LimitDraft => ({
+const draftOf = (stationId: number | null, content: NewLimit['content']): NewLimit => ({
   subjectKind: stationId === null ? 'system' : 'station',
   subjectId: stationId,
   content,
   reason: 'Demonstration',
-  consentById: null,
-  aloneReason: null,
+  consent: noConsent,
 })
 
 export async function seedDemonstrationLimits(parts: Parts): Promise<void> {

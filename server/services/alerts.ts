@@ -1,5 +1,7 @@
 /** Alerts: judged, acknowledged, put aside, shown, measured. */
 export type { Office } from './alerts/office.ts'
+export { noConsent } from './alerts/consent.ts'
+export type { Consent } from './alerts/consent.ts'
 export { judgeStation } from './alerts/judge.ts'
 export { judgeHealth } from './alerts/health.ts'
 export type { OutsideHealth } from './alerts/health.ts'

@@ -9,6 +9,7 @@ import { notFound } from './problems.ts'
 
 export { askBackTest } from './limits/backTest.ts'
 export { addLimit, changeLimit, createLimit, retireLimit, staleContent } from './limits/change.ts'
+export type { NewLimit } from './limits/change.ts'
 
 /** All that are not retired, by number. */
 export async function listLimits(parts: Parts): Promise<LimitView[]> {

@@ -34,7 +34,7 @@ export interface SignedIn {
 }
 
 const randomId = (): string => randomBytes(32).toString('base64url')
-const accountName = (typed: string): string => typed.trim().toLowerCase()
+export const accountName = (typed: string): string => typed.trim().toLowerCase()
 
 /** Checks the password and begins a session, or renews the one that the same person has in this browser. */
 export async function signIn(
@@ -68,7 +68,7 @@ export async function signIn(
 }
 
 /** By e-mail, or by the name shown beside the account where only one person who may sign in bears it. */
-async function findAccount(account: string): Promise<Person | null> {
+export async function findAccount(account: string): Promise<Person | null> {
   const byEmail = await Person.findOne({ where: { email: account } })
   if (byEmail) return byEmail
   const byName = await Person.findAll({ where: { name: account, role: { [Op.not]: null } }, limit: 2 })
@@ -183,7 +183,7 @@ const wrongPassword = (): Refused =>
     detail: 'E-mail or password do not fit an account.',
   })
 
-const tooManyTries = (seconds: number): Refused =>
+export const tooManyTries = (seconds: number): Refused =>
   new Refused({
     status: 429,
     code: 'session.tooManyTries',

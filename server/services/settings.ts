@@ -4,6 +4,7 @@ import type { Transaction } from 'sequelize'
 import { z } from 'zod'
 import { coast } from '../../shared/schemas/coast.ts'
 import type { PublicSettings } from '../../shared/schemas/coast.ts'
+import { dailyEmail, watchRules } from '../../shared/schemas/watchRules.ts'
 import type { Parts } from '../config/parts.ts'
 import { SettingVersion } from '../models/index.ts'
 import { recordAudit } from './audit.ts'
@@ -20,20 +21,8 @@ const shapes = {
     traceSpeeds: z.string().min(20).max(400),
   }),
   coast: z.strictObject({ plan: coast.nullable() }),
-  mail: z.strictObject({
-    /** By the port's clock; null: no daily e-mail. */
-    heartbeatAt: z
-      .string()
-      .regex(/^([01]\d|2[0-3]):[0-5]\d$/)
-      .nullable(),
-    /** Null: all operators and administrators. */
-    heartbeatListId: z.number().int().positive().nullable(),
-  }),
-  alerts: z.strictObject({
-    /** Urgent limits need a second person's consent or, alone, a written reason. */
-    asksSecondPerson: z.boolean(),
-    /** A limit lies on the shelf for one watch at most. */
-    longestShelfHours: z.number().min(1).max(24),
+  mail: dailyEmail,
+  alerts: watchRules.extend({
     /** Sender of CAP messages: no spaces, commas, < or &. */
     capSender: z.string().regex(/^[^\s,<&]{3,100}$/),
   }),

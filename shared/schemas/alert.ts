@@ -1,5 +1,6 @@
 /** Alerts: one occurrence of a limit exceeded, from rise to clearance. SI units; times ISO 8601 UTC. */
 import { z } from 'zod'
+import { consentFields } from './consent.ts'
 import {
   alertState,
   limitClass,
@@ -194,12 +195,14 @@ export const acknowledgementAnswer = z.object({ isFirst: z.boolean(), alert: ale
 export const shelving = z.strictObject({
   reason: z.string().trim().min(3).max(500),
   endsAt: time,
-  /** Asked for urgent ones: a second person, or why there was none. */
-  secondPersonId: z.number().int().positive().nullable().default(null),
-  aloneReason: z.string().trim().min(10).max(500).nullable().default(null),
+  ...consentFields,
 })
 export type Shelving = z.infer<typeof shelving>
-export const withReason = z.strictObject({ reason: z.string().trim().min(3).max(500) })
+const reason = z.string().trim().min(3).max(500)
+export const withReason = z.strictObject({ reason })
+/** Taking out of service, retiring: of an urgent limit a second person is asked for. */
+export const withReasonAndConsent = z.strictObject({ reason, ...consentFields })
+export type ReasonAndConsent = z.infer<typeof withReasonAndConsent>
 
 /** A drill raises an exercise alert of a limit: marked everywhere, left out of statistics and of the sea. */
 export const drillOrder = z.strictObject({

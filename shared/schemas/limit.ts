@@ -3,6 +3,7 @@
  * waves *from*; spans in seconds; times ISO 8601 UTC. A version is never edited: a change makes the next one.
  */
 import { z } from 'zod'
+import { consentFields } from './consent.ts'
 
 const time = z.iso.datetime()
 
@@ -175,11 +176,6 @@ export const limitContent = z.strictObject({
 })
 export type LimitContent = z.infer<typeof limitContent>
 
-/** Where the office asks a second person to consent to urgent limits: that person's id, or why the author stood alone. */
-const consent = {
-  consentById: z.number().int().positive().nullable().default(null),
-  aloneReason: z.string().trim().min(10).max(500).nullable().default(null),
-}
 const reason = z.string().trim().min(3).max(500)
 
 export const limitDraft = z.strictObject({
@@ -188,12 +184,12 @@ export const limitDraft = z.strictObject({
   subjectId: z.number().int().positive().nullable(),
   content: limitContent,
   reason,
-  ...consent,
+  ...consentFields,
 })
 export type LimitDraft = z.infer<typeof limitDraft>
 
 /** Needs If-Match with the limit's `version`. */
-export const limitChange = z.strictObject({ content: limitContent, reason, ...consent })
+export const limitChange = z.strictObject({ content: limitContent, reason, ...consentFields })
 export type LimitChange = z.infer<typeof limitChange>
 
 export const personName = z.object({ id: z.number().int(), name: z.string() })

@@ -4,7 +4,17 @@ import { personName, priority, quantityKey } from './limit.ts'
 
 const time = z.iso.datetime()
 
-export const messageKind = z.enum(['alert', 'reminder', 'escalation', 'allClear', 'flood', 'test', 'heartbeat'])
+export const messageKind = z.enum([
+  'alert',
+  'reminder',
+  'escalation',
+  'allClear',
+  'flood',
+  'test',
+  'heartbeat',
+  /** To administrators: somebody put an urgent limit in force, or aside, without a second person. */
+  'alone',
+])
 export type MessageKind = z.infer<typeof messageKind>
 
 /**

@@ -15,6 +15,7 @@ import type {
   AlertPerformance,
   AlertView,
   drillOrder,
+  ReasonAndConsent,
   Shelving,
 } from '../../shared/schemas/alert.ts'
 import { limitView } from '../../shared/schemas/limit.ts'
@@ -48,8 +49,8 @@ export const unshelve = (limitId: number, reason: string): Promise<LimitView> =>
 /** Lets go what has latched. */
 export const reset = (limitId: number, reason: string): Promise<LimitView> => withReason(limitId, 'reset', reason)
 
-export const takeOut = (limitId: number, reason: string): Promise<LimitView> =>
-  withReason(limitId, 'takeOutOfService', reason)
+export const takeOut = (limitId: number, order: ReasonAndConsent): Promise<LimitView> =>
+  request('POST', `/api/limits/${limitId}/takeOutOfService`, limitView, order)
 
 export const putBack = (limitId: number, reason: string): Promise<LimitView> =>
   withReason(limitId, 'returnToService', reason)

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import type { ReasonAndConsent } from '../../shared/schemas/alert.ts'
 import { backTestView, limitView, limitWithHistory } from '../../shared/schemas/limit.ts'
 import type { BackTestQuestion, BackTestView, LimitChange, LimitDraft, LimitView } from '../../shared/schemas/limit.ts'
 import { request } from './request.ts'
@@ -15,8 +16,8 @@ export const createLimit = (draft: LimitDraft): Promise<LimitView> => request('P
 export const changeLimit = (id: number, version: number, change: LimitChange): Promise<LimitView> =>
   request('PUT', `/api/limits/${id}`, limitView, change, version)
 
-export const retireLimit = (id: number, version: number, reason: string): Promise<LimitView> =>
-  request('DELETE', `/api/limits/${id}`, limitView, { reason }, version)
+export const retireLimit = (id: number, version: number, order: ReasonAndConsent): Promise<LimitView> =>
+  request('DELETE', `/api/limits/${id}`, limitView, order, version)
 
 export const backTest = (question: BackTestQuestion): Promise<BackTestView> =>
   request('POST', '/api/backTests', backTestView, question)

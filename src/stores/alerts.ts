@@ -168,9 +168,9 @@ export const useAlerts = defineStore('alerts', () => {
   }
   /** An act on the limit behind alerts: what follows from it is read again. */
   const onLimit =
-    (act: (limitId: number, reason: string) => Promise<unknown>) =>
-    async (limitId: number, reason: string): Promise<void> => {
-      await act(limitId, reason)
+    <Order>(act: (limitId: number, order: Order) => Promise<unknown>) =>
+    async (limitId: number, order: Order): Promise<void> => {
+      await act(limitId, order)
       await Promise.all([readBoard(), ...[...opened].map(readDetail)]).catch(() => undefined)
     }
   async function beginDrill(order: Parameters<typeof api.beginDrill>[0]): Promise<number> {

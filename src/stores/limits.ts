@@ -1,6 +1,7 @@
 /** Limits and their states. REST answers and live events pass through one function, `apply`. */
 import { defineStore } from 'pinia'
 import { computed, ref, shallowReactive } from 'vue'
+import type { ReasonAndConsent } from '../../shared/schemas/alert.ts'
 import { limitView } from '../../shared/schemas/limit.ts'
 import type { LimitChange, LimitDraft, LimitVersionView, LimitView } from '../../shared/schemas/limit.ts'
 import * as api from '../api/limits.ts'
@@ -81,8 +82,8 @@ export const useLimits = defineStore('limits', () => {
     await open(id)
   }
 
-  async function retire(id: number, version: number, reason: string): Promise<void> {
-    await api.retireLimit(id, version, reason)
+  async function retire(id: number, version: number, order: ReasonAndConsent): Promise<void> {
+    await api.retireLimit(id, version, order)
     held.delete(id)
   }
 

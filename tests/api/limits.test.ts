@@ -17,15 +17,6 @@ describe('a change of a limit', () => {
     expect(history.versions.map(({ number }: { number: number }) => number)).toEqual([2, 1])
   })
 
-  it('that makes it urgent needs a second person, or a written reason of who is alone', async () => {
-    const limitId = await held.setLimit()
-    const urgent = { content: held.contentOf({ priority: 'urgent' }), reason: 'Worse than thought' }
-    const put = (body: object) => held.desk.put(`/api/limits/${limitId}`).set('If-Match', '"1"').send(body)
-    await put(urgent).expect(422)
-    await put({ ...urgent, consentById: held.officer.id }).expect(422)
-    await put({ ...urgent, consentById: held.otherOfficer.id }).expect(200)
-  })
-
   it.each([
     ['a bearing above a value', { kind: 'above', quantity: 'swellFrom', raise: 10, clear: 5, riseOverSeconds: null }],
     [

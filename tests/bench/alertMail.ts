@@ -7,6 +7,7 @@ import { startJudgeLimits } from '../../server/jobs/judgeLimits.ts'
 import { createTransport } from '../../server/mail/transport.ts'
 import { Estimate } from '../../server/models/index.ts'
 import { officeOf } from '../../server/presenters/office.ts'
+import { noConsent } from '../../server/services/alerts.ts'
 import { createLimit } from '../../server/services/limits.ts'
 import type { LimitContent } from '../../shared/schemas/limit.ts'
 import { makeList } from '../support/alerts.ts'
@@ -51,7 +52,7 @@ async function setLimits(parts: Parts, stationId: number): Promise<string[]> {
     const { id, email } = await makePerson(systemClock, { role: null })
     const content = contentOf(firstRaise + n * stepMetres, await makeList(parts, `List ${n}`, [id]))
     const order = { subjectKind: 'station' as const, subjectId: stationId, content, reason: 'Measured' }
-    await createLimit(parts, office, { ...order, consentById: null, aloneReason: null }, author.id)
+    await createLimit(parts, office, { ...order, consent: noConsent }, author.id)
     addresses.push(email ?? '')
   }
   return addresses

@@ -3,7 +3,8 @@
  * and a year's back-test beside reading the packed days alone and beside a plain count over the rows.
  */
 import { addLimit, askBackTest } from '../../server/services/limits.ts'
-import { atDesk, judgeStation } from '../../server/services/alerts.ts'
+import type { NewLimit } from '../../server/services/limits.ts'
+import { atDesk, judgeStation, noConsent } from '../../server/services/alerts.ts'
 import type { Office } from '../../server/services/alerts.ts'
 import { packedStretches } from '../../server/services/limits/backTest.ts'
 import { systemClock } from '../../server/config/clock.ts'
@@ -12,7 +13,7 @@ import { SeriesDay } from '../../server/models/index.ts'
 import { packDay } from '../../server/models/seriesDayPayload.ts'
 import { execute, select } from '../../server/models/sql.ts'
 import { backTest, figuresNeeded } from '../../shared/alerts/backTest.ts'
-import type { Condition, LimitDraft } from '../../shared/schemas/limit.ts'
+import type { Condition } from '../../shared/schemas/limit.ts'
 import { makeStation } from '../support/factories.ts'
 import { startMariadb } from '../support/mariadb.ts'
 import { seeded } from '../support/seeded.ts'
@@ -47,7 +48,7 @@ const conditionOf = (raise: number): Condition => ({
   latches: false,
 })
 
-const draftOf = (stationId: number, raise: number): LimitDraft => ({
+const draftOf = (stationId: number, raise: number): NewLimit => ({
   subjectKind: 'station',
   subjectId: stationId,
   content: {
@@ -55,8 +56,7 @@ const draftOf = (stationId: number, raise: number): LimitDraft => ({
     ...{ recipients: { steps: [], remindEverySeconds: null }, reviewOn: null, isPublished: false },
   },
   reason: 'bench',
-  consentById: null,
-  aloneReason: null,
+  consent: noConsent,
 })
 
 const columns = `stationId, windowEndsAt, runId, revision, windowStartsAt, computedAt, origin, deploymentId, settingsId,

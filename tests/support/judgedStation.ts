@@ -97,7 +97,7 @@ export function judgedStation(): JudgedStation {
       subjectId: held.station.id,
       content: held.contentOf(changes),
       reason: 'Agreed with the pilots',
-      consentById: null,
+      consent: null,
       aloneReason: null,
     }),
     async setLimit(changes) {

@@ -1,13 +1,15 @@
 /** What operators do: acknowledge, reset, shelve, take off the shelf, take out of service and back. */
+import { titleOf } from '../../../shared/alerts/describe.ts'
 import { clockUtc } from '../../../shared/times.ts'
 import type { AlertCause } from '../../../shared/alerts/transition.ts'
-import type { Shelving as ShelvingOrder } from '../../../shared/schemas/alert.ts'
 import type { Parts } from '../../config/parts.ts'
-import { Alert, Limit, Person, Shelving } from '../../models/index.ts'
+import { Alert, Limit, Shelving } from '../../models/index.ts'
 import { recordAudit } from '../audit.ts'
 import { limitsInForce } from '../limits/rows.ts'
 import type { LimitInForce } from '../limits/rows.ts'
 import { invalidInput, notFound, Refused } from '../problems.ts'
+import { askConsent, noConsent, noteConsent } from './consent.ts'
+import type { Consent } from './consent.ts'
 import { isSuppressed } from './design.ts'
 import { atDesk, holdStates, keepStates } from './desk.ts'
 import type { Desk, HeldState } from './desk.ts'
@@ -99,7 +101,13 @@ export const resetLimit = (parts: Parts, office: Office, limitId: number, by: { 
   })
 
 /** At most one watch; an urgent one needs a second person or, alone, a written reason. */
-export const shelveLimit = (parts: Parts, office: Office, limitId: number, order: ShelvingOrder, personId: number) =>
+export const shelveLimit = (
+  parts: Parts,
+  office: Office,
+  limitId: number,
+  order: { reason: string; endsAt: string; consent: Consent },
+  personId: number,
+) =>
   withLimit(parts, office, limitId, async ({ desk, limit, cause }) => {
     const endsAt = Date.parse(order.endsAt)
     const longest = office.longestShelfSeconds
@@ -107,8 +115,10 @@ export const shelveLimit = (parts: Parts, office: Office, limitId: number, order
     if (endsAt > desk.now + longest * 1000) {
       throw invalidInput([{ path: 'endsAt', message: `must be at most ${longest / 3600} hours from now: one watch` }])
     }
-    if (limit.priority === 'urgent') await askConsent(desk, order.secondPersonId, order.aloneReason, personId)
-    const { secondPersonId, aloneReason, reason } = order
+    const { reason } = order
+    const { consentById: secondPersonId, aloneReason } = await consentOf(limit, desk, order.consent, {
+      ...{ personId, reason, done: `put on the shelf until ${clockUtc(endsAt)} UTC` },
+    })
     const note = `Until ${clockUtc(endsAt)} UTC: ${reason}${aloneReason === null ? '' : `. Alone: ${aloneReason}`}`
     if (!(await cause('shelve', { personId, note, isShelved: true }))) {
       throw notNow('It is shelved, suppressed or out of service already.')
@@ -120,22 +130,18 @@ export const shelveLimit = (parts: Parts, office: Office, limitId: number, order
     )
   })
 
-/** A second operator, not oneself and not disabled, or a reason why there is none. */
-export async function askConsent(
-  { transaction }: Pick<Desk, 'transaction'>,
-  secondPersonId: number | null,
-  aloneReason: string | null,
-  personId: number,
-  path = 'secondPersonId',
-): Promise<void> {
-  if (secondPersonId === null) {
-    if (aloneReason !== null) return
-    throw invalidInput([{ path, message: 'an urgent one needs a second person or, alone, a written reason' }])
-  }
-  const second = await Person.findByPk(secondPersonId, { transaction })
-  if (second?.role !== 'operator' || second.disabledAt !== null || second.id === personId) {
-    throw invalidInput([{ path, message: 'must be another operator' }])
-  }
+/** Asked of an urgent limit alone; answers what is to be kept. */
+async function consentOf(
+  limit: LimitInForce,
+  desk: Desk,
+  consent: Consent,
+  act: { personId: number; reason: string; done: string },
+): Promise<Consent> {
+  if (limit.priority !== 'urgent') return noConsent
+  await askConsent(desk, consent, act.personId)
+  const title = titleOf(limit.title, limit.condition, limit.subjectName)
+  await noteConsent(desk, consent, { ...act, limitId: limit.limitId, title })
+  return consent
 }
 
 export const unshelveLimit = (
@@ -154,10 +160,12 @@ export const takeOutOfService = (
   parts: Parts,
   office: Office,
   limitId: number,
-  by: { personId: number; note: string },
+  by: { personId: number; note: string; consent: Consent },
 ) =>
   withLimit(parts, office, limitId, async ({ desk, limit, cause }) => {
     if (limit.isOutOfService) throw notNow('It is out of service already.')
+    const { personId, note: reason } = by
+    await consentOf(limit, desk, by.consent, { personId, reason, done: 'taken out of service' })
     await endShelvings(desk, limitId, by.personId)
     const change = { outOfServiceAt: new Date(desk.now), outOfServiceReason: by.note, outOfServiceById: by.personId }
     await Limit.update(change, { where: { id: limitId }, transaction: desk.transaction })

@@ -2,11 +2,12 @@
 import type { Transaction } from 'sequelize'
 import { conditionWords, titleOf } from '../../../shared/alerts/describe.ts'
 import { quantityOf } from '../../../shared/alerts/quantities.ts'
-import type { LimitChange, LimitClass, LimitContent, LimitDraft } from '../../../shared/schemas/limit.ts'
+import type { LimitClass, LimitContent, Priority, SubjectKind } from '../../../shared/schemas/limit.ts'
 import type { Parts } from '../../config/parts.ts'
 import { Alert, DistributionList, Limit, LimitState, LimitVersion, Station } from '../../models/index.ts'
 import { recordAudit } from '../audit.ts'
-import { askConsent } from '../alerts/acts.ts'
+import { askConsent, noConsent, noteConsent } from '../alerts/consent.ts'
+import type { Consent } from '../alerts/consent.ts'
 import { atDesk, holdStates, keepStates } from '../alerts/desk.ts'
 import type { Desk } from '../alerts/desk.ts'
 import { isSuppressed } from '../alerts/design.ts'
@@ -19,12 +20,23 @@ import { writeSystemLine } from '../watchLog.ts'
 import { presentLimits } from './present.ts'
 import { limitsInForce } from './rows.ts'
 
+export interface LimitOrder {
+  content: LimitContent
+  reason: string
+  consent: Consent
+}
+
+export interface NewLimit extends LimitOrder {
+  subjectKind: SubjectKind
+  subjectId: number | null
+}
+
 type Faults = { path: string; message: string }[]
-const priorities = ['low', 'medium', 'high', 'urgent']
+const ranks: Priority[] = ['low', 'medium', 'high', 'urgent']
 
 /** What shapes alone cannot tell: quantities that fit the subject and each other, values in their range, lists that are there. */
 async function classOf(
-  draft: Pick<LimitDraft, 'subjectKind' | 'subjectId' | 'content'>,
+  draft: Pick<NewLimit, 'subjectKind' | 'subjectId' | 'content'>,
   transaction: Transaction,
 ): Promise<LimitClass> {
   const { subjectKind, subjectId, content } = draft
@@ -63,7 +75,7 @@ async function classOf(
 interface NewVersion {
   limitId: number
   number: number
-  order: LimitChange
+  order: LimitOrder
   personId: number | null
 }
 
@@ -71,29 +83,30 @@ async function addVersion(
   { now, transaction }: Desk,
   { limitId, number, order, personId }: NewVersion,
 ): Promise<LimitVersion> {
-  const { content, reason, consentById, aloneReason } = order
+  const { content, reason, consent } = order
   const { recipients, ...rest } = content
-  const made = { authorId: personId, reason, consentById, aloneReason, validFrom: new Date(now) }
+  const made = { authorId: personId, reason, ...consent, validFrom: new Date(now) }
   return LimitVersion.create({ limitId, number, ...rest, steps: recipients, ...made }, { transaction })
 }
 
-/** The office's rule for urgent limits, asked when one is made, changed, or becomes one. */
+/** The office's rule, where a limit is urgent or was: lowering it or retiring it silences it. Answers what is to be kept. */
 async function askForUrgent(
   desk: Desk,
-  content: LimitContent,
-  order: LimitChange,
+  priorities: (Priority | undefined)[],
+  consent: Consent,
   personId: number | null,
-): Promise<void> {
-  if (content.priority !== 'urgent' || !desk.office.asksSecondPerson || personId === null) return
-  await askConsent(desk, order.consentById, order.aloneReason, personId, 'consentById')
+): Promise<Consent> {
+  if (!priorities.includes('urgent') || !desk.office.asksSecondPerson || personId === null) return noConsent
+  await askConsent(desk, consent, personId)
+  return consent
 }
 
 /** In a desk of the caller's; `personId` null: the program itself. */
-export async function addLimit(desk: Desk, draft: LimitDraft, personId: number | null): Promise<number> {
+export async function addLimit(desk: Desk, draft: NewLimit, personId: number | null): Promise<number> {
   const { parts, transaction } = desk
   const { subjectKind, subjectId, content, reason } = draft
   const limitClass = await classOf(draft, transaction)
-  await askForUrgent(desk, content, draft, personId)
+  const consent = await askForUrgent(desk, [content.priority], draft.consent, personId)
   const now = new Date(desk.now)
   const limit = await Limit.create(
     {
@@ -110,7 +123,7 @@ export async function addLimit(desk: Desk, draft: LimitDraft, personId: number |
     },
     { transaction },
   )
-  const version = await addVersion(desk, { limitId: limit.id, number: 1, order: draft, personId })
+  const version = await addVersion(desk, { limitId: limit.id, number: 1, order: { ...draft, consent }, personId })
   await limit.update({ currentVersionId: version.id }, { transaction })
   await LimitState.create(
     {
@@ -124,15 +137,17 @@ export async function addLimit(desk: Desk, draft: LimitDraft, personId: number |
   await recordAudit(parts, { ...audit, personId }, transaction)
   const [row] = await limitsInForce(parts.sequelize, 'l.id = :id', { id: limit.id }, transaction)
   if (row) {
-    const text = `Limit set: ${titleOf(content.title, content.condition, row.subjectName)}. ${conditionWords(content.condition)} ${reason}`
+    const title = titleOf(content.title, content.condition, row.subjectName)
+    const text = `Limit set: ${title}. ${conditionWords(content.condition)} ${reason}`
     await writeSystemLine(parts, { kind: 'limit', text, links: { limitId: limit.id } }, transaction)
+    if (personId !== null) await noteConsent(desk, consent, { limitId: limit.id, title, done: 'set', reason, personId })
   }
   desk.changed.limits.add(limit.id)
   return limit.id
 }
 
 /** Missing data raises no wave alert: it raises this one, which comes with a station's first wave limit. */
-async function addStaleLimit(desk: Desk, draft: LimitDraft, personId: number): Promise<void> {
+async function addStaleLimit(desk: Desk, draft: NewLimit, personId: number): Promise<void> {
   const { transaction } = desk
   const { subjectId } = draft
   if (draft.subjectKind !== 'station' || subjectId === null) return
@@ -142,11 +157,7 @@ async function addStaleLimit(desk: Desk, draft: LimitDraft, personId: number): P
   if (!station) return
   const content = staleContent(station.staleAfterSeconds, draft.content.recipients)
   const reason = 'Comes with the first limit of a station'
-  await addLimit(
-    desk,
-    { subjectKind: 'station', subjectId, content, reason, consentById: null, aloneReason: null },
-    personId,
-  )
+  await addLimit(desk, { subjectKind: 'station', subjectId, content, reason, consent: noConsent }, personId)
 }
 
 /** No usable figure for the station's stale limit; clears with the first one. */
@@ -173,7 +184,7 @@ export const staleContent = (staleAfterSeconds: number, recipients: LimitContent
   isPublished: false,
 })
 
-export const createLimit = (parts: Parts, office: Office, draft: LimitDraft, personId: number): Promise<number> =>
+export const createLimit = (parts: Parts, office: Office, draft: NewLimit, personId: number): Promise<number> =>
   atDesk(parts, office, async (desk) => {
     const id = await addLimit(desk, draft, personId)
     if (quantityOf(draft.content.condition.comparisons[0].quantity).limitClass === 'wave') {
@@ -199,7 +210,7 @@ async function lockedLimit(desk: Desk, limitId: number, version: number): Promis
 export const changeLimit = (
   parts: Parts,
   office: Office,
-  { limitId, version, change, personId }: { limitId: number; version: number; change: LimitChange; personId: number },
+  { limitId, version, change, personId }: { limitId: number; version: number; change: LimitOrder; personId: number },
 ): Promise<void> =>
   atDesk(parts, office, async (desk) => {
     const { transaction } = desk
@@ -210,9 +221,11 @@ export const changeLimit = (
     if (limitClass !== limit.limitClass) {
       throw invalidInput([{ path: 'content.condition.comparisons.0.quantity', message: 'is of another class' }])
     }
-    await askForUrgent(desk, change.content, change, personId)
     const before = await LimitVersion.findByPk(limit.currentVersionId ?? 0, { transaction })
-    const next = await addVersion(desk, { limitId, number: (before?.number ?? 0) + 1, order: change, personId })
+    const priorities = [before?.priority, change.content.priority]
+    const consent = await askForUrgent(desk, priorities, change.consent, personId)
+    const order = { ...change, consent }
+    const next = await addVersion(desk, { limitId, number: (before?.number ?? 0) + 1, order, personId })
     await limit.update(
       { currentVersionId: next.id, version: limit.version + 1, updatedAt: new Date(desk.now) },
       { transaction },
@@ -227,7 +240,8 @@ export const changeLimit = (
     await writeSystemLine(parts, { kind: 'limit', text, links: { limitId } }, transaction)
     const open = { limitId, isExercise: false, closedAt: null }
     const alert = await Alert.findOne({ where: open, lock: true, transaction })
-    const hasRisen = priorities.indexOf(row.priority) > priorities.indexOf(before?.priority ?? 'urgent')
+    await noteConsent(desk, consent, { limitId, title, done: 'changed', reason: change.reason, personId })
+    const hasRisen = ranks.indexOf(row.priority) > ranks.indexOf(before?.priority ?? 'urgent')
     if (alert) {
       await alert.update({ priority: row.priority, version: alert.version + 1 }, { transaction })
       const kind = hasRisen ? 'priorityRose' : 'limitChanged'
@@ -254,12 +268,17 @@ export const changeLimit = (
 export const retireLimit = (
   parts: Parts,
   office: Office,
-  { limitId, version, reason, personId }: { limitId: number; version: number; reason: string; personId: number },
+  order: { limitId: number; version: number; reason: string; consent: Consent; personId: number },
 ): Promise<void> =>
   atDesk(parts, office, async (desk) => {
     const { transaction } = desk
+    const { limitId, version, reason, personId } = order
     const held = (await holdStates(desk, [limitId])).get(limitId)
     const limit = await lockedLimit(desk, limitId, version)
+    const [row] = await limitsInForce(parts.sequelize, 'l.id = :limitId', { limitId }, transaction)
+    const consent = await askForUrgent(desk, [row?.priority], order.consent, personId)
+    const title = row ? titleOf(row.title, row.condition, row.subjectName) : `limit ${limitId}`
+    await noteConsent(desk, consent, { limitId, title, done: 'retired', reason, personId })
     const now = new Date(desk.now)
     await limit.update({ retiredAt: now, version: limit.version + 1, updatedAt: now }, { transaction })
     await endShelvings(desk, limitId, personId)
@@ -276,7 +295,7 @@ export const retireLimit = (
     await recordAudit(parts, { ...audit, personId }, transaction)
     await writeSystemLine(
       parts,
-      { kind: 'limit', text: `Limit ${limitId} retired. ${reason}`, links: { limitId } },
+      { kind: 'limit', text: `Limit retired: ${title}. ${reason}`, links: { limitId } },
       transaction,
     )
     desk.changed.limits.add(limitId)

@@ -46,9 +46,17 @@ export async function writeDueHeartbeat(parts: Parts, order: HeartbeatOrder): Pr
   return messageId
 }
 
+/** A list that was emptied or taken out of use silences nothing: then it goes to operators and administrators. */
 async function readers({ listId }: HeartbeatOrder, transaction: Transaction): Promise<Recipient[]> {
-  const ids = listId === null ? null : (await membersOf([listId], transaction)).map(({ personId }) => personId)
-  const who = ids === null ? { role: ['operator' as const, 'admin' as const] } : { id: ids }
+  const ids = listId === null ? [] : (await membersOf([listId], transaction)).map(({ personId }) => personId)
+  const onList = ids.length === 0 ? [] : await withAddress({ id: ids }, transaction)
+  return onList.length > 0 ? onList : withAddress({ role: ['operator', 'admin'] }, transaction)
+}
+
+async function withAddress(
+  who: { id: number[] } | { role: ('operator' | 'admin')[] },
+  transaction: Transaction,
+): Promise<Recipient[]> {
   const people = await Person.findAll({ where: { ...who, disabledAt: null }, order: [['id', 'ASC']], transaction })
   return people.flatMap(({ id, email }) => (email ? [{ personId: id, address: email }] : []))
 }

@@ -1,9 +1,10 @@
 /** From a message written with an alert to one e-mail for each person. A stop in between is made good by the next run. */
+import { Op } from 'sequelize'
 import type { Transaction } from 'sequelize'
 import { messageKind } from '../../../shared/schemas/message.ts'
 import { recipients as recipientsShape } from '../../../shared/schemas/limit.ts'
 import type { Parts } from '../../config/parts.ts'
-import { Alert, AlertEvent, LimitVersion, Message } from '../../models/index.ts'
+import { Alert, AlertEvent, LimitVersion, Message, Person } from '../../models/index.ts'
 import { execute, select } from '../../models/sql.ts'
 import { inTransaction } from '../transaction.ts'
 import { writeSystemLine } from '../watchLog.ts'
@@ -71,7 +72,9 @@ async function queueOne(parts: Parts, message: Message, around: Around, transact
   const alert = message.alertId === null ? null : await Alert.findByPk(message.alertId, { transaction })
   const { recipients, unreached, isNobody } = alert
     ? await chosenFor(parts, message, alert, around, transaction)
-    : nobody
+    : message.kind === 'alone'
+      ? { ...nobody, recipients: await administrators(transaction) }
+      : nobody
   const held =
     alert && !message.isExercise ? await holdInFlood(parts, recipients, alert.priority, transaction) : recipients
   await addDeliveries(parts, message.id, held, transaction)
@@ -84,6 +87,12 @@ interface Choice {
   unreached: string[]
   /** The step's lists have nobody to tell now; not so where all of them were told before. */
   isNobody: boolean
+}
+
+async function administrators(transaction: Transaction): Promise<Recipient[]> {
+  const where = { role: 'admin', disabledAt: null, email: { [Op.ne]: null } } as const
+  const found = await Person.findAll({ where, order: [['id', 'ASC']], transaction })
+  return found.flatMap(({ id, email }) => (email === null ? [] : [{ personId: id, address: email }]))
 }
 
 const nobody: Choice = { recipients: [], unreached: [], isNobody: true }

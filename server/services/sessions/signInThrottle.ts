@@ -73,6 +73,10 @@ export function createSignInThrottle(clock: Clock) {
       }
       knownAddresses.add(JSON.stringify([account, address]))
     },
+    /** The passphrase fits and a code is still asked for: this attempt counts neither way. */
+    uncount(account: string, address: string): void {
+      for (const [key] of keysOf(account, address)) takeBack(key)
+    },
   }
 
   /** A success takes back its own attempt only: guessing at others from the same address still counts. */
@@ -83,3 +87,12 @@ export function createSignInThrottle(clock: Clock) {
 }
 
 export type SignInThrottle = ReturnType<typeof createSignInThrottle>
+
+const throttles = new WeakMap<Clock, SignInThrottle>()
+
+/** One for a process: whoever is asked for a passphrase at two doors is counted once. */
+export function throttleOf({ clock }: { clock: Clock }): SignInThrottle {
+  const known = throttles.get(clock) ?? createSignInThrottle(clock)
+  throttles.set(clock, known)
+  return known
+}
