@@ -4,7 +4,7 @@ import { joinVerdicts, judgeComparison } from './compare.ts'
 import type { Verdict } from './compare.ts'
 import { flagOf, nothing } from './figures.ts'
 import type { Reading, SeaFigures, Seen } from './figures.ts'
-import { quantityOf } from './quantities.ts'
+import { flagOfQuantity, quantityOf } from './quantities.ts'
 import type { Quantity } from './quantities.ts'
 import { isWithin } from './timeSpan.ts'
 
@@ -29,8 +29,7 @@ export interface Judgement {
 function isUsable(quantity: Quantity, sea: SeaFigures | null, condition: Condition): boolean {
   if (quantity.limitClass === 'dataHealth') return true
   if (!sea) return false
-  const flag = flagOf(sea, quantity.isOfVector)
-  return flag <= Math.max(1, condition.worstQuality)
+  return flagOfQuantity(quantity, sea) <= Math.max(1, condition.worstQuality)
 }
 
 function read(quantity: Quantity, comparison: Comparison, condition: Condition, moment: Moment): Reading {

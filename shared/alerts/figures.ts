@@ -1,5 +1,6 @@
 /** What limits look at: the figures of one estimate, and the health of the record and of the program. SI units. */
 import type { QualityFlag, UnresolvedReason } from '../schemas/estimate.ts'
+import type { PlaceQuantityKey } from '../schemas/placeQuantity.ts'
 
 /** One wave system; null where the estimate has none of that name. Directions are toward, degrees true. */
 export interface SystemFigures {
@@ -9,6 +10,26 @@ export interface SystemFigures {
   towardSd: number | null
   speed: number | null
   speedSd: number | null
+}
+
+/** One figure of a place's outlook. */
+export interface PlaceFigure {
+  value: number
+  sd: number | null
+  /** Where it says the uncertainty better than ±. */
+  likely: { from: number; to: number } | null
+  qualityFlag: QualityFlag
+  /** `spilling to plunging`, `from the port quarter, setting to starboard`. */
+  words: string | null
+}
+
+/** What the sea means at a place; a quantity without a figure is missing. */
+export interface SeaAtPlace {
+  figures: Partial<Record<PlaceQuantityKey, PlaceFigure>>
+  /** The station behind it; null where none could feed the place. */
+  stationName: string | null
+  /** `Not measured here. …`; null at the place's own station. */
+  substituteWords: string | null
 }
 
 export interface SeaFigures {
@@ -25,6 +46,8 @@ export interface SeaFigures {
   leading: SystemFigures
   swell: SystemFigures
   windSea: SystemFigures
+  /** Of a place's limits: the outlook that was made of this estimate. */
+  atPlace?: SeaAtPlace
 }
 
 /** Null: cannot be told now. */

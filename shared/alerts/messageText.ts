@@ -6,11 +6,11 @@ import { bothSenses, opposite } from '../directions.ts'
 import type { Condition, Priority } from '../schemas/limit.ts'
 import type { MessageContent, MessageKind } from '../schemas/message.ts'
 import { clockLocal, clockUtc, dateUtc, momentUtc } from '../times.ts'
-import { age, heightPlaces, metres, seconds } from '../units.ts'
+import { age, decimals, heightPlaces, metres, seconds } from '../units.ts'
 import { clearWords, comparisonWords, conditionWords, priorityWords, titleOf, valueWithSd } from './describe.ts'
-import type { SeaFigures } from './figures.ts'
-import { flagOf } from './figures.ts'
-import { quantityOf } from './quantities.ts'
+import type { PlaceFigure, SeaFigures } from './figures.ts'
+import { flagOfQuantity, quantityOf } from './quantities.ts'
+import type { Quantity } from './quantities.ts'
 
 export interface MessageFacts {
   kind: MessageKind
@@ -54,13 +54,24 @@ function wavesOf(sea: SeaFigures | null): Pick<MessageContent, 'waves' | 'glyph'
   const name =
     sea.swell.height === system.height ? 'Swell' : sea.windSea.height === system.height ? 'Wind sea' : 'Waves'
   const height = metres(system.height, heightPlaces(system.height))
-  const waves = `${name} ${bothSenses(system.toward)}, ${height}, ${seconds(system.period)}`
+  const at = sea.atPlace?.stationName ? `, at ${sea.atPlace.stationName}` : ''
+  const waves = `${name} ${bothSenses(system.toward)}, ${height}, ${seconds(system.period)}${at}`
   return { waves, glyph: { toward: system.toward, height: system.height, name } }
 }
 
 /** `Thu 12 Nov 2026, 14:20 UTC, 15:20 local`. */
 const when = (at: number, timeZone: string): string =>
   `${dateUtc(at)}, ${clockUtc(at)} UTC, ${clockLocal(at, timeZone)} local`
+
+const figureAtPlace = ({ ofPlace }: Quantity, sea: SeaFigures | null): PlaceFigure | null =>
+  (ofPlace && sea?.atPlace?.figures[ofPlace]) || null
+
+/** A likely range belongs to the newest figure alone: not to the value that an alert holds while nothing is known. */
+function likelyWords({ value }: MessageFacts, quantity: Quantity, figure: PlaceFigure | null): string {
+  if (!figure?.likely || figure.value !== value) return ''
+  const [from, to] = [figure.likely.from, figure.likely.to].map((end) => decimals(end * quantity.toUnit, quantity.decimals)) // prettier-ignore
+  return `, likely ${from} to ${to}`
+}
 
 const capital = (text: string): string => text.charAt(0).toUpperCase() + text.slice(1)
 
@@ -75,11 +86,13 @@ function headlineOf({ kind, condition, windowEndsAt, crossedAt }: MessageFacts):
 export function messageContentOf(facts: MessageFacts): MessageContent {
   const { condition, windowEndsAt, sea, timeZone, isCaughtUp, crossedAt } = facts
   const quantity = quantityOf(condition.comparisons[0].quantity)
+  const figure = figureAtPlace(quantity, sea)
   const value =
     quantity.isCircular && facts.value !== null
       ? bothSenses(opposite(facts.value))
-      : valueWithSd(quantity, facts.value, facts.valueSd)
-  const flag = sea && flagOf(sea, quantity.isOfVector)
+      : valueWithSd(quantity, facts.value, facts.valueSd) + likelyWords(facts, quantity, figure)
+  const flag = sea && flagOfQuantity(quantity, sea)
+  const quality = [flag === null ? '' : (flagWords[flag] ?? ''), sea?.atPlace?.substituteWords ?? ''].filter(Boolean)
   return {
     isExercise: facts.isExercise,
     isDemonstration: facts.isDemonstration,
@@ -87,7 +100,7 @@ export function messageContentOf(facts: MessageFacts): MessageContent {
     priority: facts.priority,
     priorityWords: priorityWords[facts.priority],
     title: titleOf(facts.title, condition, facts.subjectName),
-    headline: headlineOf(facts),
+    headline: [headlineOf(facts), facts.kind === 'allClear' ? null : figure?.words].filter(Boolean).join('; '),
     subjectName: facts.subjectName,
     value,
     limit: conditionWords(condition),
@@ -96,7 +109,7 @@ export function messageContentOf(facts: MessageFacts): MessageContent {
     when: when(windowEndsAt, timeZone),
     windowEndsAt: new Date(windowEndsAt).toISOString(),
     since: isCaughtUp ? `Exceeded since ${momentUtc(crossedAt, windowEndsAt)} UTC; nobody could be told before.` : null,
-    quality: flag === null ? '' : (flagWords[flag] ?? ''),
+    quality: quality.join('. '),
     toCheck: facts.toCheck,
     handling: facts.handling,
     caution: facts.caution,

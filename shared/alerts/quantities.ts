@@ -1,12 +1,18 @@
 /** The one registry of what a limit may be set on: name, unit, sense, and how it is read. SI units inside. */
 import { opposite } from '../directions.ts'
 import type { LimitClass, QuantityKey, QuantityView, SubjectKind } from '../schemas/limit.ts'
-import { nothing } from './figures.ts'
+import { placeQuantityKey } from '../schemas/placeQuantity.ts'
+import type { PlaceQuantityKey } from '../schemas/placeQuantity.ts'
+import { placeQuantityOf } from '../places/quantities.ts'
+import type { QualityFlag } from '../schemas/estimate.ts'
+import { flagOf, nothing } from './figures.ts'
 import type { HealthFigures, Reading, SeaFigures, Seen, SystemFigures } from './figures.ts'
 
 export interface Quantity extends QuantityView {
   /** Needs a resolved vector: fails with it. */
   isOfVector: boolean
+  /** A figure of a place's outlook, with a flag of its own. */
+  ofPlace?: PlaceQuantityKey
   read(seen: Seen): Reading
 }
 
@@ -52,6 +58,19 @@ function health(
   return {
     ...{ key, name, limitClass, subjects, toUnit: 1, ...shape, isCircular: false, isOfVector: false, hasRise: false },
     read: ({ health: seen }) => ({ value: orNaN(seen?.[key] ?? null), sd: 0, atMost: NaN }),
+  }
+}
+
+/** Of a place's outlook, where the sea's own flags do not count but the figure's. */
+function ofPlace(key: PlaceQuantityKey): Quantity {
+  const { name, unit, toUnit, decimals, least, most } = placeQuantityOf(key)
+  return {
+    ...{ key, name, limitClass: 'wave', subjects: ['place'], unit, toUnit, decimals, least, most },
+    ...{ isCircular: false, isOfVector: false, hasRise: true, ofPlace: key },
+    read({ sea }) {
+      const figure = sea?.atPlace?.figures[key]
+      return figure ? plain(figure.value, figure.sd) : nothing
+    },
   }
 }
 
@@ -119,6 +138,7 @@ export const quantities: Quantity[] = [
   ...ofSystem('leading'),
   ...ofSystem('swell'),
   ...ofSystem('windSea'),
+  ...placeQuantityKey.options.map(ofPlace),
   health('dataAge', 'Data stale', form('min', 0, 60, 7 * 86_400, 1 / 60)),
   health('usableSensors', 'Usable sensors', form('', 0, 0, 64)),
   health('clockOffset', 'Clock difference', form('s', 1, 0.1, 86_400)),
@@ -136,4 +156,10 @@ export function quantityOf(key: QuantityKey): Quantity {
   return quantity
 }
 
-export const presentQuantity = ({ read: _, isOfVector: __, ...view }: Quantity): QuantityView => view
+/** The flag that decides whether a quantity of these figures is judged; 9 where a place has no such figure. */
+export const flagOfQuantity = (
+  { ofPlace, isOfVector }: Pick<Quantity, 'ofPlace' | 'isOfVector'>,
+  sea: SeaFigures,
+): QualityFlag => (ofPlace ? (sea.atPlace?.figures[ofPlace]?.qualityFlag ?? 9) : flagOf(sea, isOfVector))
+
+export const presentQuantity = ({ read: _, isOfVector: __, ofPlace: ___, ...view }: Quantity): QuantityView => view

@@ -4,6 +4,7 @@
  */
 import { z } from 'zod'
 import { consentFields } from './consent.ts'
+import { placeQuantityKey } from './placeQuantity.ts'
 
 const time = z.iso.datetime()
 
@@ -46,7 +47,11 @@ export const dataHealthQuantityKey = z.enum([
   'mailQueueAge',
   'diskFree',
 ])
-export const quantityKey = z.enum([...waveQuantityKey.options, ...dataHealthQuantityKey.options])
+export const quantityKey = z.enum([
+  ...waveQuantityKey.options,
+  ...placeQuantityKey.options,
+  ...dataHealthQuantityKey.options,
+])
 export type WaveQuantityKey = z.infer<typeof waveQuantityKey>
 export type DataHealthQuantityKey = z.infer<typeof dataHealthQuantityKey>
 export type QuantityKey = z.infer<typeof quantityKey>
