@@ -19,14 +19,17 @@ const upperServer = '^server/(app\\.ts|index\\.ts|routes|sockets|commands|jobs|m
 const usedByAll = 'bus|audit|watchLog|problems|passwords|transaction'
 /**
  * Services whose writes share a transaction with others: an imported file is stored with the record of it, a leased
- * e-mail with its link, a step of an escalation with its e-mail.
+ * e-mail with its link, a step of an escalation with its e-mail, an invitation with its e-mail, a session with the
+ * code that opened it.
  */
 const together = {
   imports: 'readings',
-  deliveries: 'receipts',
+  deliveries: 'receipts|people',
   escalations: 'messages',
   alerts: 'limits',
   limits: 'alerts',
+  people: 'messages|sessions|secondFactor',
+  sessions: 'secondFactor',
 }
 
 const serviceRules = [

@@ -41,6 +41,7 @@ export type Action =
   | 'lists.change'
   | 'people.read'
   | 'people.change'
+  | 'mailSides.change'
   | 'profile.read'
   | 'profile.change'
   | 'messages.read'
@@ -109,6 +110,8 @@ const rows: Record<Action, readonly Role[] | typeof anybody> = {
   'lists.change': ['admin', 'operator'],
   'people.read': ['admin', 'operator'],
   'people.change': ['admin'],
+  // Somebody ill, or gone on leave in haste, is entered by the watch.
+  'mailSides.change': ['admin', 'operator'],
   'profile.read': everyone,
   'profile.change': everyone,
   'messages.read': ['admin', 'operator'],

@@ -14,6 +14,8 @@ export interface Letter {
   messageId: number
   kind: MessageKind
   personName: string
+  /** Names of those who are away and whose deputy this person is. */
+  standsInFor: string | null
   subject: string
   text: string
   content: MessageContent | null
@@ -23,6 +25,8 @@ export interface Letter {
   mayBeCopy: boolean
   isAcknowledged: boolean
   receipt: { token: string; expiresAt: Date } | null
+  /** A page of the program that this e-mail opens, for its person alone. */
+  link: { path: string; words: string } | null
   next: { reminderAt: Date | null; step: { at: Date; lists: string[] } | null }
 }
 
@@ -68,10 +72,12 @@ function afterwardsOf({ receipt, next, isAcknowledged }: Letter, { timeZone }: S
 }
 
 function footOf(letter: Letter, { timeZone }: Surroundings): string[] {
-  const { personName, messageId, alertId, createdAt, receipt, mayBeCopy } = letter
+  const { personName, standsInFor, messageId, alertId, createdAt, receipt, mayBeCopy } = letter
   const alert = alertId === null ? '' : `Alert ${numbered(alertId)}, `
   return [
-    `You receive this as ${personName}.`,
+    standsInFor === null
+      ? `You receive this as ${personName}.`
+      : `You receive this as ${personName}, deputy of ${standsInFor}, who cannot be reached now.`,
     `${alert}${alert === '' ? 'E' : 'e'}-mail ${messageId}, written ${dateUtc(createdAt.getTime())}, ${both(createdAt, timeZone)}.`,
     ...(receipt
       ? [
@@ -116,10 +122,12 @@ function pageOf(letter: Letter, around: Surroundings): Page {
     subject: subjectOf(letter),
     head: `${portName}${demonstration}`,
     exercise: letter.isExercise ? exerciseWords : null,
-    receipt: receipt && {
-      url: `${publicUrl}/receipt/${receipt.token}`,
-      words: letter.alertId === null ? 'Confirm receipt' : `Confirm receipt of ${numbered(letter.alertId)}`,
-    },
+    receipt: receipt
+      ? {
+          url: `${publicUrl}/receipt/${receipt.token}`,
+          words: letter.alertId === null ? 'Confirm receipt' : `Confirm receipt of ${numbered(letter.alertId)}`,
+        }
+      : letter.link && { url: `${publicUrl}${letter.link.path}`, words: letter.link.words },
     afterwards: afterwardsOf(letter, around),
     foot: footOf(letter, around),
   }

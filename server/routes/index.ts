@@ -1,6 +1,7 @@
 /** All routes, one line a feature. */
 import type { Parts } from '../config/parts.ts'
 import { sessionCookieName } from '../config/sessionCookie.ts'
+import { accountRoutes } from './accounts.ts'
 import { alertRoutes } from './alerts.ts'
 import { capRoutes } from './cap.ts'
 import { installationRoutes } from './installation.ts'
@@ -9,9 +10,12 @@ import { limitRoutes } from './limits.ts'
 import { listRoutes } from './lists.ts'
 import { messageRoutes } from './messages.ts'
 import { withOpenApi } from './openApi.ts'
+import { ownAccountRoutes } from './ownAccount.ts'
+import { passphraseLinkRoutes } from './passphraseLinks.ts'
 import { peopleRoutes } from './people.ts'
 import { receiptRoutes } from './receipts.ts'
 import type { Route } from './registry.ts'
+import { secondFactorRoutes } from './secondFactor.ts'
 import { sessionRoutes } from './session.ts'
 import { settingsRoutes } from './settings.ts'
 import { setUpRoutes } from './setUp.ts'
@@ -35,6 +39,10 @@ const features: ((parts: Parts) => Route[])[] = [
   messageRoutes,
   listRoutes,
   peopleRoutes,
+  accountRoutes,
+  ownAccountRoutes,
+  secondFactorRoutes,
+  passphraseLinkRoutes,
   receiptRoutes,
   watchRulesRoutes,
 ]

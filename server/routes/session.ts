@@ -2,6 +2,7 @@ import { sessionView, signInRequest } from '../../shared/schemas/session.ts'
 import type { Parts } from '../config/parts.ts'
 import { sessionCookieName, sessionCookieOptions } from '../config/sessionCookie.ts'
 import { endSession, presentSession, signIn } from '../services/sessions.ts'
+import { deviceOf } from '../services/sessions/device.ts'
 import { throttleOf } from '../services/sessions/signInThrottle.ts'
 import { route } from './registry.ts'
 import type { Route } from './registry.ts'
@@ -31,7 +32,8 @@ export function sessionRoutes(parts: Parts): Route[] {
       answer: sessionView,
       deadlineMilliseconds: signInDeadline,
       handle: async ({ body, visitor, request, response }) => {
-        const { token, caller } = await signIn(parts, throttle, body, { address: request.ip ?? 'unknown', visitor })
+        const from = { address: request.ip ?? 'unknown', visitor, device: deviceOf(request.get('user-agent')) }
+        const { token, caller } = await signIn(parts, throttle, body, from)
         response.cookie(cookieName, token, cookieOptions)
         return presentSession(parts, caller)
       },

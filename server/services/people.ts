@@ -1,12 +1,11 @@
-/** People: made, disabled, given another role. Each change is audited and heard at once by open sockets. */
+/** People who may sign in, made with their first passphrase. */
 import type { Transaction } from 'sequelize'
 import type { Role, Team } from '../../shared/schemas/session.ts'
 import type { Parts } from '../config/parts.ts'
-import { Person, Session } from '../models/index.ts'
+import { Person } from '../models/index.ts'
 import { recordAudit } from './audit.ts'
 import { faultOfPassword, hashPassword } from './passwords.ts'
-import { invalidInput, notFound } from './problems.ts'
-import { inTransaction } from './transaction.ts'
+import { invalidInput } from './problems.ts'
 
 export interface NewPerson {
   name: string
@@ -45,42 +44,4 @@ export async function addPerson(
     transaction,
   )
   return person
-}
-
-/** A disabled person is out at once, everywhere. */
-export async function disablePerson(parts: Parts, personId: number, byPersonId: number | null): Promise<void> {
-  await changePerson(parts, personId, byPersonId, 'person.disable', { disabledAt: parts.clock.now() })
-}
-
-export async function changeRole(parts: Parts, personId: number, role: Role, byPersonId: number | null): Promise<void> {
-  await changePerson(parts, personId, byPersonId, 'person.changeRole', { role })
-}
-
-async function changePerson(
-  parts: Parts,
-  personId: number,
-  byPersonId: number | null,
-  action: string,
-  change: { disabledAt: Date } | { role: Role },
-): Promise<void> {
-  const endedSessions = await inTransaction(parts.sequelize, async (transaction) => {
-    const person = await Person.findByPk(personId, { lock: true, transaction })
-    if (!person) throw notFound('person', personId)
-    const before = { role: person.role, disabledAt: person.disabledAt }
-    const now = parts.clock.now()
-    await person.update({ ...change, version: person.version + 1, updatedAt: now }, { transaction })
-    const after = { role: person.role, disabledAt: person.disabledAt }
-    await recordAudit(
-      parts,
-      { personId: byPersonId, action, entity: 'person', entityId: personId, before, after },
-      transaction,
-    )
-    if (!person.disabledAt) return []
-    const where = { personId, endedAt: null }
-    const sessions = await Session.findAll({ where, transaction })
-    await Session.update({ endedAt: now, endReason: 'disabled' }, { where, transaction })
-    return sessions.map((session) => session.id)
-  })
-  for (const sessionId of endedSessions) parts.bus.publish('session.ended', { sessionId })
-  parts.bus.publish('person.changed', { personId })
 }

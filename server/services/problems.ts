@@ -51,6 +51,14 @@ export const isReadOnly = (): Refused =>
     detail: 'You have been signed in for long: sign in again to change something.',
   })
 
+export const needsSecondFactor = (): Refused =>
+  new Refused({
+    status: 403,
+    code: 'session.secondFactorNeeded',
+    title: 'A second factor is needed',
+    detail: 'Administrators of this installation need a second factor: set yours up first.',
+  })
+
 /** Faults of an input, field by field. */
 export const invalidInput = (errors: NonNullable<Problem['errors']>): Refused =>
   new Refused({ status: 422, code: 'request.invalid', title: 'The input cannot be used', errors })

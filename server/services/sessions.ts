@@ -2,27 +2,30 @@
 import { randomBytes } from 'node:crypto'
 import { Op } from 'sequelize'
 import type { Transaction } from 'sequelize'
+import { preferences, usualPreferences } from '../../shared/schemas/preferences.ts'
+import type { Preferences } from '../../shared/schemas/preferences.ts'
 import type { Role, SessionView, SignInRequest, Team } from '../../shared/schemas/session.ts'
 import type { Parts } from '../config/parts.ts'
 import { Person, Session } from '../models/index.ts'
 import { recordAudit } from './audit.ts'
 import { passwordFits } from './passwords.ts'
 import { Refused } from './problems.ts'
+import { administratorsNeedSecondFactor, takeCode } from './secondFactor.ts'
+import { absoluteMilliseconds, idleMilliseconds } from './sessions/limits.ts'
 import { readToken, signToken } from './sessions/token.ts'
 import type { SignInThrottle } from './sessions/signInThrottle.ts'
 import { inTransaction } from './transaction.ts'
 
-/** Without a request and without a live feed for so long, a session ends. */
-const idleMilliseconds = 12 * 3600_000
-/** From signing in to read-only. */
-const absoluteMilliseconds = 24 * 3600_000
 /** `lastSeenAt` is written no more often than this. */
 const touchMilliseconds = 60_000
 
 /** A person with a session that is in force now. */
 export interface Caller {
   person: { id: number; name: string; email: string; role: Role; team: Team | null; timeZone: string }
+  preferences: Preferences
   sessionId: string
+  /** The office asks for a second factor that this account does not have: nothing but setting it up is allowed. */
+  mustEnrol: boolean
   /** Past the absolute limit: may look at everything and change nothing until signing in again. */
   readOnly: boolean
   absoluteUntil: Date
@@ -40,8 +43,8 @@ export const accountName = (typed: string): string => typed.trim().toLowerCase()
 export async function signIn(
   parts: Parts,
   throttle: SignInThrottle,
-  { email, password }: SignInRequest,
-  from: { address: string; visitor: Caller | null },
+  { email, password, code }: SignInRequest,
+  from: { address: string; visitor: Caller | null; device: string | null },
 ): Promise<SignedIn> {
   const account = accountName(email)
   const wait = throttle.begin(account, from.address)
@@ -52,10 +55,21 @@ export async function signIn(
     parts.logger.warn({ personId: person?.id ?? null, address: from.address }, 'sign-in refused')
     throw wrongPassword()
   }
-  throttle.succeeded(account, from.address)
-  const session = await inTransaction(parts.sequelize, (transaction) =>
-    beginOrRenew(parts, person, from.visitor, transaction),
+  const asksCode = person.totpSince !== null
+  if (asksCode && !code) {
+    throttle.uncount(account, from.address)
+    throw codeNeeded()
+  }
+  const session = await inTransaction(parts.sequelize, async (transaction) =>
+    asksCode && !(await takeCode(parts, person.id, code ?? '', transaction))
+      ? null
+      : beginOrRenew(parts, person, from, transaction),
   )
+  if (!session) {
+    parts.logger.warn({ personId: person.id, address: from.address }, 'sign-in refused: the code does not fit')
+    throw wrongCode()
+  }
+  throttle.succeeded(account, from.address)
   if (from.visitor && from.visitor.sessionId !== session.id) {
     await endSession(parts, from.visitor.sessionId, 'another person')
   }
@@ -63,7 +77,7 @@ export async function signIn(
   const { id: sessionId, tokenId } = session
   return {
     token: signToken(parts.environment.jwtSecret, parts.clock, { personId: person.id, sessionId, tokenId }),
-    caller: callerOf(parts, person, session),
+    caller: await callerOf(parts, person, session),
   }
 }
 
@@ -79,11 +93,12 @@ export async function findAccount(account: string): Promise<Person | null> {
 async function beginOrRenew(
   parts: Parts,
   person: Person,
-  visitor: Caller | null,
+  { visitor, device }: { visitor: Caller | null; device: string | null },
   transaction: Transaction,
 ): Promise<Session> {
   const now = parts.clock.now()
-  const fresh = { tokenId: randomId(), lastSeenAt: now, absoluteUntil: new Date(now.getTime() + absoluteMilliseconds) }
+  const absoluteUntil = new Date(now.getTime() + absoluteMilliseconds)
+  const fresh = { tokenId: randomId(), lastSeenAt: now, absoluteUntil, device }
   const renewed =
     visitor?.person.id === person.id
       ? await Session.findOne({ where: { id: visitor.sessionId, endedAt: null }, lock: true, transaction })
@@ -129,12 +144,14 @@ async function inForce(parts: Parts, session: Session): Promise<Caller | null> {
   return callerOf(parts, person, session)
 }
 
-function callerOf(parts: Parts, person: Person, session: Session): Caller {
+async function callerOf(parts: Parts, person: Person, session: Session): Promise<Caller> {
   const { id, name, email, role, team, timeZone } = person
   if (!role) throw new Error(`person ${id} has no role`)
   return {
     person: { id, name, email: email ?? '', role, team, timeZone },
+    preferences: preferences.catch(usualPreferences).parse(person.preferences ?? {}),
     sessionId: session.id,
+    mustEnrol: role === 'admin' && !person.totpSince && (await administratorsNeedSecondFactor(parts)),
     readOnly: session.absoluteUntil <= parts.clock.now(),
     absoluteUntil: session.absoluteUntil,
   }
@@ -166,9 +183,12 @@ export function forgetOldSessions({ clock }: Pick<Parts, 'clock'>): Promise<numb
   return Session.destroy({ where: { lastSeenAt: { [Op.lt]: new Date(clock.now().getTime() - keptMilliseconds) } } })
 }
 
-export function presentSession(parts: Parts, { person, readOnly, absoluteUntil }: Caller): SessionView {
+export function presentSession(parts: Parts, caller: Caller): SessionView {
+  const { person, readOnly, absoluteUntil, mustEnrol } = caller
   return {
     person,
+    preferences: caller.preferences,
+    mustEnrol,
     readOnly,
     absoluteUntil: absoluteUntil.toISOString(),
     serverTime: parts.clock.now().toISOString(),
@@ -181,6 +201,22 @@ const wrongPassword = (): Refused =>
     code: 'session.wrongPassword',
     title: 'Not signed in',
     detail: 'E-mail or password do not fit an account.',
+  })
+
+export const codeNeeded = (): Refused =>
+  new Refused({
+    status: 401,
+    code: 'session.codeNeeded',
+    title: 'A code is needed',
+    detail: 'This account has a second factor: give the code that your telephone shows, or a recovery code.',
+  })
+
+const wrongCode = (): Refused =>
+  new Refused({
+    status: 401,
+    code: 'session.wrongCode',
+    title: 'Not signed in',
+    detail: 'The code does not fit, or was used before. Wait for the next one.',
   })
 
 export const tooManyTries = (seconds: number): Refused =>

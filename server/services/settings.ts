@@ -2,6 +2,7 @@
 import { Op } from 'sequelize'
 import type { Transaction } from 'sequelize'
 import { z } from 'zod'
+import { english } from '../../shared/catalogue/english.ts'
 import { coast } from '../../shared/schemas/coast.ts'
 import type { PublicSettings } from '../../shared/schemas/coast.ts'
 import { dailyEmail, watchRules } from '../../shared/schemas/watchRules.ts'
@@ -26,6 +27,7 @@ const shapes = {
     /** Sender of CAP messages: no spaces, commas, < or &. */
     capSender: z.string().regex(/^[^\s,<&]{3,100}$/),
   }),
+  people: z.strictObject({ administratorsNeedSecondFactor: z.boolean() }),
   /** Months kept besides the current one; null keeps all. */
   retention: z.strictObject({
     readingBlocks: monthsKept,
@@ -42,16 +44,11 @@ export type Settings = { [Group in SettingGroup]: z.infer<(typeof shapes)[Group]
 const initial: Settings = {
   port: { portName: 'Harbour', timeZone: 'Etc/UTC' },
   watch: { leadStationId: null },
-  cautions: {
-    figures:
-      'Figures support and never replace the judgement of the master, pilot, coxswain or lifeguard, local notices and licensed practice. Waves well above the significant height occur in every sea. Calm figures do not mean safe bathing.',
-    array: 'An array sees the sea where it stands, not the whole coast.',
-    traceSpeeds:
-      'A trace speed is the apparent speed along one pair of sensors, never a component of the wave vector: it reads too high by 1/cos of its angle to the waves.',
-  },
+  cautions: { ...english.cautions },
   coast: { plan: null },
   alerts: { asksSecondPerson: true, longestShelfHours: 8, capSender: 'duty@harbour.example' },
   mail: { heartbeatAt: '07:00', heartbeatListId: null },
+  people: { administratorsNeedSecondFactor: false },
   retention: { readingBlocks: 25, stationHealthHours: 25, estimates: null, estimateDetails: 25 },
 }
 

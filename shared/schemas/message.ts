@@ -12,6 +12,9 @@ export const messageKind = z.enum([
   'flood',
   'test',
   'heartbeat',
+  /** A link to choose a passphrase: the first one, or another. */
+  'invitation',
+  'reset',
   /** To administrators: somebody put an urgent limit in force, or aside, without a second person. */
   'alone',
 ])
@@ -65,6 +68,8 @@ export const deliveryView = z.object({
   id: z.number().int(),
   person: personName,
   address: z.string(),
+  /** Names of those who are away and whose deputy they are. */
+  standsInFor: z.string().nullable(),
   state: deliveryState,
   attempts: z.number().int(),
   nextAttemptAt: time.nullable(),

@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { preferences } from './preferences.ts'
 
 export const role = z.enum(['admin', 'operator', 'partner'])
 export type Role = z.infer<typeof role>
@@ -13,6 +14,8 @@ export const signInRequest = z.strictObject({
   /** E-mail, or the name shown beside the account. */
   email: z.string().trim().min(1).max(254),
   password: z.string().min(1).max(256),
+  /** Asked for with `session.codeNeeded` where the account has a second factor: six digits or a recovery code. */
+  code: z.string().trim().max(40).optional(),
 })
 export type SignInRequest = z.infer<typeof signInRequest>
 
@@ -26,6 +29,9 @@ export const sessionView = z.object({
     team: team.nullable(),
     timeZone: z.string(),
   }),
+  preferences,
+  /** A second factor has to be set up before anything else is shown. */
+  mustEnrol: z.boolean(),
   readOnly: z.boolean(),
   absoluteUntil: z.iso.datetime(),
   serverTime: z.iso.datetime(),

@@ -4,8 +4,9 @@ import request from 'supertest'
 import { beforeAll, describe, expect, test, vi } from 'vitest'
 import { createApp } from '../../server/app.ts'
 import { Audit, Session } from '../../server/models/index.ts'
-import { changeRole, disablePerson } from '../../server/services/people.ts'
+import { changeAccount, setDisabled } from '../../server/services/people/accounts.ts'
 import { forgetOldSessions } from '../../server/services/sessions.ts'
+import { usualPreferences } from '../../shared/schemas/preferences.ts'
 import { openBrowser, signedIn } from '../support/browser.ts'
 import { makePerson, usualPassword } from '../support/factories.ts'
 import { testParts } from '../support/parts.ts'
@@ -36,6 +37,8 @@ describe('signing in', () => {
         team: null,
         timeZone: 'Etc/UTC',
       },
+      preferences: usualPreferences,
+      mustEnrol: false,
       readOnly: false,
       absoluteUntil: '2026-12-02T06:00:00.000Z',
       serverTime: '2026-12-01T06:00:00.000Z',
@@ -71,7 +74,7 @@ describe('signing in', () => {
     const withoutRole = await makePerson(parts.clock, { role: null })
     const disabled = await makePerson(parts.clock)
     const long = await makePerson(parts.clock, { password })
-    await disablePerson(parts, disabled.id, null)
+    await setDisabled(parts, disabled.id, 1, true, null)
     for (const email of [withoutRole.email, disabled.email]) {
       await openBrowser(app).post('/api/session').send({ email, password: usualPassword }).expect(401)
     }
@@ -120,7 +123,7 @@ describe('a session', () => {
   test('is over at once when the person is disabled', async () => {
     const person = await makePerson(parts.clock)
     const browser = await signedIn(app, person.email)
-    await disablePerson(parts, person.id, null)
+    await setDisabled(parts, person.id, 1, true, null)
     await browser.get('/api/session').expect(401)
     expect(parts.news).toContainEqual({ topic: 'person.changed', news: { personId: person.id } })
   })
@@ -129,7 +132,9 @@ describe('a session', () => {
     const person = await makePerson(parts.clock, { role: 'admin' })
     const browser = await signedIn(app, person.email)
     await browser.post('/api/jobs/9999/cancel').expect(404)
-    await changeRole(parts, person.id, 'operator', null)
+    await makePerson(parts.clock, { role: 'admin' })
+    const { name, email, team, timeZone } = person
+    await changeAccount(parts, person.id, 1, { name, email, team, timeZone, role: 'operator' }, null)
     expect((await browser.get('/api/session').expect(200)).body.person.role).toBe('operator')
     expect((await browser.post('/api/jobs/9999/cancel').expect(403)).body.code).toBe('access.notAllowed')
   })

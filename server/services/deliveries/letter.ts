@@ -7,6 +7,7 @@ import type { MessageContent, MessageKind } from '../../../shared/schemas/messag
 import type { Parts } from '../../config/parts.ts'
 import type { Delivery } from '../../models/index.ts'
 import { Alert, DistributionList, Escalation, Limit, LimitVersion, Message, Person } from '../../models/index.ts'
+import { linkOfMessage } from '../people/sendLink.ts'
 import { issueReceiptToken } from '../receipts.ts'
 
 export interface Letter {
@@ -15,6 +16,8 @@ export interface Letter {
   kind: MessageKind
   address: string
   personName: string
+  /** Names of those who are away and whose deputy this person is. */
+  standsInFor: string | null
   messageIdHeader: string
   subject: string
   text: string
@@ -26,6 +29,8 @@ export interface Letter {
   mayBeCopy: boolean
   isAcknowledged: boolean
   receipt: { token: string; expiresAt: Date } | null
+  /** A page of the program that this e-mail opens, for its person alone. */
+  link: { path: string; words: string } | null
   /** What follows without a receipt; in order of time. */
   next: { reminderAt: Date | null; step: { at: Date; lists: string[] } | null }
   /** Of which a drawing of the last hours can be made; null: of none. */
@@ -54,6 +59,7 @@ export async function letterOf(
     kind,
     address: delivery.address,
     personName: person.name,
+    standsInFor: delivery.standsInFor,
     messageIdHeader: delivery.messageIdHeader,
     subject: message.subject,
     text: message.text,
@@ -64,6 +70,7 @@ export async function letterOf(
     mayBeCopy: delivery.unknownCount > 0,
     isAcknowledged: alert?.acknowledgedAt != null,
     receipt: isAsked ? await issueReceiptToken(parts, forToken, transaction) : null,
+    link: await linkOfMessage(parts, message, transaction),
     next: alert && isAsked ? await nextOf(alert, message.step ?? 0, transaction) : { reminderAt: null, step: null },
     drawing: alert && !alert.isExercise ? await drawingOf(alert, transaction) : null,
   }

@@ -2,6 +2,7 @@
 import { Op } from 'sequelize'
 import type { Transaction } from 'sequelize'
 import { timeSpan } from '../../../shared/schemas/limit.ts'
+import type { PersonName } from '../../../shared/schemas/limit.ts'
 import { mailHealth } from '../../../shared/schemas/person.ts'
 import type { PersonChange, PersonView, ProfileChange, RecipientDraft } from '../../../shared/schemas/person.ts'
 import type { Parts } from '../../config/parts.ts'
@@ -27,6 +28,13 @@ export async function readPerson(parts: Pick<Parts, 'clock'>, personId: number):
   return view
 }
 
+/** Names alone, of everybody else to whom e-mails go. */
+export async function listDeputies(exceptId: number): Promise<PersonName[]> {
+  const where = { id: { [Op.ne]: exceptId }, email: { [Op.ne]: null }, disabledAt: null }
+  const people = await Person.findAll({ where, attributes: ['id', 'name'], order: [['name', 'ASC']] })
+  return people.map(({ id, name }) => ({ id, name }))
+}
+
 /** Without a role: gets e-mails and cannot sign in. */
 export async function addRecipient(parts: Parts, draft: RecipientDraft, byPersonId: number): Promise<PersonView> {
   const now = parts.clock.now()
@@ -42,7 +50,7 @@ export async function addRecipient(parts: Parts, draft: RecipientDraft, byPerson
   return readPerson(parts, personId)
 }
 
-/** By an administrator, or by the persons themselves, who change no name and no address. */
+/** By an administrator, or by the watch and the persons themselves, who change no name and no address. */
 export async function changeMailSide(
   parts: Parts,
   personId: number,

@@ -97,6 +97,7 @@ export class Viewer implements Listener {
   private refusal(room: string): string | null {
     const action = actionOfRoom(room)
     if (action === null) return 'there is no such room'
+    if (this.caller.mustEnrol) return 'a second factor is to be set up first'
     return may(this.caller.person.role, action) ? null : 'your role does not allow this'
   }
 

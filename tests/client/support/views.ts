@@ -1,5 +1,6 @@
 /** Stations and estimates as the server would give them, to be changed by each test. */
 import type { WaveSystem } from '../../../shared/schemas/estimate.ts'
+import { usualPreferences } from '../../../shared/schemas/preferences.ts'
 import type { SessionView } from '../../../shared/schemas/session.ts'
 import type { CurrentEstimate, StationView } from '../../../shared/schemas/station.ts'
 
@@ -79,6 +80,8 @@ export const session = (changes: Partial<SessionView> = {}): SessionView => ({
     timeZone: 'Etc/GMT-1',
   },
   readOnly: false,
+  preferences: usualPreferences,
+  mustEnrol: false,
   absoluteUntil: '2026-11-12T20:00:00.000Z',
   serverTime: '2026-11-12T14:32:07.000Z',
   ...changes,

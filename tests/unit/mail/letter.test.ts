@@ -41,6 +41,7 @@ const letter: Letter = {
   mayBeCopy: false,
   isAcknowledged: false,
   receipt: { token: 'abc.def.ghi', expiresAt: new Date('2026-11-13T14:20:00Z') },
+  link: null,
   next: {
     reminderAt: new Date('2026-11-12T14:28:00Z'),
     step: { at: new Date('2026-11-12T14:36:00Z'), lists: ['Harbour office'] },
