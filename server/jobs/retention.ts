@@ -9,7 +9,8 @@ export async function startRetention(parts: Pick<Parts, 'clock' | 'logger' | 'se
   let running: Promise<void> = Promise.resolve()
   const keep = async (): Promise<void> => {
     try {
-      const months = await settingInForce(parts, 'retention')
+      const kept = await settingInForce(parts, 'retention')
+      const months = { ...kept, outlooks: kept.estimates }
       for (const change of await keepPartitions(parts.clock.now(), months))
         parts.logger.info(change, 'partitions changed')
       const thinned = await thinDetails(parts)

@@ -26,7 +26,12 @@ import { defineListMember } from './listMember.ts'
 import { defineLogEntry } from './logEntry.ts'
 import { defineLongJob } from './longJob.ts'
 import { defineMessage } from './message.ts'
+import { defineNotice } from './notice.ts'
+import { defineObservation } from './observation.ts'
+import { defineOutlook } from './outlook.ts'
 import { definePerson } from './person.ts'
+import { definePlace } from './place.ts'
+import { definePlaceSettings } from './placeSettings.ts'
 import { defineReadingBlock } from './readingBlock.ts'
 import { defineRecoveryCode } from './recoveryCode.ts'
 import { defineRun } from './run.ts'
@@ -68,7 +73,12 @@ export { ListMember } from './listMember.ts'
 export { LogEntry } from './logEntry.ts'
 export { LongJob } from './longJob.ts'
 export { Message } from './message.ts'
+export { Notice } from './notice.ts'
+export { Observation } from './observation.ts'
+export { Outlook } from './outlook.ts'
 export { Person } from './person.ts'
+export { Place } from './place.ts'
+export { PlaceSettings } from './placeSettings.ts'
 export { ReadingBlock } from './readingBlock.ts'
 export { RecoveryCode } from './recoveryCode.ts'
 export { Run } from './run.ts'
@@ -111,7 +121,12 @@ const definitions = [
   defineLogEntry,
   defineLongJob,
   defineMessage,
+  defineNotice,
+  defineObservation,
+  defineOutlook,
   definePerson,
+  definePlace,
+  definePlaceSettings,
   defineReadingBlock,
   defineRecoveryCode,
   defineRun,

@@ -8,7 +8,13 @@ import { testParts } from '../support/parts.ts'
 import type { TestParts } from '../support/parts.ts'
 import { storeSea } from '../support/storedSea.ts'
 
-const keepAll = { readingBlocks: null, stationHealthHours: null, estimates: null, estimateDetails: null }
+const keepAll = {
+  readingBlocks: null,
+  stationHealthHours: null,
+  estimates: null,
+  estimateDetails: null,
+  outlooks: null,
+}
 const december = new Date('2026-12-01T06:00:00Z')
 
 let parts: TestParts

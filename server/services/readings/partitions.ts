@@ -8,7 +8,7 @@ import { database } from './database.ts'
 
 /** Months kept, the current one not counted; null keeps all. */
 export type Retention = Record<PartitionedTable, number | null>
-export type PartitionedTable = 'readingBlocks' | 'stationHealthHours' | 'estimates' | 'estimateDetails'
+export type PartitionedTable = 'readingBlocks' | 'stationHealthHours' | 'estimates' | 'estimateDetails' | 'outlooks'
 
 const monthsAhead = 2
 /** At the first run months are split off this far back, so that they can be dropped one by one. */
