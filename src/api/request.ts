@@ -30,7 +30,13 @@ export async function request<T extends z.ZodType>(
   /** Of the row that is edited: the server refuses a change of an older one. */
   ifMatch?: number,
 ): Promise<z.infer<T>> {
-  const response = await send(method, path, body, ifMatch)
+  return accept(await send(method, path, body, ifMatch), path, schema)
+}
+
+/** What an answer says, in the form that is expected; throws what the server refused. */
+export async function accept<T extends z.ZodType>(response: Response, path: string, schema: T): Promise<z.infer<T>> {
+  const sentAt = Date.parse(response.headers.get('Date') ?? '')
+  listeners.answered(Number.isNaN(sentAt) ? null : sentAt)
   const answer: unknown = response.status === 204 ? undefined : await readJson(response)
   if (!response.ok) throw refusal(response, path, answer)
   const parsed = schema.safeParse(answer)
@@ -40,7 +46,7 @@ export async function request<T extends z.ZodType>(
 
 async function send(method: Method, path: string, body: unknown, ifMatch?: number): Promise<Response> {
   try {
-    const response = await fetch(path, {
+    return await fetch(path, {
       method,
       credentials: 'same-origin',
       headers: {
@@ -52,9 +58,6 @@ async function send(method: Method, path: string, body: unknown, ifMatch?: numbe
       body: body === undefined ? undefined : JSON.stringify(body),
       signal: AbortSignal.timeout(answerTimeoutMs),
     })
-    const sentAt = Date.parse(response.headers.get('Date') ?? '')
-    listeners.answered(Number.isNaN(sentAt) ? null : sentAt)
-    return response
   } catch (error) {
     throw new ContactError(`no answer to ${method} ${path}`, { cause: error })
   }

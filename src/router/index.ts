@@ -5,6 +5,7 @@ import WatchLayout from '../layouts/WatchLayout.vue'
 import { useSession } from '../stores/session.ts'
 import { useStations } from '../stores/stations.ts'
 import { pages } from './pages.ts'
+import { setUpRoutes } from './setUp.ts'
 
 const routes: RouteRecordRaw[] = [
   {
@@ -90,6 +91,7 @@ const routes: RouteRecordRaw[] = [
         component: () => import('../pages/ListsPage.vue'),
         meta: { title: 'Lists', page: 'lists' },
       },
+      ...setUpRoutes,
       {
         path: ':rest(.*)*',
         name: 'notFound',

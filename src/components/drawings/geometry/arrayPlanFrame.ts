@@ -1,11 +1,6 @@
 /** The array editor's square: a piece of the local grid, north up, that holds still while sensors are moved in it. */
+import type { GridPosition } from '../../../../shared/geodesy.ts'
 import type { Point } from './polar.ts'
-
-export interface GridPosition {
-  /** Metres of the local grid, true north. */
-  east: number
-  north: number
-}
 
 /** Middle and side of the piece that is shown, m. */
 export interface PlanExtent extends GridPosition {
@@ -89,12 +84,4 @@ export function arrayPlanFrame(extent: PlanExtent, size: number): ArrayPlanFrame
     majorLines: lines(true),
     scale,
   }
-}
-
-/** Metres and degrees true from one position to another; bearing 0 where they coincide. */
-export function distanceAndBearing(from: GridPosition, to: GridPosition): { metres: number; bearing: number } {
-  const east = to.east - from.east
-  const north = to.north - from.north
-  const bearing = (Math.atan2(east, north) * 180) / Math.PI
-  return { metres: Math.hypot(east, north), bearing: bearing < 0 ? bearing + 360 : bearing }
 }

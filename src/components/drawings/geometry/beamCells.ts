@@ -8,23 +8,23 @@ export const powerSteps = [0.1, 0.2, 0.35, 0.5, 0.7, 0.85] as const
 export const powerTone = (power: number): number => powerSteps.filter((step) => power >= step).length
 
 /**
- * `power[row][column]`, rows from north to south, columns from west to east, drawn in a square of the given size.
- * The answer has one path for each of the six tones, lightest first; cells overlap by a hair so that no seam shows.
+ * `power[row × cells + column]`, rows from north to south, columns from west to east, drawn in a square of the given
+ * size. The answer has one path for each of the six tones, lightest first; cells overlap by a hair so that no seam shows.
  */
-export function beamCells(power: readonly (readonly number[])[], size: number): string[] {
+export function beamCells(power: ArrayLike<number>, cells: number, size: number): string[] {
   const paths = powerSteps.map(() => '')
-  const cell = size / Math.max(1, power.length)
-  power.forEach((row, j) => {
+  const cell = size / Math.max(1, cells)
+  for (let row = 0; row < cells; row += 1) {
     let start = 0
-    row.forEach((value, i) => {
-      const tone = powerTone(value)
-      if (i + 1 < row.length && powerTone(row[i + 1]) === tone) return
+    for (let column = 0; column < cells; column += 1) {
+      const tone = powerTone(power[row * cells + column])
+      if (column + 1 < cells && powerTone(power[row * cells + column + 1]) === tone) continue
       if (tone > 0) {
-        const width = round2((i + 1 - start) * cell)
-        paths[tone - 1] += `M${round2(start * cell)} ${round2(j * cell)}h${width}v${round2(cell + 0.2)}h-${width}z`
+        const width = round2((column + 1 - start) * cell)
+        paths[tone - 1] += `M${round2(start * cell)} ${round2(row * cell)}h${width}v${round2(cell + 0.2)}h-${width}z`
       }
-      start = i + 1
-    })
-  })
+      start = column + 1
+    }
+  }
   return paths
 }
