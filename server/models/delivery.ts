@@ -23,6 +23,8 @@ export class Delivery extends Model<InferAttributes<Delivery>, InferCreationAttr
   declare handedOverAt: Date | null
   /** How often that happened. */
   declare unknownCount: CreationOptional<number>
+  /** Names of those who are away and whose deputy this person is. */
+  declare standsInFor: string | null
 }
 
 export const defineDelivery = (sequelize: Sequelize): void => {
@@ -48,6 +50,7 @@ export const defineDelivery = (sequelize: Sequelize): void => {
       rootMessageId: DataTypes.BIGINT.UNSIGNED,
       handedOverAt: DataTypes.DATE(3),
       unknownCount: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false, defaultValue: 0 },
+      standsInFor: DataTypes.STRING(300),
     },
     { sequelize, tableName: 'deliveries' },
   )

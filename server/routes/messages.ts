@@ -17,10 +17,10 @@ export const messageRoutes = (parts: Parts): Route[] => [
     method: 'get',
     path: '/api/messages',
     action: 'messages.read',
-    summary: 'E-mails written, newest first, with what became of each for every person',
-    query: z.object({ before: id, alertId: id }),
+    summary: 'E-mails written, newest first, with what became of each for every person; `show=notOut`: those that wait',
+    query: z.object({ before: id, alertId: id, show: z.literal('notOut').optional() }),
     answer: messageList,
-    handle: ({ query }) => listMessages(query),
+    handle: ({ query: { show, ...query } }) => listMessages(parts, { ...query, isNotOut: show === 'notOut' }),
   }),
   route({
     method: 'get',

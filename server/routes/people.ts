@@ -1,7 +1,8 @@
 import { z } from 'zod'
+import { personName } from '../../shared/schemas/limit.ts'
 import { personChange, personView, profileChange, recipientDraft } from '../../shared/schemas/person.ts'
 import type { Parts } from '../config/parts.ts'
-import { addRecipient, changeMailSide, listPeople, readPerson } from '../services/people/mailSide.ts'
+import { addRecipient, changeMailSide, listDeputies, listPeople, readPerson } from '../services/people/mailSide.ts'
 import { versionIn } from './ifMatch.ts'
 import { idInPath } from './parameters.ts'
 import { route } from './registry.ts'
@@ -47,6 +48,25 @@ export const peopleRoutes = (parts: Parts): Route[] => [
     answer: personView,
     handle: ({ params, body, caller, request }) =>
       changeMailSide(parts, params.personId, versionIn(request), body, caller.person.id),
+  }),
+  route({
+    method: 'put',
+    path: '/api/people/:personId/mailSide',
+    action: 'mailSides.change',
+    summary: "Another person's hours, deputy and absences, as the watch enters them; needs If-Match with their version",
+    params: personInPath,
+    body: profileChange,
+    answer: personView,
+    handle: ({ params, body, caller, request }) =>
+      changeMailSide(parts, params.personId, versionIn(request), body, caller.person.id),
+  }),
+  route({
+    method: 'get',
+    path: '/api/profile/deputies',
+    action: 'profile.read',
+    summary: 'Names of those who could be told instead of who is signed in',
+    answer: z.object({ people: z.array(personName) }),
+    handle: async ({ caller }) => ({ people: await listDeputies(caller.person.id) }),
   }),
   route({
     method: 'get',

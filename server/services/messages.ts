@@ -1,7 +1,10 @@
 /** The outbox: e-mails written once, each for everybody who is to get it. */
 import { Op } from 'sequelize'
 import type { MessageView } from '../../shared/schemas/message.ts'
+import type { Parts } from '../config/parts.ts'
 import { Message } from '../models/index.ts'
+import { notOutSince, notOutSql } from '../models/notOut.ts'
+import { select } from '../models/sql.ts'
 import { presentMessages } from './messages/present.ts'
 import { notFound } from './problems.ts'
 
@@ -15,13 +18,17 @@ export { writeMessage } from './messages/write.ts'
 const aPage = 50
 
 /** Newest first; `before` is the last id of the page before. */
-export async function listMessages(asked: {
-  before?: number
-  alertId?: number
-}): Promise<{ messages: MessageView[]; next: number | null }> {
-  const { before, alertId } = asked
+export async function listMessages(
+  { sequelize, clock }: Pick<Parts, 'sequelize' | 'clock'>,
+  asked: { before?: number; alertId?: number; isNotOut?: boolean },
+): Promise<{ messages: MessageView[]; next: number | null }> {
+  const { before, alertId, isNotOut } = asked
+  const notOut = isNotOut ? await notOutAmong(sequelize, clock.now()) : null
   const rows = await Message.findAll({
-    where: { ...(before && { id: { [Op.lt]: before } }), ...(alertId && { alertId }) },
+    where: {
+      [Op.and]: [before ? { id: { [Op.lt]: before } } : {}, notOut ? { id: notOut } : {}],
+      ...(alertId && { alertId }),
+    },
     order: [['id', 'DESC']],
     limit: aPage + 1,
   })
@@ -30,6 +37,13 @@ export async function listMessages(asked: {
     messages: await presentMessages(page),
     next: rows.length > aPage ? (page.at(-1)?.id ?? null) : null,
   }
+}
+
+/** Messages that have not reached the mail server for somebody. */
+async function notOutAmong(sequelize: Parts['sequelize'], now: Date): Promise<number[]> {
+  const sql = `SELECT DISTINCT d.messageId FROM deliveries d WHERE ${notOutSql}`
+  const rows = await select<{ messageId: number }>(sequelize, sql, { notOutSince: notOutSince(now) })
+  return rows.map(({ messageId }) => messageId)
 }
 
 /** As the list shows it. */

@@ -5,8 +5,9 @@
  */
 import type { Transaction } from 'sequelize'
 import { stateWords } from '../../shared/alerts/describe.ts'
+import { priority } from '../../shared/schemas/limit.ts'
 import { messageContent } from '../../shared/schemas/message.ts'
-import type { ReceiptView } from '../../shared/schemas/message.ts'
+import type { MessageContent, ReceiptView } from '../../shared/schemas/message.ts'
 import type { Parts } from '../config/parts.ts'
 import { Alert, AlertEvent, Delivery, LinkToken, Message, Person } from '../models/index.ts'
 import { execute, select } from '../models/sql.ts'
@@ -23,8 +24,14 @@ interface Link {
   person: Person
   delivery: Delivery
   message: Message
-  /** The alerts whose news the e-mail brings: several in a flood, most serious first. */
-  alerts: Alert[]
+  /** What the e-mail brings: in a flood several, most serious first. */
+  news: News[]
+}
+
+interface News {
+  alert: Alert
+  /** As it was written for this alert. */
+  content: MessageContent | null
 }
 
 /** Changes nothing. */
@@ -40,10 +47,10 @@ export async function confirmReceipt(parts: Parts, token: string): Promise<Recei
     const now = parts.clock.now()
     if (link.row.expiresAt <= now) throw expired()
     await link.row.update({ usedAt: now }, { transaction })
-    for (const { id } of link.alerts) await markReceived(parts, link, id, now, transaction)
+    for (const { alert } of link.news) await markReceived(parts, link, alert.id, now, transaction)
     await link.delivery.update({ receivedAt: now }, { transaction })
     await writeDown(parts, link, now, transaction)
-    return link.alerts.map(({ id }) => id)
+    return link.news.map(({ alert }) => alert.id)
   })
   const link = await linkOf(parts, token)
   for (const alertId of alertIds) parts.bus.publish('message.changed', { messageId: link.message.id, alertId })
@@ -61,30 +68,36 @@ async function linkOf(parts: Parts, token: string, transaction?: Transaction): P
     delivery && Person.findByPk(delivery.personId, within),
   ])
   if (!row || !delivery || !message || !person) throw unknownLink()
-  return { row, delivery, message, person, alerts: await alertsOf(parts, message, person.id, transaction) }
+  return { row, delivery, message, person, news: await newsOf(parts, message, person.id, transaction) }
 }
 
-async function alertsOf(
+async function newsOf(
   { sequelize }: Parts,
   message: Message,
   personId: number,
   transaction?: Transaction,
-): Promise<Alert[]> {
+): Promise<News[]> {
   const within = transaction && { transaction }
   if (message.alertId !== null) {
     const alert = await Alert.findByPk(message.alertId, within)
-    return alert ? [alert] : []
+    return alert ? [{ alert, content: message.content }] : []
   }
-  const rows = await select<{ alertId: number }>(
+  const rows = await select<{ alertId: number; messageId: number }>(
     sequelize,
-    `SELECT DISTINCT m.alertId FROM deliveries d JOIN messages m ON m.id = d.messageId
-     WHERE d.rootMessageId = :root AND d.personId = :personId AND m.alertId IS NOT NULL`,
+    `SELECT m.alertId, MAX(m.id) AS messageId FROM deliveries d JOIN messages m ON m.id = d.messageId
+     WHERE d.rootMessageId = :root AND d.personId = :personId AND m.alertId IS NOT NULL GROUP BY m.alertId`,
     { root: message.id, personId },
     transaction,
   )
-  const alerts = await Alert.findAll({ where: { id: rows.map(({ alertId }) => alertId) }, ...within })
-  const path = messageContent.shape.path.catch('').parse(message.content?.path)
-  return alerts.sort((a, b) => Number(path === `/alerts/${b.id}`) - Number(path === `/alerts/${a.id}`) || b.id - a.id)
+  const [alerts, messages] = await Promise.all([
+    Alert.findAll({ where: { id: rows.map(({ alertId }) => alertId) }, ...within }),
+    Message.findAll({ where: { id: rows.map(({ messageId }) => messageId) }, ...within }),
+  ])
+  const first = messageContent.shape.path.catch('').parse(message.content?.path)
+  const rank = ({ id, priority: of }: Alert): number => (first === `/alerts/${id}` ? 10 : priority.options.indexOf(of))
+  return alerts
+    .sort((a, b) => rank(b) - rank(a) || b.id - a.id)
+    .map((alert) => ({ alert, content: messages.find(({ alertId }) => alertId === alert.id)?.content ?? null }))
 }
 
 /** Of everything that this person got about the alert; their steps are met, and those not yet sent are not needed. */
@@ -122,12 +135,12 @@ async function markReceived(
 
 async function writeDown(
   parts: Parts,
-  { person, delivery, alerts }: Link,
+  { person, delivery, news }: Link,
   now: Date,
   transaction: Transaction,
 ): Promise<void> {
   const text = `Receipt confirmed by ${person.name}.`
-  for (const { id, isExercise } of alerts) {
+  for (const { id, isExercise } of news.map(({ alert }) => alert)) {
     const event = { alertId: id, at: now, kind: 'receipt' as const, personId: person.id, text }
     await AlertEvent.create(event, { transaction })
     const mark = isExercise ? 'EXERCISE. ' : ''
@@ -138,11 +151,19 @@ async function writeDown(
   await recordAudit(parts, { ...change, personId: person.id, after: { receivedAt: now.toISOString() } }, transaction)
 }
 
-async function present(parts: Parts, { row, person, message, alerts }: Link): Promise<ReceiptView> {
-  const [alert] = alerts
-  if (!alert || !message.content) throw unknownLink()
-  const acknowledgedBy =
-    alert.acknowledgedById === null ? null : await Person.findByPk(alert.acknowledgedById, { attributes: ['name'] })
+async function present(parts: Parts, { row, person, message, news }: Link): Promise<ReceiptView> {
+  const [first, ...others] = news
+  if (!first || !message.content) throw unknownLink()
+  const ids = news.flatMap(({ alert }) => alert.acknowledgedById ?? [])
+  const officers = await Person.findAll({ where: { id: ids }, attributes: ['id', 'name'] })
+  const standing = (alert: Alert) => ({
+    id: alert.id,
+    state: alert.state,
+    stateWords: stateWords[alert.closedAt ? 'normal' : alert.state],
+    acknowledgedAt: alert.acknowledgedAt?.toISOString() ?? null,
+    acknowledgedBy: officers.find(({ id }) => id === alert.acknowledgedById)?.name ?? null,
+    closedAt: alert.closedAt?.toISOString() ?? null,
+  })
   return {
     person: person.name,
     portName: message.content.portName,
@@ -152,14 +173,14 @@ async function present(parts: Parts, { row, person, message, alerts }: Link): Pr
     isExpired: row.expiresAt <= parts.clock.now(),
     confirmedAt: row.usedAt?.toISOString() ?? null,
     content: message.content,
-    alert: {
-      id: alert.id,
-      state: alert.state,
-      stateWords: stateWords[alert.closedAt ? 'normal' : alert.state],
-      acknowledgedAt: alert.acknowledgedAt?.toISOString() ?? null,
-      acknowledgedBy: acknowledgedBy?.name ?? null,
-      closedAt: alert.closedAt?.toISOString() ?? null,
-    },
+    alert: standing(first.alert),
+    others: others.map(({ alert, content }) => ({
+      ...standing(alert),
+      priority: alert.priority,
+      title: content?.title ?? `Alert ${alert.id}`,
+      value: content?.value ?? '',
+      when: content?.when ?? '',
+    })),
   }
 }
 

@@ -116,6 +116,8 @@ export const toldView = z.object({
       messageId: z.number().int(),
       state: z.enum(['queued', 'leased', 'accepted', 'refused', 'unknown', 'givenUp', 'merged']),
       attempts: z.number().int(),
+      /** Names of those whose deputy they are. */
+      standsInFor: z.string().nullable(),
       nextAttemptAt: time.nullable(),
       acceptedAt: time.nullable(),
     }),

@@ -96,6 +96,16 @@ export type MessageView = z.infer<typeof messageView>
 export const messageDetail = messageView.extend({ text: z.string(), html: z.string().nullable() })
 export const messageList = z.object({ messages: z.array(messageView), next: z.number().int().nullable() })
 
+/** How an alert stands now. */
+const receiptAlert = z.object({
+  id: z.number().int(),
+  state: z.string(),
+  stateWords: z.string(),
+  acknowledgedAt: time.nullable(),
+  acknowledgedBy: z.string().nullable(),
+  closedAt: time.nullable(),
+})
+
 /** What `/receipt/TOKEN` shows; asking changes nothing. */
 export const receiptView = z.object({
   person: z.string(),
@@ -106,14 +116,8 @@ export const receiptView = z.object({
   isExpired: z.boolean(),
   confirmedAt: time.nullable(),
   content: messageContent,
-  /** How the alert stands now. */
-  alert: z.object({
-    id: z.number().int(),
-    state: z.string(),
-    stateWords: z.string(),
-    acknowledgedAt: time.nullable(),
-    acknowledgedBy: z.string().nullable(),
-    closedAt: time.nullable(),
-  }),
+  alert: receiptAlert,
+  /** In a flood: the other alerts whose receipt the same press confirms, most serious first. */
+  others: z.array(receiptAlert.extend({ priority, title: z.string(), value: z.string(), when: z.string() })),
 })
 export type ReceiptView = z.infer<typeof receiptView>

@@ -1,6 +1,8 @@
 import { z } from 'zod'
 import { listView } from '../../shared/schemas/distributionList.ts'
 import type { ListContent, ListView } from '../../shared/schemas/distributionList.ts'
+import { personName } from '../../shared/schemas/limit.ts'
+import type { PersonName } from '../../shared/schemas/limit.ts'
 import { personView } from '../../shared/schemas/person.ts'
 import type { PersonChange, PersonView, ProfileChange, RecipientDraft } from '../../shared/schemas/person.ts'
 import { request } from './request.ts'
@@ -25,6 +27,14 @@ export const addRecipient = (draft: RecipientDraft): Promise<PersonView> =>
 
 export const changePerson = (id: number, version: number, change: PersonChange): Promise<PersonView> =>
   request('PUT', `/api/people/${id}`, personView, change, version)
+
+/** Hours, deputy and absences of somebody else. */
+export const changeMailSide = (id: number, version: number, change: ProfileChange): Promise<PersonView> =>
+  request('PUT', `/api/people/${id}/mailSide`, personView, change, version)
+
+/** Names of those who could be told instead of who is signed in. */
+export const readDeputies = async (): Promise<PersonName[]> =>
+  (await request('GET', '/api/profile/deputies', z.object({ people: z.array(personName) }))).people
 
 export const readProfile = (): Promise<PersonView> => request('GET', '/api/profile', personView)
 

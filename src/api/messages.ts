@@ -7,6 +7,9 @@ import { request } from './request.ts'
 export const readMessages = (before?: number) =>
   request('GET', `/api/messages${before === undefined ? '' : `?before=${before}`}`, messageList)
 
+/** Those that have not reached the mail server for somebody. */
+export const readNotOut = () => request('GET', '/api/messages?show=notOut', messageList)
+
 export const readMessage = (id: number) => request('GET', `/api/messages/${id}`, messageDetail)
 
 export const sendTest = (personId: number) => request('POST', '/api/messages/test', messageDetail, { personId })

@@ -3,12 +3,15 @@ import { defineStore } from 'pinia'
 import { computed, ref, shallowReactive, shallowRef } from 'vue'
 import type { ListContent, ListView } from '../../shared/schemas/distributionList.ts'
 import type { PersonChange, PersonView, ProfileChange, RecipientDraft } from '../../shared/schemas/person.ts'
+import type { PersonName } from '../../shared/schemas/limit.ts'
 import * as api from '../api/lists.ts'
 
 export const useLists = defineStore('lists', () => {
   const held = shallowReactive(new Map<number, ListView>())
   const peopleHeld = shallowReactive(new Map<number, PersonView>())
   const profile = shallowRef<PersonView | null>(null)
+  /** Who could be told instead of who is signed in. */
+  const deputies = shallowRef<PersonName[]>([])
   const loaded = ref(false)
 
   const all = computed(() =>
@@ -46,11 +49,20 @@ export const useLists = defineStore('lists', () => {
     const changed = await api.changePerson(person.id, person.version, change)
     peopleHeld.set(changed.id, changed)
   }
+  async function changeMailSide(person: PersonView, change: ProfileChange): Promise<void> {
+    const changed = await api.changeMailSide(person.id, person.version, change)
+    peopleHeld.set(changed.id, changed)
+    if (profile.value?.id === changed.id) profile.value = changed
+  }
   async function readProfile(): Promise<void> {
-    profile.value = await api.readProfile()
+    const answers = await Promise.all([api.readProfile(), api.readDeputies()])
+    profile.value = answers[0]
+    deputies.value = answers[1]
   }
   async function changeProfile(change: ProfileChange): Promise<void> {
-    if (profile.value) profile.value = await api.changeProfile(profile.value.version, change)
+    if (!profile.value) return
+    profile.value = await api.changeProfile(profile.value.version, change)
+    if (peopleHeld.has(profile.value.id)) peopleHeld.set(profile.value.id, profile.value)
   }
   async function leaveList(id: number): Promise<void> {
     await api.leaveList(id)
@@ -58,7 +70,7 @@ export const useLists = defineStore('lists', () => {
   }
 
   return {
-    ...{ all, people, profile, loaded, byId, read, readPeople, save, retire, addRecipient, changePerson },
-    ...{ readProfile, changeProfile, leaveList },
+    ...{ all, people, profile, deputies, loaded, byId, read, readPeople, save, retire, addRecipient, changePerson },
+    ...{ changeMailSide, readProfile, changeProfile, leaveList },
   }
 })

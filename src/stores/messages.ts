@@ -54,6 +54,10 @@ export const useMessages = defineStore('messages', () => {
     }
   }
 
+  /** However old they are, so that a filter over what is held leaves none out. */
+  async function readNotOut(): Promise<void> {
+    for (const message of (await api.readNotOut()).messages) apply(message)
+  }
   const readOlder = async (): Promise<void> => (next.value === null ? undefined : read(next.value))
   const open = async (id: number): Promise<void> => apply(await api.readMessage(id))
   const retry = async (deliveryId: number): Promise<void> => apply(await api.retryDelivery(deliveryId))
@@ -64,7 +68,7 @@ export const useMessages = defineStore('messages', () => {
   }
 
   return {
-    ...{ all, loaded, next, detail, apply, watchAll, readOlder, open, retry, sendTest },
+    ...{ all, loaded, next, detail, apply, watchAll, readNotOut, readOlder, open, retry, sendTest },
     readCaughtMails: api.readCaughtMails,
     readCaughtMail: api.readCaughtMail,
   }

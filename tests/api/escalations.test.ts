@@ -214,8 +214,11 @@ describe('who is told', () => {
     const startsAt = new Date(parts.clock.now().getTime() - 1000)
     await Absence.create({ personId: person.id, startsAt, endsAt: new Date(startsAt.getTime() + 3600_000) })
     expect(await told([person.id])).toEqual([deputy.email])
+    const text = server.caught.at(-1)?.mail.text
+    expect(text).toContain(`You receive this as ${deputy.name}, deputy of ${person.name}, who cannot be reached now.`)
     parts.clock.advance(3600)
     expect(await told([person.id])).toEqual([person.email])
+    expect(server.caught.at(-1)?.mail.text).toContain(`You receive this as ${person.name}.`)
   })
 
   test('is the deputy outside the own hours of the person, once although both are on the list', async () => {

@@ -113,6 +113,34 @@ describe('people who get e-mails', () => {
     await browser.put('/api/profile').set('If-Match', '"2"').send(turned).expect(422)
   })
 
+  test('the watch enters hours, deputy and absence for somebody else, and nothing else of them', async () => {
+    const { browser } = await browserOf('operator')
+    const [ill, deputy] = [await makePerson(parts.clock, { role: null }), await makePerson(parts.clock)]
+    const side = {
+      hours: null,
+      deputyId: deputy.id,
+      absences: [{ startsAt: '2026-12-01T00:00:00Z', endsAt: '2026-12-08T00:00:00Z' }],
+    }
+    const put = (by: typeof browser, version: number, body: object = side) =>
+      by.put(`/api/people/${ill.id}/mailSide`).set('If-Match', `"${version}"`).send(body)
+    const { body } = await put(browser, 1).expect(200)
+    expect(body).toMatchObject({ name: ill.name, deputy: { name: deputy.name }, version: 2 })
+    await put(browser, 1).expect(412)
+    await put(browser, 2, { ...side, email: 'other@harbour.example' }).expect(422)
+    await put((await browserOf('partner')).browser, 2).expect(403)
+    await put((await browserOf('admin')).browser, 2, { ...side, absences: [] }).expect(200)
+    const audit = await Audit.findOne({ where: { action: 'person.changeMail', entityId: String(ill.id) } })
+    expect(audit?.after).toMatchObject({ deputyId: deputy.id })
+  })
+
+  test('a partner is offered names for a deputy, without addresses, and not their own', async () => {
+    const { browser, person } = await browserOf('partner')
+    const { people } = (await browser.get('/api/profile/deputies').expect(200)).body
+    expect(people.length).toBeGreaterThan(0)
+    expect(people.map(({ id }: { id: number }) => id)).not.toContain(person.id)
+    expect(Object.keys(people[0])).toEqual(['id', 'name'])
+  })
+
   test('somebody without a role is added by an administrator, once for each address, and cannot sign in', async () => {
     const { browser } = await browserOf('admin')
     const draft = { name: 'Works team', email: 'Works@harbour.example', team: 'harbour' }
@@ -141,6 +169,28 @@ describe('people who get e-mails', () => {
     expect(again.body.deliveries).toMatchObject([{ state: 'queued', person: { id: person.id } }])
     const list = await browser.get('/api/messages').expect(200)
     expect(list.body.messages[0].id).toBe(await Message.max('id'))
+  })
+
+  test('those that are not out for somebody are listed apart, as the alert line counts them', async () => {
+    const { browser } = await browserOf('operator')
+    const person = await makePerson(parts.clock, { role: null })
+    const messageOf = async (state: 'queued' | 'refused' | 'givenUp' | 'accepted', attempts: number, hoursAgo = 0) => {
+      const createdAt = new Date(parts.clock.now().getTime() - hoursAgo * 3_600_000)
+      const { id } = await Message.create({ kind: 'test', subject: 'Test', text: 'Test', isExercise: false, createdAt, queuedAt: createdAt }) // prettier-ignore
+      const header = `<${id}@harbour.example>`
+      const to = { messageId: id, personId: person.id, address: 'x@y.example', messageIdHeader: header, createdAt }
+      await Delivery.create({ ...to, state, attempts })
+      return id
+    }
+    const wanted = [await messageOf('queued', 3), await messageOf('refused', 1), await messageOf('givenUp', 9)]
+    await messageOf('queued', 0)
+    await messageOf('accepted', 2)
+    await messageOf('refused', 1, 25)
+    const { body } = await browser.get('/api/messages?show=notOut').expect(200)
+    const listed = body.messages.map(({ id }: { id: number }) => id)
+    for (const id of wanted) expect(listed).toContain(id)
+    const { messagesNotOut } = (await browser.get('/api/alerts').expect(200)).body
+    expect(messagesNotOut.count).toBe(listed.length)
   })
 
   test('in real use there are no caught e-mails', async () => {

@@ -7,6 +7,7 @@ import type { DeliverMail } from '../../server/jobs/deliverMail.ts'
 import { createTransport } from '../../server/mail/transport.ts'
 import { AlertEvent, Audit, Delivery, Escalation, LinkToken, LogEntry } from '../../server/models/index.ts'
 import type { Person } from '../../server/models/index.ts'
+import type { ReceiptView } from '../../shared/schemas/message.ts'
 import { makeLimit, makeList, raiseAlert } from '../support/alerts.ts'
 import { openBrowser, signedIn } from '../support/browser.ts'
 import { makePerson } from '../support/factories.ts'
@@ -14,6 +15,8 @@ import { startTestMailServer } from '../support/mailCatcher.ts'
 import type { TestMailServer } from '../support/mailCatcher.ts'
 import { testParts } from '../support/parts.ts'
 import type { TestParts } from '../support/parts.ts'
+
+type ReceiptAlert = ReceiptView['alert']
 
 let parts: TestParts
 let app: Express
@@ -173,7 +176,18 @@ describe('the button', () => {
     await mail.run()
     const flood = server.caught.find(({ mail: one }) => one.subject?.startsWith('5 more alerts'))
     const token = /receipt\/([\w.-]+)/.exec(flood?.mail.text ?? '')?.[1] ?? ''
+    const seen = (await openBrowser(app).get(`/api/receipts/${token}`).expect(200)).body
+    expect(seen.others.map(({ stateWords }: ReceiptAlert) => stateWords)).toEqual(
+      Array(4).fill('Active, not acknowledged'),
+    )
+    expect(new Set([seen.alert, ...seen.others].map(({ id }: ReceiptAlert) => id)).size).toBe(5)
+    expect(seen.others[0]).toMatchObject({
+      title: 'Total height, Outer Ledge',
+      value: '2.61 m ± 0.14',
+      priority: 'high',
+    })
     const { body } = await openBrowser(app).post(`/api/receipts/${token}`).expect(200)
+    expect(body.confirmedAt).not.toBeNull()
     expect(body.content.others).toHaveLength(4)
     const received = await Delivery.findAll({ where: { personId: people[0].id } })
     expect(received.filter(({ state }) => state === 'merged').every(({ receivedAt }) => receivedAt !== null)).toBe(true)

@@ -5,12 +5,11 @@ import type { AlertBoard, AlertView } from '../../../shared/schemas/alert.ts'
 import type { LimitView, NotJudgedReason } from '../../../shared/schemas/limit.ts'
 import type { Parts } from '../../config/parts.ts'
 import { Alert, Limit } from '../../models/index.ts'
+import { notOutSince, notOutSql } from '../../models/notOut.ts'
 import { select } from '../../models/sql.ts'
 import { presentLimits } from '../limits/present.ts'
 import { currentFlood } from './floodLine.ts'
 import { presentAlerts } from './present.ts'
-
-const hourMs = 3_600_000
 
 /** In words: the number of limits judged is never said without those that were not. */
 const reasons: Record<NotJudgedReason, string> = {
@@ -53,9 +52,8 @@ async function floodOf(parts: Parts, alerts: AlertView[]): Promise<AlertBoard['f
 async function messagesNotOut({ sequelize, clock }: Parts): Promise<AlertBoard['messagesNotOut']> {
   const [row] = await select<{ count: number | string; since: Date | null }>(
     sequelize,
-    `SELECT COUNT(*) AS count, MIN(createdAt) AS since FROM deliveries
-     WHERE state IN ('queued', 'leased') AND attempts > 0 OR state IN ('refused', 'givenUp') AND createdAt > :dayAgo`,
-    { dayAgo: new Date(clock.now().getTime() - 24 * hourMs) },
+    `SELECT COUNT(*) AS count, MIN(d.createdAt) AS since FROM deliveries d WHERE ${notOutSql}`,
+    { notOutSince: notOutSince(clock.now()) },
   )
   return { count: Number(row?.count ?? 0), since: row?.since?.toISOString() ?? null }
 }

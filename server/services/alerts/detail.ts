@@ -53,6 +53,7 @@ interface ToldRow {
   name: string
   state: Detail['told'][number]['deliveries'][number]['state']
   attempts: number
+  standsInFor: string | null
   nextAttemptAt: Date | null
   acceptedAt: Date | null
   receivedAt: Date | null
@@ -61,7 +62,7 @@ interface ToldRow {
 async function toldOf({ sequelize }: Parts, alertId: number): Promise<Detail['told']> {
   const rows = await select<ToldRow>(
     sequelize,
-    `SELECT d.id, d.messageId, d.personId, p.name, d.state, d.attempts, d.nextAttemptAt, d.acceptedAt, d.receivedAt
+    `SELECT d.id, d.messageId, d.personId, p.name, d.state, d.attempts, d.standsInFor, d.nextAttemptAt, d.acceptedAt, d.receivedAt
      FROM deliveries d JOIN messages m ON m.id = d.messageId JOIN people p ON p.id = d.personId
      WHERE m.alertId = :alertId ORDER BY d.id`,
     { alertId },
@@ -73,6 +74,7 @@ async function toldOf({ sequelize }: Parts, alertId: number): Promise<Detail['to
     told.deliveries.push({
       ...{ id: Number(delivery.id), messageId: Number(delivery.messageId), state: delivery.state },
       attempts: delivery.attempts,
+      standsInFor: delivery.standsInFor,
       nextAttemptAt: delivery.nextAttemptAt?.toISOString() ?? null,
       acceptedAt: delivery.acceptedAt?.toISOString() ?? null,
     })

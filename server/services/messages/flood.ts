@@ -55,6 +55,7 @@ interface Held {
   messageId: number
   personId: number
   address: string
+  standsInFor: string | null
 }
 
 /** Writes the e-mails that list what waits, one for all people of whom the same waits; answers their ids. */
@@ -70,7 +71,7 @@ export async function mergeFlood(parts: Parts): Promise<number[]> {
     )
     const held = await select<Held>(
       parts.sequelize,
-      `SELECT id, messageId, personId, address FROM deliveries
+      `SELECT id, messageId, personId, address, standsInFor FROM deliveries
        WHERE state = 'merged' AND (nextAttemptAt <= :now OR nextAttemptAt > :ahead) ORDER BY messageId, id LIMIT 5000 FOR UPDATE SKIP LOCKED`,
       { now, ahead: new Date(now.getTime() + floodMs) },
       transaction,
@@ -97,7 +98,7 @@ function byWhatWaits(held: Held[]): Held[][] {
 async function writeRoot(parts: Parts, group: Held[], transaction: Transaction): Promise<number> {
   const messageIds = [...new Set(group.map(({ messageId }) => messageId))]
   const messages = await Message.findAll({ where: { id: messageIds }, transaction })
-  const recipients = [...new Map(group.map(({ personId, address }) => [personId, { personId, address }])).values()]
+  const recipients = recipientsOf(group)
   const root = await writeMessage(parts, { kind: 'flood', ...tellAll(messages) }, transaction, recipients)
   await Delivery.update(
     { rootMessageId: root.id, nextAttemptAt: null },
@@ -110,6 +111,17 @@ async function writeRoot(parts: Parts, group: Held[], transaction: Transaction):
     transaction,
   )
   return root.id
+}
+
+/** Each person once, with the names of all whom they stand in for. */
+function recipientsOf(group: Held[]): Recipient[] {
+  const people = new Map<number, Recipient & { standsInFor: string[] }>()
+  for (const { personId, address, standsInFor } of group) {
+    const known = people.get(personId) ?? { personId, address, standsInFor: [] }
+    people.set(personId, known)
+    if (standsInFor !== null && !known.standsInFor.includes(standsInFor)) known.standsInFor.push(standsInFor)
+  }
+  return [...people.values()]
 }
 
 const isCleared = ({ kind }: Message): boolean => kind === 'allClear'

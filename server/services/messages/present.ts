@@ -10,6 +10,7 @@ const presentDelivery = (row: Delivery, name: string): DeliveryView => ({
   id: row.id,
   person: { id: row.personId, name },
   address: row.address,
+  standsInFor: row.standsInFor,
   state: row.state,
   attempts: row.attempts,
   nextAttemptAt: iso(row.nextAttemptAt),

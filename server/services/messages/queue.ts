@@ -139,16 +139,31 @@ async function toldBefore({ sequelize }: Parts, alertId: number, transaction: Tr
   return new Set(rows.map(({ personId }) => personId))
 }
 
-const toldOf = ({ sequelize }: Parts, alertId: number, transaction: Transaction): Promise<Recipient[]> =>
-  select(
+interface ToldRow {
+  personId: number
+  address: string
+  standsInFor: string | null
+}
+
+/** Who was told for somebody else is told on for them. */
+const toldAgain = (rows: ToldRow[]): Recipient[] =>
+  rows.map(({ standsInFor, ...recipient }) => ({
+    ...recipient,
+    standsInFor: standsInFor === null ? [] : [standsInFor],
+  }))
+
+const toldOf = async ({ sequelize }: Parts, alertId: number, transaction: Transaction): Promise<Recipient[]> => {
+  const rows = await select<ToldRow>(
     sequelize,
-    `SELECT DISTINCT p.id AS personId, p.email AS address
+    `SELECT p.id AS personId, p.email AS address, MAX(d.standsInFor) AS standsInFor
      FROM deliveries d JOIN messages m ON m.id = d.messageId JOIN people p ON p.id = d.personId
      WHERE m.alertId = :alertId AND m.kind IN ('alert', 'escalation')
-       AND p.email IS NOT NULL AND p.disabledAt IS NULL ORDER BY p.id`,
+       AND p.email IS NOT NULL AND p.disabledAt IS NULL GROUP BY p.id, p.email ORDER BY p.id`,
     { alertId },
     transaction,
   )
+  return toldAgain(rows)
+}
 
 /** Nobody is reminded of an e-mail that is not out yet. */
 async function withoutReceipt(
@@ -158,9 +173,9 @@ async function withoutReceipt(
   transaction: Transaction,
 ): Promise<Recipient[]> {
   const since = await announcedSince(sequelize, alertId, transaction)
-  return select(
+  const rows = await select<ToldRow>(
     sequelize,
-    `SELECT p.id AS personId, p.email AS address
+    `SELECT p.id AS personId, p.email AS address, MAX(d.standsInFor) AS standsInFor
      FROM deliveries d JOIN messages m ON m.id = d.messageId JOIN people p ON p.id = d.personId
      WHERE m.alertId = :alertId AND d.createdAt >= :since AND p.email IS NOT NULL AND p.disabledAt IS NULL
      GROUP BY p.id, p.email
@@ -171,6 +186,7 @@ async function withoutReceipt(
     { alertId, step, since },
     transaction,
   )
+  return toldAgain(rows)
 }
 
 const people = (count: number): string => (count === 1 ? '1 person' : `${count} people`)

@@ -29,7 +29,7 @@ export interface Asked {
 
 export interface Chosen {
   /** In the order of the lists, each person and each address once. */
-  recipients: { personId: number; address: string }[]
+  recipients: { personId: number; address: string; standsInFor: string[] }[]
   /** Who was meant and cannot be reached, nor a deputy. */
   unreached: string[]
 }
@@ -50,7 +50,7 @@ function standIn(first: Reachable, asked: Asked): Reachable | null {
 }
 
 export function chooseRecipients(asked: Asked): Chosen {
-  const byAddress = new Map<string, { personId: number; address: string }>()
+  const byAddress = new Map<string, Chosen['recipients'][number]>()
   const unreached = new Set<string>()
   for (const { personId, hours, priorities } of asked.members) {
     if (!priorities.includes(asked.priority) || !holds(hours, asked)) continue
@@ -62,7 +62,9 @@ export function chooseRecipients(asked: Asked): Chosen {
       continue
     }
     const key = person.email.toLowerCase()
-    if (!byAddress.has(key)) byAddress.set(key, { personId: person.id, address: person.email })
+    const recipient = byAddress.get(key) ?? { personId: person.id, address: person.email, standsInFor: [] }
+    byAddress.set(key, recipient)
+    if (person.id !== meant.id && !recipient.standsInFor.includes(meant.name)) recipient.standsInFor.push(meant.name)
   }
   return { recipients: [...byAddress.values()], unreached: [...unreached] }
 }

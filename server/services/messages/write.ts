@@ -16,6 +16,7 @@ export interface NewMessage {
 }
 
 const longestSubject = 200
+const longestNames = 300
 
 /** Without `recipients` they are worked out afterwards, from the lists of the alert's limit. */
 export async function writeMessage(
@@ -48,6 +49,8 @@ export interface Recipient {
   address: string
   /** In a flood: its news waits until then for one e-mail that brings them all. */
   mergeAt?: Date
+  /** Names of those who are away and whose deputy this is. */
+  standsInFor?: string[]
 }
 
 /** One for each person, whatever is asked twice. */
@@ -58,13 +61,14 @@ export async function addDeliveries(
   transaction: Transaction,
 ): Promise<void> {
   const now = clock.now()
-  const rows = recipients.map(({ personId, address, mergeAt }) => ({
+  const rows = recipients.map(({ personId, address, mergeAt, standsInFor = [] }) => ({
     messageId,
     personId,
     address,
     messageIdHeader: messageIdHeader(environment.publicUrl, messageId, personId),
     state: mergeAt ? ('merged' as const) : ('queued' as const),
     nextAttemptAt: mergeAt ?? now,
+    standsInFor: standsInFor.length > 0 ? standsInFor.join(', ').slice(0, longestNames) : null,
     createdAt: now,
   }))
   if (rows.length > 0) await Delivery.bulkCreate(rows, { ignoreDuplicates: true, transaction })

@@ -54,3 +54,9 @@ export function toldWords(deliveries: readonly Seen[], receivedAt: string | null
   if (parts.length === 0) return 'not told yet'
   return times ? `${parts.join('; ')}; no receipt yet` : parts.join('; ')
 }
+
+/** `for Harbour master`: whose deputy was told; empty where the person was meant. */
+export function standInWords(deliveries: readonly { standsInFor: string | null }[]): string {
+  const names = [...new Set(deliveries.flatMap(({ standsInFor }) => standsInFor ?? []))]
+  return names.length === 0 ? '' : ` for ${names.join(', ')}`
+}

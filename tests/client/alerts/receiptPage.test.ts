@@ -37,6 +37,7 @@ const receipt = (changes: Partial<ReceiptView> = {}): ReceiptView => ({
     ...{ id: 418, state: 'unacknowledgedActive', stateWords: 'Active, not acknowledged' },
     ...{ acknowledgedAt: null, acknowledgedBy: null, closedAt: null },
   },
+  others: [],
   ...changes,
 })
 const path = '/api/receipts/TOKEN'

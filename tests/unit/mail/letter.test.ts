@@ -32,6 +32,7 @@ const letter: Letter = {
   messageId: 901,
   kind: 'alert',
   personName: 'Pilot station',
+  standsInFor: null,
   subject: 'DEMONSTRATION High: Total height, Outer Ledge 2.61 m ± 0.14',
   text: 'High, second most serious of four.\nTotal height, Outer Ledge: 2.61 m ± 0.14',
   content,
