@@ -9,6 +9,7 @@ import { startEscalate } from './jobs/escalate.ts'
 import { startForgetSessions } from './jobs/forgetSessions.ts'
 import { startJudgeLimits } from './jobs/judgeLimits.ts'
 import { startKeepSeriesDays } from './jobs/keepSeriesDays.ts'
+import { startRecompute } from './jobs/recompute.ts'
 import { startRetention } from './jobs/retention.ts'
 import { startSealAudits } from './jobs/sealAudits.ts'
 import { startLive } from './sockets/live.ts'
@@ -37,6 +38,7 @@ export async function startRunningParts(parts: Parts, server: Server): Promise<S
     started.push(await startLive(parts, { upgrades }))
     started.push(startJudgeLimits(parts))
     started.push(await startComputeEstimates(parts))
+    started.push(startRecompute(parts))
     started.push(startKeepSeriesDays(parts))
     started.push(await startCompactReadings(parts, telemetry.store))
     started.push(startDemonstrationPast(parts))

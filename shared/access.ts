@@ -20,6 +20,9 @@ export type Action =
   | 'auxiliary.read'
   | 'auxiliary.change'
   | 'auxiliaryFeed.change'
+  | 'runs.read'
+  | 'runs.change'
+  | 'clockOffsets.change'
   | 'jobs.read'
   | 'jobs.cancel'
   | 'log.read'
@@ -88,6 +91,9 @@ const rows: Record<Action, readonly Role[] | typeof anybody> = {
   'auxiliaryFeed.change': anybody,
   'stationKeys.read': ['admin'],
   'stationKeys.change': ['admin'],
+  'runs.read': ['admin', 'operator'],
+  'runs.change': ['admin'],
+  'clockOffsets.change': ['admin'],
   'jobs.read': everyone,
   'jobs.cancel': ['admin'],
   'log.read': ['admin', 'operator'],

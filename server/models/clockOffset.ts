@@ -10,6 +10,8 @@ export class ClockOffset extends Model<InferAttributes<ClockOffset>, InferCreati
   declare sd: number
   declare confirmedById: number | null
   declare reason: string
+  /** When it was confirmed: an estimate made before is computed again without it. */
+  declare recordedAt: CreationOptional<Date>
 }
 
 export const defineClockOffset = (sequelize: Sequelize): void => {
@@ -22,6 +24,7 @@ export const defineClockOffset = (sequelize: Sequelize): void => {
       sd: { type: DataTypes.DOUBLE, allowNull: false },
       confirmedById: DataTypes.INTEGER.UNSIGNED,
       reason: { type: DataTypes.STRING(500), allowNull: false },
+      recordedAt: { type: DataTypes.DATE(3), allowNull: false, defaultValue: DataTypes.NOW },
     },
     { sequelize, tableName: 'clockOffsets' },
   )

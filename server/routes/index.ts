@@ -16,6 +16,7 @@ import { peopleRoutes } from './people.ts'
 import { receiptRoutes } from './receipts.ts'
 import type { Route } from './registry.ts'
 import { secondFactorRoutes } from './secondFactor.ts'
+import { runRoutes } from './runs.ts'
 import { sessionRoutes } from './session.ts'
 import { settingsRoutes } from './settings.ts'
 import { setUpRoutes } from './setUp.ts'
@@ -33,6 +34,7 @@ const features: ((parts: Parts) => Route[])[] = [
   stationRoutes,
   stationKeyRoutes,
   stationHealthRoutes,
+  runRoutes,
   limitRoutes,
   alertRoutes,
   capRoutes,

@@ -20,6 +20,12 @@ export interface News {
   /** A key was revoked. */
   'stationKey.revoked': { stationId: number; keyId: number }
   'job.progressed': LongJobView
+  /** A recomputation waits to be worked off. */
+  'run.ordered': { runId: number }
+  /** An outlook of a place was saved, late ones too. */
+  'outlook.saved': { placeId: number; windowEndsAt: number; revision: number }
+  /** Description, settings or notices of a place. */
+  'place.changed': { placeId: number }
   'alert.changed': { alertId: number }
   'limit.changed': { limitId: number }
   /** An e-mail was written, or became what it is now for somebody. */

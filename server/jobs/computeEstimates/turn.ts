@@ -38,26 +38,16 @@ export async function takeTurn(parts: Parts, estimators: Estimators, turn: Turn)
   // Without a survey or settings there is nothing to compute with, and nothing that later readings would change.
   if (!deployment || !settings) return passOver(parts, unseen)
 
-  const readings = await readWindow(
-    timeline.id,
-    windowEndsAt - Math.max(windowMs, estimates.surgeSpanMs),
-    windowEndsAt,
-    {
-      letters: deployment.sensors.map(({ letter }) => letter),
-    },
-  )
+  const readings = await readWindow(timeline.id, estimates.readingsFrom(windowEndsAt, settings), windowEndsAt, {
+    letters: deployment.sensors.map(({ letter }) => letter),
+  })
   const outcome = { ...unseen, inputCommitId: readings.newestCommitId }
   const isEmpty = !hasSamples(readings, settings.content.windowSeconds)
   if (isEmpty && (isNext || !(await isEstimated(parts, outcome)))) return passOver(parts, outcome)
   if (!isNext && turn.origin !== 'recompute' && (await isKnown(parts, outcome))) return passOver(parts, outcome)
 
-  const [tideLevel, airPressure] = await Promise.all([
-    estimates.tideLevelAt(parts, timeline.id, windowEndsAt),
-    estimates.airPressureAt(parts, timeline.id, windowEndsAt),
-  ])
-  const { clockOffsets } = timeline
-  const question = { windowEndsAt, deployment, settings, clockOffsets, readings, tideLevel, airPressure }
-  const { window, surgeStartsAt } = estimates.arrayWindowOf(question)
+  const question = { windowEndsAt, deployment, settings, clockOffsets: timeline.clockOffsets, readings }
+  const { window, surgeStartsAt } = await estimates.assembleWindow(parts, timeline.id, question)
   const clockOffset = clockOffsetOf(turn, readings)
   const task = { window, windowEndsAt, clockOffset, known: turn.known }
   const answer = isEmpty ? nothingThere(task) : await compute(parts, estimators, turn, task)

@@ -2,12 +2,14 @@
 import type { Parts } from '../../config/parts.ts'
 import { select } from '../../models/sql.ts'
 
+type Needs = Pick<Parts, 'sequelize'>
+
 /** Older or newer readings than this say nothing about a window, ms. */
 const tideReachMs = 30 * 60_000
 const airReachMs = 3 * 3_600_000
 
 async function nearest(
-  { sequelize }: Parts,
+  { sequelize }: Needs,
   stationId: number,
   kinds: string[],
   at: number,
@@ -24,9 +26,9 @@ async function nearest(
 }
 
 /** A measured level goes before a tide table's. Metres above datum; null where neither is there. */
-export const tideLevelAt = (parts: Parts, stationId: number, at: number): Promise<number | null> =>
+export const tideLevelAt = (parts: Needs, stationId: number, at: number): Promise<number | null> =>
   nearest(parts, stationId, ['waterLevel', 'tide'], at, tideReachMs)
 
 /** Pascals. */
-export const airPressureAt = (parts: Parts, stationId: number, at: number): Promise<number | null> =>
+export const airPressureAt = (parts: Needs, stationId: number, at: number): Promise<number | null> =>
   nearest(parts, stationId, ['barometer'], at, airReachMs)

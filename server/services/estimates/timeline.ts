@@ -41,6 +41,7 @@ export interface ClockOffsetVersion extends Version {
   sensorId: number
   offsetSeconds: number
   sd: number
+  recordedAt: number
 }
 
 export interface StationTimeline {
@@ -101,7 +102,21 @@ export async function readTimelines(sequelize: Sequelize): Promise<StationTimeli
       })),
       clockOffsets: offsets
         .filter(({ sensorId }) => sensorIds.has(sensorId))
-        .map((row) => ({ ...row, validFrom: row.validFrom.getTime() })),
+        .map((row) => ({ ...row, validFrom: row.validFrom.getTime(), recordedAt: row.recordedAt.getTime() })),
     }
   })
+}
+
+/** A deployment by its number, a correction of the past too; null where the station has none of that number. */
+export async function readDeploymentVersion(
+  sequelize: Sequelize,
+  stationId: number,
+  deploymentId: number,
+): Promise<DeploymentVersion | null> {
+  const row = await Deployment.findOne({ where: { id: deploymentId, stationId }, raw: true })
+  if (!row) return null
+  const sensors = await select<SensorRow>(sequelize, sensorsOfDeployments)
+  const { id, validFrom, waterDepth, levelOfBed } = row
+  const own = sensors.filter((sensor) => sensor.deploymentId === id)
+  return { id, validFrom: validFrom.getTime(), waterDepth, levelOfBed, sensors: own }
 }
