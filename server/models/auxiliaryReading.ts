@@ -1,5 +1,5 @@
 import { DataTypes, Model } from 'sequelize'
-import type { InferAttributes, InferCreationAttributes, Sequelize } from 'sequelize'
+import type { CreationOptional, InferAttributes, InferCreationAttributes, Sequelize } from 'sequelize'
 
 /** Water level, tide, pressure of the air and wind, each with its own time and quality. */
 export class AuxiliaryReading extends Model<
@@ -13,6 +13,7 @@ export class AuxiliaryReading extends Model<
   declare sd: number | null
   declare qualityFlag: number
   declare importId: number | null
+  declare source: CreationOptional<'push' | 'entered' | 'file'>
 }
 
 export const defineAuxiliaryReading = (sequelize: Sequelize): void => {
@@ -25,6 +26,7 @@ export const defineAuxiliaryReading = (sequelize: Sequelize): void => {
       sd: DataTypes.DOUBLE,
       qualityFlag: { type: DataTypes.TINYINT.UNSIGNED, allowNull: false },
       importId: DataTypes.INTEGER.UNSIGNED,
+      source: { type: DataTypes.ENUM('push', 'entered', 'file'), allowNull: false, defaultValue: 'entered' },
     },
     { sequelize, tableName: 'auxiliaryReadings' },
   )

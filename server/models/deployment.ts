@@ -12,6 +12,10 @@ export class Deployment extends Model<InferAttributes<Deployment>, InferCreation
   declare levelOfBed: number
   declare authorId: number | null
   declare reason: string
+  declare surveyedOn: CreationOptional<string | null>
+  declare notes: CreationOptional<string>
+  /** Findings of the design check that were not good, with what was written. */
+  declare resolved: CreationOptional<{ check: string; reason: string }[] | null>
 }
 
 export const defineDeployment = (sequelize: Sequelize): void => {
@@ -26,6 +30,9 @@ export const defineDeployment = (sequelize: Sequelize): void => {
       levelOfBed: { type: DataTypes.DOUBLE, allowNull: false },
       authorId: DataTypes.INTEGER.UNSIGNED,
       reason: { type: DataTypes.STRING(500), allowNull: false },
+      surveyedOn: DataTypes.DATEONLY,
+      notes: { type: DataTypes.TEXT, allowNull: false, defaultValue: '' },
+      resolved: DataTypes.JSON,
     },
     { sequelize, tableName: 'deployments' },
   )

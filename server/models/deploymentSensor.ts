@@ -1,5 +1,6 @@
 import { DataTypes, Model } from 'sequelize'
 import type { CreationOptional, InferAttributes, InferCreationAttributes, Sequelize } from 'sequelize'
+import type { SensorPosition } from '../../shared/schemas/stationSetUpDeployments.ts'
 
 /** Where one sensor stands in a deployment. `letter` is its id on the wire; rows are in the order of the packed readings. */
 export class DeploymentSensor extends Model<
@@ -19,6 +20,8 @@ export class DeploymentSensor extends Model<
   declare scale: CreationOptional<number>
   declare offset: CreationOptional<number>
   declare pressureKind: CreationOptional<'gauge' | 'absolute'>
+  /** As it was surveyed; null: by east and north. */
+  declare surveyed: CreationOptional<SensorPosition | null>
 }
 
 export const defineDeploymentSensor = (sequelize: Sequelize): void => {
@@ -37,6 +40,7 @@ export const defineDeploymentSensor = (sequelize: Sequelize): void => {
       scale: { type: DataTypes.DOUBLE, allowNull: false, defaultValue: 1 },
       offset: { type: DataTypes.DOUBLE, allowNull: false, defaultValue: 0 },
       pressureKind: { type: DataTypes.ENUM('gauge', 'absolute'), allowNull: false, defaultValue: 'gauge' },
+      surveyed: DataTypes.JSON,
     },
     { sequelize, tableName: 'deploymentSensors' },
   )

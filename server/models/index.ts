@@ -9,6 +9,7 @@ import { defineClockOffset } from './clockOffset.ts'
 import { defineConflict } from './conflict.ts'
 import { defineDelivery } from './delivery.ts'
 import { defineDeployment } from './deployment.ts'
+import { defineDeploymentDraft } from './deploymentDraft.ts'
 import { defineDeploymentSensor } from './deploymentSensor.ts'
 import { defineDirtyWindow } from './dirtyWindow.ts'
 import { defineDistributionList } from './distributionList.ts'
@@ -45,6 +46,7 @@ import { defineStationHealthHour } from './stationHealthHour.ts'
 import { defineStationKey } from './stationKey.ts'
 import { defineStationSettings } from './stationSettings.ts'
 import { defineStream } from './stream.ts'
+import { defineUpload } from './upload.ts'
 import { defineWatermark } from './watermark.ts'
 
 export { Absence } from './absence.ts'
@@ -56,6 +58,7 @@ export { ClockOffset } from './clockOffset.ts'
 export { Conflict } from './conflict.ts'
 export { Delivery } from './delivery.ts'
 export { Deployment } from './deployment.ts'
+export { DeploymentDraft } from './deploymentDraft.ts'
 export { DeploymentSensor } from './deploymentSensor.ts'
 export { DirtyWindow } from './dirtyWindow.ts'
 export { DistributionList } from './distributionList.ts'
@@ -92,6 +95,7 @@ export { StationHealthHour } from './stationHealthHour.ts'
 export { StationKey } from './stationKey.ts'
 export { StationSettings } from './stationSettings.ts'
 export { Stream } from './stream.ts'
+export { Upload } from './upload.ts'
 export { Watermark } from './watermark.ts'
 
 const definitions = [
@@ -104,6 +108,7 @@ const definitions = [
   defineConflict,
   defineDelivery,
   defineDeployment,
+  defineDeploymentDraft,
   defineDeploymentSensor,
   defineDirtyWindow,
   defineDistributionList,
@@ -140,6 +145,7 @@ const definitions = [
   defineStationKey,
   defineStationSettings,
   defineStream,
+  defineUpload,
   defineWatermark,
 ]
 

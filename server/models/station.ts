@@ -12,9 +12,11 @@ export class Station extends Model<InferAttributes<Station>, InferCreationAttrib
   declare sampleRate: number
   declare datumName: CreationOptional<string>
   declare datumOffset: CreationOptional<number>
+  declare datumSurveyedOn: CreationOptional<string | null>
   declare state: CreationOptional<'active' | 'maintenance' | 'retired'>
   declare staleAfterSeconds: number
   declare areaPolygon?: unknown
+  declare notes: CreationOptional<string>
   declare version: CreationOptional<number>
   declare createdAt: Date
   declare updatedAt: Date
@@ -33,9 +35,11 @@ export const defineStation = (sequelize: Sequelize): void => {
       sampleRate: { type: DataTypes.DOUBLE, allowNull: false },
       datumName: { type: DataTypes.STRING(40), allowNull: false, defaultValue: 'local datum' },
       datumOffset: { type: DataTypes.DOUBLE, allowNull: false, defaultValue: 0 },
+      datumSurveyedOn: DataTypes.DATEONLY,
       state: { type: DataTypes.ENUM('active', 'maintenance', 'retired'), allowNull: false, defaultValue: 'active' },
       staleAfterSeconds: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       areaPolygon: DataTypes.JSON,
+      notes: { type: DataTypes.TEXT, allowNull: false, defaultValue: '' },
       version: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false, defaultValue: 1 },
       createdAt: { type: DataTypes.DATE(3), allowNull: false },
       updatedAt: { type: DataTypes.DATE(3), allowNull: false },

@@ -7,6 +7,8 @@ export class StationSettings extends Model<InferAttributes<StationSettings>, Inf
   declare id: CreationOptional<number>
   declare stationId: number
   declare validFrom: Date
+  /** Hz; null: that of the station when it was made. */
+  declare sampleRate: CreationOptional<number | null>
   declare content: StationSettingsContent
   declare authorId: number | null
   declare reason: string
@@ -18,6 +20,7 @@ export const defineStationSettings = (sequelize: Sequelize): void => {
       id: { type: DataTypes.INTEGER.UNSIGNED, autoIncrement: true, primaryKey: true },
       stationId: { type: DataTypes.INTEGER.UNSIGNED, allowNull: false },
       validFrom: { type: DataTypes.DATE(3), allowNull: false },
+      sampleRate: DataTypes.DOUBLE,
       content: { type: DataTypes.JSON, allowNull: false },
       authorId: DataTypes.INTEGER.UNSIGNED,
       reason: { type: DataTypes.STRING(500), allowNull: false },
