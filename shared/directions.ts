@@ -24,6 +24,15 @@ export function bothSenses(toward: number, separator = ', '): string {
   return `from ${threeDigits(opposite(toward))} T${separator}toward ${threeDigits(toward)} T`
 }
 
+const digitWords = ['zero', 'one', 'two', 'three', 'four', 'five', 'six', 'seven', 'eight', 'nine']
+
+/** A sentence for a voice, its bearings digit by digit: `from 247° T` becomes `from two four seven degrees true`. */
+export const spokenBearings = (sentence: string): string =>
+  sentence.replace(
+    /\b(\d{3})° T\b/g,
+    (_, digits: string) => `${[...digits].map((digit) => digitWords[Number(digit)]).join(' ')} degrees true`,
+  )
+
 /** Heading (radians anticlockwise from east, as inside `shared/waves`) to degrees true clockwise from north. */
 export const degreesTrue = (radiansFromEast: number): number => normalise(90 - (radiansFromEast * 180) / Math.PI)
 

@@ -44,6 +44,23 @@ function withUnit(value: number | null, places: number, unit: string): string {
 /** Decimals of a height: two below half a metre, where one would hide the figure, else one. */
 export const heightPlaces = (height: number | null): number => (height !== null && Math.abs(height) < 0.5 ? 2 : 1)
 
+/** Metres in one international foot, exactly (1959). */
+export const metresAFoot = 0.3048
+/** Metres a second in one knot, exactly: a nautical mile of 1852 m in an hour. */
+export const metresPerSecondAKnot = 1852 / 3600
+
+/** A height or its uncertainty, given in metres, in the unit that a person reads. */
+export const heightIn = (unit: 'm' | 'ft', metresGiven: number | null): number | null =>
+  metresGiven === null ? null : unit === 'ft' ? metresGiven / metresAFoot : metresGiven
+
+/** A speed or its uncertainty, given in metres a second, in the unit that a person reads. */
+export const speedIn = (unit: 'm/s' | 'kn', metresPerSecondGiven: number | null): number | null =>
+  metresPerSecondGiven === null
+    ? null
+    : unit === 'kn'
+      ? metresPerSecondGiven / metresPerSecondAKnot
+      : metresPerSecondGiven
+
 /** Age in seconds as `38 s`, `22 min`, `3 h 10 min`, `2 d 4 h`; seconds up to two minutes. Below zero counts as none. */
 export function age(ageSeconds: number): string {
   const whole = Math.max(0, Math.floor(ageSeconds))

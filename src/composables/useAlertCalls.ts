@@ -3,6 +3,7 @@ import { valueWithSd } from '../../shared/alerts/describe.ts'
 import { quantityOf } from '../../shared/alerts/quantities.ts'
 import type { AlertView } from '../../shared/schemas/alert.ts'
 import { useAlerts } from '../stores/alerts.ts'
+import { useDisplay } from '../stores/display.ts'
 import { useLive } from '../stores/live.ts'
 import { useNotices } from '../stores/notices.ts'
 import { useServerClock } from '../stores/serverClock.ts'
@@ -20,6 +21,7 @@ export function useAlertCalls(): void {
   const sound = useSound()
   const notices = useNotices()
   const session = useSession()
+  const display = useDisplay()
   /** Partners are told by e-mail; the tone belongs to the watch. */
   const hears = computed(() => session.allows('limits.read'))
   const calling = computed(() =>
@@ -49,6 +51,7 @@ export function useAlertCalls(): void {
     () => clock.nowMs,
     (nowMs) => {
       for (const tone of callings) {
+        if (!display.repeatsTone && sound.wasHeard(tone)) continue
         if (calling.value.some((alert) => alert.priority === tone) && sound.isDue(tone, nowMs)) call(tone)
       }
     },

@@ -1,6 +1,6 @@
 import { ref } from 'vue'
 import type { SignInRequest } from '../../shared/schemas/session.ts'
-import { inWords } from '../api/problem.ts'
+import { ProblemError, inWords } from '../api/problem.ts'
 import { useSession } from '../stores/session.ts'
 
 /** One attempt at a time, and its fault in words. */
@@ -8,6 +8,8 @@ export function useSignIn() {
   const session = useSession()
   const busy = ref(false)
   const fault = ref<string | null>(null)
+  /** The passphrase fits, and the account asks for a code too. */
+  const asksCode = ref(false)
 
   async function attempt(credentials: SignInRequest): Promise<boolean> {
     if (busy.value) return false
@@ -17,12 +19,15 @@ export function useSignIn() {
       await session.signIn(credentials)
       return true
     } catch (error) {
-      fault.value = inWords(error)
+      const code = error instanceof ProblemError ? error.code : ''
+      if (code === 'session.codeNeeded') asksCode.value = true
+      else if (code === 'session.wrongPassword') asksCode.value = false
+      fault.value = code === 'session.codeNeeded' ? null : inWords(error)
       return false
     } finally {
       busy.value = false
     }
   }
 
-  return { attempt, busy, fault }
+  return { attempt, busy, fault, asksCode }
 }

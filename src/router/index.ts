@@ -4,6 +4,7 @@ import type { RouteRecordRaw, Router, RouterHistory } from 'vue-router'
 import WatchLayout from '../layouts/WatchLayout.vue'
 import { useSession } from '../stores/session.ts'
 import { useStations } from '../stores/stations.ts'
+import { officeRoutes } from './office.ts'
 import { pages } from './pages.ts'
 import { setUpRoutes } from './setUp.ts'
 
@@ -25,6 +26,18 @@ const routes: RouteRecordRaw[] = [
     name: 'receipt',
     component: () => import('../pages/ReceiptPage.vue'),
     meta: { title: 'Confirm receipt', withoutSession: true },
+  },
+  {
+    path: '/welcome/:token',
+    name: 'welcome',
+    component: () => import('../pages/WelcomePage.vue'),
+    meta: { title: 'Choose a passphrase', withoutSession: true },
+  },
+  {
+    path: '/second-factor',
+    name: 'enrol',
+    component: () => import('../pages/EnrolPage.vue'),
+    meta: { title: 'Second factor' },
   },
   {
     path: '/',
@@ -91,6 +104,13 @@ const routes: RouteRecordRaw[] = [
         component: () => import('../pages/ListsPage.vue'),
         meta: { title: 'Lists', page: 'lists' },
       },
+      {
+        path: 'my-settings',
+        name: 'mySettings',
+        component: () => import('../pages/MySettingsPage.vue'),
+        meta: { title: 'My settings', page: 'mySettings' },
+      },
+      ...officeRoutes,
       ...setUpRoutes,
       {
         path: ':rest(.*)*',
@@ -112,6 +132,7 @@ export function createOffingRouter(history: RouterHistory = createWebHistory()):
     if (session.state === 'unknown') await session.restore().catch(() => undefined)
     const signedIn = session.state === 'in' || session.state === 'ended'
     if (to.meta.open) return signedIn && session.state === 'in' ? { name: 'watch' } : true
+    if (session.state === 'in' && session.mustEnrol && to.name !== 'enrol') return { name: 'enrol' }
     const page = pages.find((one) => one.name === to.meta.page)
     if (signedIn) return !page || session.allows(page.action) ? true : { name: 'watch' }
     return { name: 'signIn', query: to.fullPath === '/' || to.path === '/watch' ? {} : { to: to.fullPath } }

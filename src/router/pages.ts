@@ -19,5 +19,6 @@ export const pages: readonly PageEntry[] = [
   { name: 'limits', title: 'Limits', keys: 'g i', action: 'limits.read', isFirst: false, isInBar: true },
   { name: 'messages', title: 'Messages', keys: 'g m', action: 'messages.read', isFirst: false, isInBar: false },
   { name: 'lists', title: 'Lists', keys: 'g t', action: 'profile.read', isFirst: false, isInBar: false },
+  { name: 'mySettings', title: 'My settings', keys: 'g y', action: 'profile.read', isFirst: false, isInBar: false },
   { name: 'setUp', title: 'Set-up', keys: 'g u', action: 'stationSetUp.read', isFirst: false, isInBar: true },
 ]

@@ -1,14 +1,15 @@
-/** How this screen is set: day or night, motion, keys. Kept in the browser, because it belongs to the desk. */
+/**
+ * How this screen is set. Day or night belongs to the desk and is kept in the browser; the rest is the person's, comes
+ * with them from the server, and is kept here too for the pages before signing in.
+ */
 import { defineStore } from 'pinia'
 import { computed, ref, watch } from 'vue'
 import { z } from 'zod'
+import { showIn } from '../figures/shown.ts'
+import { preferences } from '../../shared/schemas/preferences.ts'
+import type { Preferences } from '../../shared/schemas/preferences.ts'
 
-const kept = z.object({
-  mode: z.enum(['day', 'night']).default('day'),
-  still: z.boolean().default(false),
-  keys: z.boolean().default(true),
-  bySun: z.boolean().default(false),
-})
+const kept = preferences.extend({ mode: z.enum(['day', 'night']).default('day') })
 export type DisplayMode = z.infer<typeof kept>['mode']
 
 const place = 'offing.display'
@@ -27,8 +28,44 @@ export const useDisplay = defineStore('display', () => {
   /** Night begins half an hour after sunset and ends at sunrise, as long as the person asks for it. */
   const bySun = ref(before.bySun)
   const stillChosen = ref(before.still)
+  const moreContrast = ref(before.moreContrast)
+  const textSize = ref(before.textSize)
   /** Single-key shortcuts; can be switched off. */
   const keys = ref(before.keys)
+  const spokenDigits = ref(before.spokenDigits)
+  const heightUnit = ref(before.heightUnit)
+  const speedUnit = ref(before.speedUnit)
+  /** Zone of the time beside UTC; null: the port's. */
+  const besideUtc = ref(before.besideUtc)
+  /** The tone of an alert comes again each minute until somebody acknowledges. */
+  const repeatsTone = ref(before.repeatsTone)
+
+  const chosen = computed<Preferences>(() => ({
+    heightUnit: heightUnit.value,
+    speedUnit: speedUnit.value,
+    besideUtc: besideUtc.value,
+    bySun: bySun.value,
+    still: stillChosen.value,
+    moreContrast: moreContrast.value,
+    textSize: textSize.value,
+    keys: keys.value,
+    spokenDigits: spokenDigits.value,
+    repeatsTone: repeatsTone.value,
+  }))
+
+  /** Those of the person who signed in. */
+  function take(theirs: Preferences): void {
+    heightUnit.value = theirs.heightUnit
+    speedUnit.value = theirs.speedUnit
+    besideUtc.value = theirs.besideUtc
+    bySun.value = theirs.bySun
+    stillChosen.value = theirs.still
+    moreContrast.value = theirs.moreContrast
+    textSize.value = theirs.textSize
+    keys.value = theirs.keys
+    spokenDigits.value = theirs.spokenDigits
+    repeatsTone.value = theirs.repeatsTone
+  }
 
   const reduced = window.matchMedia?.('(prefers-reduced-motion: reduce)')
   const reducedBySystem = ref(reduced?.matches ?? false)
@@ -38,27 +75,38 @@ export const useDisplay = defineStore('display', () => {
   const still = computed(() => stillChosen.value || reducedBySystem.value)
 
   watch(
-    [mode, still],
+    [mode, still, moreContrast, textSize],
     () => {
-      document.documentElement.dataset.mode = mode.value
-      document.documentElement.toggleAttribute('data-still', still.value)
+      const page = document.documentElement
+      page.dataset.mode = mode.value
+      page.toggleAttribute('data-still', still.value)
+      page.toggleAttribute('data-contrast', moreContrast.value)
+      page.style.fontSize = textSize.value === 100 ? '' : `${textSize.value}%`
+      page.toggleAttribute('data-large-text', textSize.value >= 150)
     },
     { immediate: true },
   )
-  watch([mode, stillChosen, keys, bySun], () => {
+  watch(
+    chosen,
+    () => showIn({ heightUnit: heightUnit.value, speedUnit: speedUnit.value, spokenDigits: spokenDigits.value }),
+    { immediate: true, flush: 'sync' },
+  )
+  watch([mode, chosen], () => {
     try {
-      const now = { mode: mode.value, still: stillChosen.value, keys: keys.value, bySun: bySun.value }
-      localStorage.setItem(place, JSON.stringify(now))
+      localStorage.setItem(place, JSON.stringify({ ...chosen.value, mode: mode.value }))
     } catch {
       // A browser that keeps nothing still shows what was chosen until the page is closed.
     }
   })
 
   /** The person's own choice ends the choice by the sun. */
-  function choose(chosen: DisplayMode): void {
+  function choose(wanted: DisplayMode): void {
     bySun.value = false
-    mode.value = chosen
+    mode.value = wanted
   }
 
-  return { mode, bySun, choose, still, stillChosen, reducedBySystem, keys }
+  return {
+    ...{ mode, bySun, choose, still, stillChosen, reducedBySystem, moreContrast, textSize, keys, spokenDigits },
+    ...{ heightUnit, speedUnit, besideUtc, repeatsTone, chosen, take },
+  }
 })

@@ -4,7 +4,10 @@ import { computed, ref, shallowRef } from 'vue'
 import { may } from '../../shared/access.ts'
 import type { Action } from '../../shared/access.ts'
 import type { InstallationView, SessionView, SetUpRequest, SignInRequest } from '../../shared/schemas/session.ts'
+import type { PreferencesChange } from '../../shared/schemas/preferences.ts'
+import { changePreferences } from '../api/accounts.ts'
 import * as api from '../api/session.ts'
+import { useDisplay } from './display.ts'
 import { useServerClock } from './serverClock.ts'
 
 /** `unknown` until the server was asked; `ended` when a session that was shown here is over. */
@@ -12,11 +15,14 @@ export type SessionState = 'unknown' | 'out' | 'in' | 'ended'
 
 export const useSession = defineStore('session', () => {
   const clock = useServerClock()
+  const display = useDisplay()
   const state = ref<SessionState>('unknown')
   const view = shallowRef<SessionView | null>(null)
   const readOnly = ref(false)
   const installation = shallowRef<InstallationView | null>(null)
 
+  /** A second factor is to be set up before anything else. */
+  const mustEnrol = computed(() => view.value?.mustEnrol ?? false)
   const person = computed(() => view.value?.person ?? null)
   const isDemonstration = computed(() => installation.value?.kind === 'demonstration')
   /** May the person see or do this; a read-only session is asked again by the server itself. */
@@ -27,6 +33,13 @@ export const useSession = defineStore('session', () => {
     view.value = next
     readOnly.value = next.readOnly
     state.value = 'in'
+    display.take(next.preferences)
+  }
+
+  /** Keeps choices of this person on the server; the screen shows them already. */
+  async function keepPreferences(change: PreferencesChange): Promise<void> {
+    const kept = await changePreferences(change)
+    if (view.value) view.value = { ...view.value, preferences: kept }
   }
 
   /** Asks the server who this is; throws where no answer comes. */
@@ -71,11 +84,13 @@ export const useSession = defineStore('session', () => {
     state,
     view,
     person,
+    mustEnrol,
     readOnly,
     installation,
     isDemonstration,
     allows,
     apply,
+    keepPreferences,
     restore,
     readInstallation,
     signIn,

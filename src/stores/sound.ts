@@ -69,6 +69,8 @@ export const useSound = defineStore('sound', () => {
   /** True when the minute since the tone was last heard is over. */
   const isDue = (tone: ToneName, nowMs: number): boolean => nowMs - (lastPlayed.get(tone) ?? -Infinity) >= repeatMs
 
+  const wasHeard = (tone: ToneName): boolean => lastPlayed.has(tone)
+
   async function test(tone: ToneName, nowMs: number): Promise<void> {
     if (!(await allow()) || !context) return
     playTones(context, tone)
@@ -79,5 +81,5 @@ export const useSound = defineStore('sound', () => {
     silentUntilMs.value = nowMs + silenceMs
   }
 
-  return { wanted, state, silentUntilMs, testedAtMs, isSilenced, allow, play, isDue, test, silence }
+  return { wanted, state, silentUntilMs, testedAtMs, isSilenced, allow, play, isDue, wasHeard, test, silence }
 })

@@ -9,4 +9,11 @@ export interface SetUpEntry {
   action: Action
 }
 
-export const setUpEntries: readonly SetUpEntry[] = []
+export const setUpEntries: readonly SetUpEntry[] = [
+  {
+    title: 'People',
+    says: 'accounts, roles, invitations, second factors, where somebody is signed in',
+    to: { name: 'people' },
+    action: 'accounts.read',
+  },
+]
