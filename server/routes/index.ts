@@ -4,6 +4,7 @@ import { sessionCookieName } from '../config/sessionCookie.ts'
 import { accountRoutes } from './accounts.ts'
 import { alertRoutes } from './alerts.ts'
 import { capRoutes } from './cap.ts'
+import { clockOffsetRoutes } from './clockOffsets.ts'
 import { installationRoutes } from './installation.ts'
 import { jobRoutes } from './jobs.ts'
 import { limitRoutes } from './limits.ts'
@@ -22,6 +23,7 @@ import { settingsRoutes } from './settings.ts'
 import { setUpRoutes } from './setUp.ts'
 import { stationHealthRoutes } from './stationHealth.ts'
 import { stationKeyRoutes } from './stationKeys.ts'
+import { stationSetUpRoutes } from './stationSetUp.ts'
 import { stationRoutes } from './stations.ts'
 import { watchRulesRoutes } from './watchRules.ts'
 
@@ -32,9 +34,11 @@ const features: ((parts: Parts) => Route[])[] = [
   settingsRoutes,
   jobRoutes,
   stationRoutes,
+  stationSetUpRoutes,
   stationKeyRoutes,
   stationHealthRoutes,
   runRoutes,
+  clockOffsetRoutes,
   limitRoutes,
   alertRoutes,
   capRoutes,
