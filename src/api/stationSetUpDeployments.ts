@@ -1,12 +1,12 @@
 import { z } from 'zod'
 import {
   deploymentComparison,
-  deploymentDraftOrder,
   deploymentDraftView,
   deploymentRecord,
 } from '../../shared/schemas/stationSetUpDeployments.ts'
 import type {
   DeploymentComparison,
+  deploymentDraftOrder,
   DeploymentDraftContent,
   DeploymentDraftView,
   DeploymentOrder,

@@ -18,4 +18,10 @@ export const setUpRoutes: RouteRecordRaw[] = [
     component: () => import('../pages/SetUpStationPage.vue'),
     meta: meta('Station, set-up'),
   },
+  {
+    path: `${station}/array`,
+    name: 'setUpArray',
+    component: () => import('../pages/SetUpArrayPage.vue'),
+    meta: meta('Array, set-up'),
+  },
 ]

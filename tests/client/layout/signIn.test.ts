@@ -2,7 +2,7 @@ import { flushPromises, mount } from '@vue/test-utils'
 import { createPinia, setActivePinia } from 'pinia'
 import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import CredentialsForm from '../../../src/components/session/CredentialsForm.vue'
-import { setUpFaults } from '../../../src/components/session/setUpFaults.ts'
+import { firstAdministratorFaults } from '../../../src/components/session/firstAdministratorFaults.ts'
 import { FakeServer } from '../support/fakeServer.ts'
 import { session } from '../support/views.ts'
 
@@ -65,11 +65,11 @@ describe('details of the first administrator', () => {
   const good = { token: 'x'.repeat(24), name: 'Ada', email: 'ada@port.example', password: 'four plain words here' }
 
   it('are free of faults when whole', () => {
-    expect(setUpFaults(good)).toEqual({})
+    expect(firstAdministratorFaults(good)).toEqual({})
   })
 
   it('are refused field by field', () => {
-    expect(Object.keys(setUpFaults({ token: 'x', name: ' ', email: 'ada', password: 'short' }))).toEqual([
+    expect(Object.keys(firstAdministratorFaults({ token: 'x', name: ' ', email: 'ada', password: 'short' }))).toEqual([
       'token',
       'name',
       'email',
@@ -78,7 +78,7 @@ describe('details of the first administrator', () => {
   })
 
   it('count a passphrase in bytes at its upper end', () => {
-    expect(setUpFaults({ ...good, password: 'ä'.repeat(36) })).toEqual({})
-    expect(setUpFaults({ ...good, password: 'ä'.repeat(37) }).password).toContain('72 bytes')
+    expect(firstAdministratorFaults({ ...good, password: 'ä'.repeat(36) })).toEqual({})
+    expect(firstAdministratorFaults({ ...good, password: 'ä'.repeat(37) }).password).toContain('72 bytes')
   })
 })
