@@ -24,7 +24,19 @@ async function freeShare(folder: string): Promise<number | null> {
   }
 }
 
-export function startJudgeLimits(parts: Parts, { isUnscheduled = false } = {}): JudgeLimits {
+/** So long after its start the program waits for stations to catch up, before it calls their figures stale. */
+const settlesForMs = 180_000
+
+export interface JudgeLimitsOptions {
+  /** Only `wake` is called: no clock. */
+  isUnscheduled?: boolean
+  settlesForMs?: number
+}
+
+export function startJudgeLimits(parts: Parts, options: JudgeLimitsOptions = {}): JudgeLimits {
+  const { isUnscheduled = false } = options
+  const settlesFor = options.settlesForMs ?? (isUnscheduled ? 0 : settlesForMs)
+  const startedAt = parts.clock.monotonic()
   const { bus, environment, logger } = parts
   /** Stations with a new estimate, and whether one of them may have come late. */
   const saved = new Set<number>()
@@ -55,7 +67,8 @@ export function startJudgeLimits(parts: Parts, { isUnscheduled = false } = {}): 
       await guarded(`late windows of station ${id}`, () => noteLateWindows(parts, office, id))
     }
     const clockOffsetOf = (stationId: number) => linkOf(stationId).clockOffsetSeconds
-    await guarded('data health', () => judgeHealth(parts, office, { clockOffsetOf, diskFree }))
+    const isSettling = parts.clock.monotonic() - startedAt < settlesFor
+    await guarded('data health', () => judgeHealth(parts, office, { clockOffsetOf, diskFree, isSettling }))
     await guarded('flood', () => logFlood(parts))
   }
 

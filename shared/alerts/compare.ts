@@ -16,7 +16,8 @@ export function degreesOutside(bearing: number, from: number, to: number): numbe
 }
 
 /**
- * Raises on the value, clears only when the value with its margin is clear. NaN in `value`: not there, and then
+ * Raises on the value beyond its line, clears only when the value with its margin has come back to the line that clears,
+ * so that a count of sensors which is whole again clears where both lines are the same. NaN in `value`: not there, and then
  * `atMost` may still prove that it is clear.
  */
 export function judgeComparison(
@@ -36,11 +37,11 @@ export function judgeComparison(
   if (comparison.kind === 'below') {
     if (Number.isNaN(value)) return 'unknown'
     if (value < comparison.raise) return 'raise'
-    return value - margin > comparison.clear ? 'clear' : 'hold'
+    return value - margin >= comparison.clear ? 'clear' : 'hold'
   }
-  if (Number.isNaN(value)) return atMost + margin < comparison.clear ? 'clear' : 'unknown'
+  if (Number.isNaN(value)) return atMost + margin <= comparison.clear ? 'clear' : 'unknown'
   if (value > comparison.raise) return 'raise'
-  return value + margin < comparison.clear ? 'clear' : 'hold'
+  return value + margin <= comparison.clear ? 'clear' : 'hold'
 }
 
 /** All together: one that is clear clears, one unknown leaves it open, all that raise raise. */

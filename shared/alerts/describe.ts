@@ -8,6 +8,7 @@ import type { Quantity } from './quantities.ts'
 /** `2.50 m`, `from 247° T`, `12 min`; `cannot be told` for null. Values are SI. */
 export function valueWords(quantity: Quantity, value: number | null): string {
   if (value === null) return 'cannot be told'
+  if (quantity.key === 'arrayDisagreement') return value > 0 ? 'disagree' : 'agree'
   if (quantity.isCircular) return `from ${threeDigits(value)} T`
   const written = decimals(value * quantity.toUnit, quantity.decimals)
   return quantity.unit === '' ? written : `${written} ${quantity.unit}`
@@ -41,6 +42,10 @@ export function comparisonWords(comparison: Comparison): string {
 export function clearWords(comparison: Comparison): string {
   const quantity = quantityOf(comparison.quantity)
   if (comparison.kind === 'sector') return `${comparison.deadBand}° outside the sector`
+  if (comparison.quantity === 'arrayDisagreement') return 'when they agree again'
+  // A count comes back to its line.
+  if (comparison.quantity === 'usableSensors' && comparison.kind === 'below')
+    return `at ${valueWords(quantity, comparison.clear)} or more`
   return `${comparison.kind === 'above' ? 'below' : 'above'} ${valueWords(quantity, comparison.clear)}`
 }
 

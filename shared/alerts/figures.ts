@@ -52,7 +52,7 @@ export interface SeaFigures {
 
 /** Null: cannot be told now. */
 export interface HealthFigures {
-  /** Seconds since the end of the newest window that gave a usable height. */
+  /** Seconds since the end of the newest window that gave a usable height, or since the station was entered. */
   dataAge: number | null
   usableSensors: number | null
   /** Station's clock less the server's, without its sign, s. */

@@ -235,8 +235,8 @@ export const subjectView = z.object({
 })
 export type SubjectView = z.infer<typeof subjectView>
 
-/** Why a limit was not judged at the newest moment. */
-export const notJudgedReason = z.enum(['stale', 'failed', 'noValue', 'outOfService', 'neverYet'])
+/** Why a limit was not judged at the newest moment. `settling`: the program has just begun, its stations are catching up. */
+export const notJudgedReason = z.enum(['stale', 'failed', 'noValue', 'settling', 'outOfService', 'neverYet'])
 export type NotJudgedReason = z.infer<typeof notJudgedReason>
 
 export const shelfView = z.object({

@@ -16,6 +16,7 @@ const reasons: Record<NotJudgedReason, string> = {
   stale: 'its figures are stale',
   failed: 'its newest figures failed',
   noValue: 'the quantity cannot be told',
+  settling: 'the program has just begun, stations are catching up',
   outOfService: 'out of service',
   neverYet: 'never judged yet',
 }

@@ -2,8 +2,10 @@
 import { judgeCondition } from '../../../shared/alerts/condition.ts'
 import type { HealthFigures } from '../../../shared/alerts/figures.ts'
 import type { Parts } from '../../config/parts.ts'
+import { Station } from '../../models/index.ts'
 import { select } from '../../models/sql.ts'
 import { limitsInForce } from '../limits/rows.ts'
+import type { LimitInForce } from '../limits/rows.ts'
 import { atDesk, holdStates, keepStates } from './desk.ts'
 import { act, noteJudgement, refreshAlerts } from './judge.ts'
 import type { Office } from './office.ts'
@@ -15,6 +17,11 @@ export interface OutsideHealth {
   clockOffsetOf(stationId: number): number | null
   /** Share of the disk that is free, 0 to 1; null where it cannot be told. */
   diskFree: number | null
+  /**
+   * The program has only just begun. While it was down nobody could compute, so an old figure tells nothing of the
+   * station yet: its age raises nothing, and what stands is held. A fresh figure counts at once.
+   */
+  isSettling: boolean
 }
 
 interface NewestRow {
@@ -45,23 +52,30 @@ const none: HealthFigures = {
   diskFree: null,
 }
 
+/** A window ends each minute, is due ten seconds later and computed within the next. */
+const freshSeconds = 150
+
 async function healthOfStation(
   parts: Parts,
   stationId: number,
   now: number,
   outside: OutsideHealth,
 ): Promise<HealthFigures> {
-  const [[last], [good]] = await Promise.all([
+  const [[last], [good], station] = await Promise.all([
     newest(parts.sequelize, stationId, 'TRUE'),
     newest(parts.sequelize, stationId, usable),
+    Station.findByPk(stationId, { attributes: ['createdAt'] }),
   ])
   const offset = outside.clockOffsetOf(stationId)
   const lastAge = last ? (now - last.windowEndsAt.getTime()) / 1000 : Infinity
   // What the newest window tells of the array is old after a while: then the age itself is the alert.
   const isFresh = lastAge < 900
+  // A station that never gave a figure has been without one since it was entered.
+  const since = good?.windowEndsAt ?? station?.createdAt ?? null
+  const age = since && Math.max(0, (now - since.getTime()) / 1000)
   return {
     ...none,
-    dataAge: good ? Math.max(0, (now - good.windowEndsAt.getTime()) / 1000) : null,
+    dataAge: outside.isSettling && age !== null && age > freshSeconds ? null : age,
     usableSensors: last && isFresh ? last.sensorsUsed : null,
     clockOffset: offset === null ? null : Math.abs(offset),
     arrayDisagreement: last && isFresh ? Number(last.reason === 'geometry-doubtful') : null,
@@ -76,6 +90,9 @@ async function healthOfSystem(parts: Parts, now: number, outside: OutsideHealth)
   const mailQueueAge = row?.oldest ? Math.max(0, (now - row.oldest.getTime()) / 1000) : 0
   return { ...none, mailQueueAge, diskFree: outside.diskFree }
 }
+
+const asksAge = ({ condition }: LimitInForce): boolean =>
+  condition.comparisons.some(({ quantity }) => quantity === 'dataAge')
 
 /** One moment for all limits of data health; the same minute is judged once. */
 export async function judgeHealth(parts: Parts, office: Office, outside: OutsideHealth): Promise<void> {
@@ -99,7 +116,9 @@ export async function judgeHealth(parts: Parts, office: Office, outside: Outside
       if (!held || (held.lastWindowEndsAt !== null && held.lastWindowEndsAt >= now)) continue
       const moment = { at: now, seen: { sea: null, health }, earlier: () => null, timeZone: office.timeZone }
       const wasActive = held.track.isActive
-      noteJudgement(limit, held, judgeCondition(limit.condition, moment), now, null)
+      const judgement = judgeCondition(limit.condition, moment)
+      const isHeldBack = outside.isSettling && judgement.notJudged !== null && asksAge(limit)
+      noteJudgement(limit, held, isHeldBack ? { ...judgement, notJudged: 'settling' } : judgement, now, null)
       await act(desk, limit, held, { at: now, sea: null, isShelved: shelved.has(limit.limitId), wasActive })
     }
     await refreshAlerts(desk, limits, states)

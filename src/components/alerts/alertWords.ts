@@ -95,7 +95,12 @@ export function rowFigure({ alert, limit }: AlertRow): { value: string; under: s
   const isJudged = limit.outOfService === null && limit.value !== null
   return {
     value: isJudged ? valueWords(quantity, limit.value) : 'not judged',
-    under: first.kind === 'sector' ? 'limit: a sector' : `limit ${valueWords(quantity, first.raise)}`,
+    under:
+      first.kind === 'sector'
+        ? 'limit: a sector'
+        : first.quantity === 'arrayDisagreement'
+          ? ''
+          : `limit ${valueWords(quantity, first.raise)}`,
   }
 }
 
@@ -133,6 +138,7 @@ const notJudgedWords: Record<NotJudgedReason, string> = {
   stale: 'stale',
   failed: 'figures failed',
   noValue: 'no figure',
+  settling: 'the program has just begun',
   outOfService: 'out of service',
   neverYet: 'never judged yet',
 }

@@ -46,14 +46,16 @@ describe('a threshold', () => {
     expect(judgeComparison(height, value, sd, NaN, 1)).toBe(verdict)
   })
 
-  it('that looks for low values is the mirror of it', () => {
+  it('that looks for low values is the mirror of it, and a count that is back at its line is clear', () => {
     const below: Comparison = { kind: 'below', quantity: 'usableSensors', raise: 4, clear: 5 }
     expect([3, 4, 5, 6].map((value) => judgeComparison(below, value, 0, NaN, 0))).toEqual([
       'raise',
       'hold',
-      'hold',
+      'clear',
       'clear',
     ])
+    const same: Comparison = { ...below, clear: 4 }
+    expect([3, 4].map((value) => judgeComparison(same, value, 0, NaN, 0))).toEqual(['raise', 'clear'])
   })
 })
 
