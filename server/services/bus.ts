@@ -17,6 +17,8 @@ export interface News {
   'session.ended': { sessionId: string }
   /** Role, disabling: everything of this person must be asked again. */
   'person.changed': { personId: number }
+  /** A station was made, changed, retired or restored; its settings or its array. */
+  'station.changed': { stationId: number }
   /** A key was revoked. */
   'stationKey.revoked': { stationId: number; keyId: number }
   'job.progressed': LongJobView

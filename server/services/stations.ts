@@ -39,7 +39,7 @@ async function factsOf(parts: Parts, station: Station): Promise<StationFacts> {
     StationSettings.findOne({ where: inForce, order: newestFirst }),
     Deployment.findOne({ where: { ...inForce, replacesId: null }, order: newestFirst }),
   ])
-  const { id, code, shortName, name, latitude, longitude, state, staleAfterSeconds, sampleRate } = station
+  const { id, code, shortName, name, latitude, longitude, state, staleAfterSeconds } = station
   return {
     id,
     code,
@@ -49,7 +49,7 @@ async function factsOf(parts: Parts, station: Station): Promise<StationFacts> {
     longitude,
     state,
     staleAfterSeconds,
-    sampleRate,
+    sampleRate: settings?.sampleRate ?? station.sampleRate,
     windowSeconds: settings?.content.windowSeconds ?? 1200,
     hopSeconds: settings?.content.hopSeconds ?? 60,
     landSectors: settings?.content.landSectors ?? [],

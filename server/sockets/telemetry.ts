@@ -115,28 +115,36 @@ export async function startTelemetry(options: TelemetryOptions): Promise<Telemet
     logger.info({ stationId, code }, 'a station is gone')
   }
 
+  const check = (connection: Connection): void =>
+    void connection.checkStation().catch((error: unknown) => logger.warn({ error }, 'a station could not be checked'))
+
   let beats = 0
   const heartbeat = setInterval(() => {
     beats += 1
     for (const connection of connections.values()) {
       connection.beat()
       if (beats % beatsBetweenChecks > 0) continue
-      connection.checkStation().catch((error: unknown) => logger.warn({ error }, 'a station could not be checked'))
+      check(connection)
     }
   }, heartbeatMs)
 
-  const unsubscribe = bus.subscribe('stationKey.revoked', ({ keyId }) => {
-    for (const connection of connections.values()) {
-      if (connection.key.keyId === keyId) connection.close(telemetryClose.keyRefused, 'the key was revoked')
-    }
-  })
+  const subscriptions = [
+    bus.subscribe('stationKey.revoked', ({ keyId }) => {
+      for (const connection of connections.values()) {
+        if (connection.key.keyId === keyId) connection.close(telemetryClose.keyRefused, 'the key was revoked')
+      }
+    }),
+    bus.subscribe('station.changed', ({ stationId }) => {
+      for (const connection of connections.values()) if (connection.stationId === stationId) check(connection)
+    }),
+  ]
   const unroute = upgrades.route(path, accept)
 
   return {
     store,
     async stop() {
       unroute()
-      unsubscribe()
+      for (const unsubscribe of subscriptions) unsubscribe()
       clearInterval(heartbeat)
       for (const socket of sockets.clients) socket.pause()
       await store.stop()

@@ -30,7 +30,7 @@ export async function loadStationFacts(stationId: number, at: Date): Promise<Sta
     id: station.id,
     code: station.code,
     state: station.retiredAt ? 'retired' : station.state,
-    sampleRate: station.sampleRate,
+    sampleRate: settings?.sampleRate ?? station.sampleRate,
     deployment: deployment && { id: deployment.id, sensors: await sensorsOf(deployment.id) },
     windowMs: (settings?.content.windowSeconds ?? 1200) * 1000,
     hopMs: (settings?.content.hopSeconds ?? 60) * 1000,

@@ -98,6 +98,7 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
       const room = `traces:${chunk.stationId}`
       if (hub.isHeard(room)) hub.publish(room, kinds.traces, tracesChunk.parse(chunk))
     }),
+    bus.subscribe('station.changed', ({ stationId }) => tellStation(stationId)),
     bus.subscribe('link.changed', ({ stationId }) => tellStation(stationId)),
     bus.subscribe('readings.stored', ({ stationId }) => {
       if (clock.monotonic() - (toldAt.get(stationId) ?? -Infinity) >= stationEveryMs) tellStation(stationId)
