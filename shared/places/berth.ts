@@ -1,0 +1,71 @@
+/** Long swell at the berths, out of the surge band of a station, and the basin's own periods. */
+import { basinModes } from '../hazards/basinModes.ts'
+import { depthNow } from '../hazards/depths.ts'
+import { check, determined, input, undetermined } from '../hazards/figure.ts'
+import type { Figure, FigureFrame } from '../hazards/figure.ts'
+import { propagate } from '../hazards/uncertain.ts'
+import type { Uncertain } from '../hazards/uncertain.ts'
+import type { BerthFeed, BerthSettings } from '../schemas/placeSettings.ts'
+import { surgeBand } from '../waves/surge.ts'
+import { nothingElse } from './entrance.ts'
+import type { KindOutlook } from './entrance.ts'
+import { graded } from './flags.ts'
+import type { Grounds } from './flags.ts'
+
+/**
+ * Sampling error of a surge height, share of it: ½ √(2/ν) with ν = 2 T B of an hour and a third of the band, 0.012 Hz, filled with energy.
+ */
+const samplingShare = 0.5 * Math.sqrt(2 / (2 * 3600 * 0.012))
+
+function longSwell(surgeHeight: number | null, feed: BerthFeed, relativeSd: number): Figure {
+  const { factor, isInBasin } = feed
+  const own: Uncertain = {
+    value: surgeHeight ?? 0,
+    sd: surgeHeight === null ? null : surgeHeight * Math.hypot(samplingShare, relativeSd),
+  }
+  const frame: FigureFrame = {
+    unit: 'm',
+    method: {
+      name: isInBasin ? 'surge band at a gauge in the basin' : 'surge band outside times the factor of the basin',
+      formula: 'H = factor · 4 √(∫ S df), 0.004 to 0.04 Hz (25 to 250 s)',
+      source: 'zeroth moment of the spectrum, IEC/IAHR list of sea-state parameters 1987; the factor is a setting',
+      fromMemory: false,
+      assumptions: [
+        'an hour of readings, tide removed: it answers slowly',
+        'no direction is measured in a basin',
+        ...(isInBasin ? [] : ['one factor for all periods: at the basin’s own periods the water swings more']),
+      ],
+    },
+    inputs: [
+      input('surge height at the station', own.value, 'm', own.sd),
+      input('factor of the basin', factor.value, '1', factor.sd, factor.source),
+    ],
+    checks: surgeHeight === null ? [] : [check('surge height at the station', surgeHeight, 'm', 0, 3)],
+  }
+  if (surgeHeight === null) return undetermined(frame, 'no hour of readings without large gaps')
+  return determined(frame, {
+    value: factor.value * surgeHeight,
+    sd: propagate([own, factor], ([height, times]) => height * times),
+    uncertaintyFrom: `sampling of an hour (${Math.round(samplingShare * 100)} %)${relativeSd > 0 ? ', what a substitute adds' : ''} and ± of the factor`,
+  })
+}
+
+/** `relativeSd`: what a substitute adds, share of the height; 0 at the place's own station. */
+export function berthOutlook(
+  settings: BerthSettings,
+  { surgeHeight, feed, level, relativeSd }: { surgeHeight: number | null; feed: BerthFeed; level: Uncertain; relativeSd: number }, // prettier-ignore
+  grounds: Grounds,
+): KindOutlook {
+  const { length, bedLevel, mouth } = settings.basin
+  const depth = depthNow(level, bedLevel) ?? { value: 0, sd: null }
+  const modes = basinModes({ kinds: [mouth], length: { value: length, sd: null }, depth })
+  return {
+    ...nothingElse,
+    figures: [graded('longSwell', longSwell(surgeHeight, feed, relativeSd), grounds)],
+    basin: modes.map(({ mode, period }) => ({ mode, period })),
+    remarks: feed.isInBasin
+      ? []
+      : [`Not measured in the basin: ${surgeBand.from} to ${surgeBand.to} Hz outside, times ${feed.factor.value} (${feed.factor.source}).`], // prettier-ignore
+    systems: [],
+  }
+}
