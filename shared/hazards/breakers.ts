@@ -8,7 +8,7 @@ import { check, determined, input, undetermined } from './figure.ts'
 import type { Figure, FigureFrame, FigureUnit } from './figure.ts'
 import { isRefused, refract } from './refraction.ts'
 import { deepWaterHeight, deepWaterLength } from './shoaling.ts'
-import { propagate, spreadOf, together } from './uncertain.ts'
+import { propagateAll, spreadOf, together } from './uncertain.ts'
 import type { Uncertain } from './uncertain.ts'
 
 export interface ShorewardSea {
@@ -55,8 +55,9 @@ interface BreakingPoint {
 
 type Known = [height: number, period: number, incidence: number, depth: number, slope: number]
 
-/** Steps of the search by halves: 40 leave less than a micrometre. */
-const halvings = 40
+/** The search ends when height and limit differ by less than this share. */
+const closeEnough = 1e-9
+const mostSteps = 60
 
 /** Where the shoaling and refracting height meets the rule's limit; null where it is over it already, or does not run to the shore. */
 export function breakingPoint(rule: Pick<BreakerRule, 'limit'>, known: Known): BreakingPoint | null {
@@ -65,16 +66,36 @@ export function breakingPoint(rule: Pick<BreakerRule, 'limit'>, known: Known): B
     const there = refract(incidence, period, from, depth)
     return isRefused(there) ? null : { height: height * there.heightRatio, depth, incidence: there.angle }
   }
-  const over = (depth: number): boolean => (at(depth)?.height ?? Infinity) >= rule.limit(depth, period, slope)
-  if (!(height > 0) || !(from > 0) || over(from)) return null
-  let shallow = Math.min(0.01, from / 100)
-  let deep = from
-  for (let step = 0; step < halvings; step++) {
-    const middle = (shallow + deep) / 2
-    if (over(middle)) shallow = middle
-    else deep = middle
+  /** ln of the height over the limit: above zero where the sea has broken. */
+  const excess = (depth: number): number => {
+    const there = at(depth)
+    return there ? Math.log(there.height / rule.limit(depth, period, slope)) : NaN
   }
-  return at(deep)
+  if (!(height > 0) || !(from > 0) || !(excess(from) < 0)) return null
+  return at(crossing(excess, Math.min(0.01, from / 100), from))
+}
+
+/** Where a falling function passes zero, by false position with Illinois' halving (Dowell & Jarratt 1971). */
+function crossing(of: (depth: number) => number, shallow: number, deep: number): number {
+  let [low, high] = [shallow, deep]
+  let [atLow, atHigh] = [of(low), of(high)]
+  let held: 'low' | 'high' | null = null
+  let middle = high
+  for (let step = 0; step < mostSteps; step++) {
+    middle = (low * atHigh - high * atLow) / (atHigh - atLow)
+    const here = of(middle)
+    if (Math.abs(here) < closeEnough) return middle
+    if (here > 0) {
+      ;[low, atLow] = [middle, here]
+      if (held === 'high') atHigh /= 2
+      held = 'high'
+    } else {
+      ;[high, atHigh] = [middle, here]
+      if (held === 'low') atLow /= 2
+      held = 'low'
+    }
+  }
+  return middle
 }
 
 /** Komar & Gaughan's height with the depth of Weggel's index, as CEM II-4-1 does it. */
@@ -124,29 +145,31 @@ export function breakers(sea: ShorewardSea, slope: Uncertain): Breakers {
       inRange: slope.value >= slopes.from && slope.value <= slopes.to,
     }
   })
-  const figureOf = (which: keyof BreakingPoint, unit: FigureUnit): Figure => {
-    const values = rules.flatMap((rule) => (rule[which] === null ? [] : [rule[which]]))
+  const sds = propagateAll(inputs, (moved) => {
+    const [height, period, incidence, depth, tanBeta] = moved
+    const answers = ways.flatMap(({ find }) => find([height, period, incidence, depth, tanBeta]) ?? [])
+    return told.map(({ which }) => (answers.length === 0 ? null : middleOf(answers.map((answer) => answer[which]))))
+  })
+  const [height, depth, incidence] = told.map(({ which, unit }, index): Figure => {
+    const values = rules.flatMap((rule) => rule[which] ?? [])
     if (values.length === 0) return undetermined(frame(unit, sea, slope), refusal(sea))
     const { from, to } = spreadOf(values)
-    const carried = propagate(inputs, (moved) => {
-      const [height, period, incidence, depth, tanBeta] = moved
-      const answers = ways.flatMap(({ find }) => find([height, period, incidence, depth, tanBeta])?.[which] ?? [])
-      return answers.length === 0 ? null : middleOf(answers)
-    })
     return determined(frame(unit, sea, slope), {
       value: middleOf(values),
-      sd: together(carried, (to - from) / 2),
+      sd: together(sds[index], (to - from) / 2),
       uncertaintyFrom:
         'height, period, direction, depth and slope, one standard deviation each, and half the spread of the rules',
     })
-  }
-  return {
-    height: figureOf('height', 'm'),
-    depth: figureOf('depth', 'm'),
-    incidence: figureOf('incidence', 'rad'),
-    rules,
-  }
+  })
+  return { height, depth, incidence, rules }
 }
+
+/** What is told of the breakers, in this order. */
+const told: { which: keyof BreakingPoint; unit: FigureUnit }[] = [
+  { which: 'height', unit: 'm' },
+  { which: 'depth', unit: 'm' },
+  { which: 'incidence', unit: 'rad' },
+]
 
 function refusal({ height, incidence, depth }: ShorewardSea): string {
   if (!(height.value > 0)) return 'no waves run toward the shore'

@@ -17,25 +17,38 @@ export const exactly = (value: number): Uncertain => ({ value, sd: 0 })
  * Where only one side can be computed (an edge of the method's domain) the difference to the middle stands for both.
  */
 export function propagate(inputs: readonly Uncertain[], compute: (values: number[]) => number | null): number | null {
+  return propagateAll(inputs, (values) => [compute(values)])[0]
+}
+
+/** The same for several figures of one computation, each by itself. */
+export function propagateAll(
+  inputs: readonly Uncertain[],
+  compute: (values: number[]) => (number | null)[],
+): (number | null)[] {
   const middle = inputs.map(({ value }) => value)
   const centre = compute(middle)
-  if (centre === null || !Number.isFinite(centre)) return null
-  let variance = 0
-  for (let index = 0; index < inputs.length; index++) {
-    const { value, sd } = inputs[index]
-    if (sd === null) return null
-    if (sd === 0) continue
-    const at = (moved: number): number | null => {
-      const answer = compute(middle.map((one, place) => (place === index ? moved : one)))
-      return answer === null || !Number.isFinite(answer) ? null : answer
-    }
-    const above = at(value + sd)
-    const below = at(value - sd)
-    if (above === null && below === null) return null
-    const part = above === null || below === null ? (above ?? centre) - (below ?? centre) : (above - below) / 2
-    variance += part * part
-  }
-  return Math.sqrt(variance)
+  const variances: (number | null)[] = centre.map((value) => (isNumber(value) ? 0 : null))
+  inputs.forEach(({ value, sd }, index) => {
+    if (sd === null) variances.fill(null)
+    if (sd === null || sd === 0) return
+    const moved = (by: number): (number | null)[] =>
+      compute(middle.map((one, place) => (place === index ? value + by : one)))
+    const [above, below] = [moved(sd), moved(-sd)]
+    variances.forEach((variance, which) => {
+      const part = partOf(above[which], below[which], centre[which])
+      variances[which] = variance === null || part === null ? null : variance + part * part
+    })
+  })
+  return variances.map((variance) => (variance === null ? null : Math.sqrt(variance)))
+}
+
+const isNumber = (value: number | null): value is number => value !== null && Number.isFinite(value)
+
+function partOf(above: number | null, below: number | null, centre: number | null): number | null {
+  if (isNumber(above) && isNumber(below)) return (above - below) / 2
+  if (!isNumber(centre)) return null
+  if (isNumber(above)) return above - centre
+  return isNumber(below) ? centre - below : null
 }
 
 /** Independent standard deviations together; null where one is not known. */
