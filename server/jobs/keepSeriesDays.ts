@@ -5,10 +5,12 @@
 import { schedule } from 'node-cron'
 import type { Parts, RunningPart } from '../config/parts.ts'
 import { readTimelines } from '../services/estimates.ts'
-import { dayMs, dayOf, firstUnpackedDay, notePacked, rebuildSeriesDay } from '../services/series.ts'
+import { dayMs, dayOf, daysLacking, firstUnpackedDay, notePacked, rebuildSeriesDay } from '../services/series.ts'
 
 /** Estimates of a day may come a little after it: it closes then. */
 const closesAfterMs = 5 * 60_000
+/** Days of a station that are packed again in one turn, where a newer version keeps more quantities than they have. */
+const repackedATurn = 40
 
 export interface KeepSeriesDays extends RunningPart {
   /** Resolves when every closed day is packed. */
@@ -38,6 +40,9 @@ export function startKeepSeriesDays(parts: Parts, { isUnscheduled = false } = {}
       for (const [key, { stationId, day }] of [...touched]) {
         touched.delete(key)
         await rebuildSeriesDay(parts, stationId, day)
+      }
+      for (const { id } of await readTimelines(sequelize)) {
+        for (const day of await daysLacking(parts, id, repackedATurn)) await rebuildSeriesDay(parts, id, day)
       }
     } catch (error) {
       logger.error({ error }, 'days of the series could not be packed now; they stay due')

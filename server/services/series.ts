@@ -6,7 +6,7 @@ import { invalidInput, notFound } from './problems.ts'
 import { dayMs, dayOf, packedDays } from './series/days.ts'
 import { newestOfEachStep, pointRows, presentPoint } from './series/points.ts'
 
-export { dayMs, dayOf, firstUnpackedDay, notePacked, rebuildSeriesDay, rebuildSeriesDays } from './series/days.ts'
+export { dayMs, dayOf, daysLacking, firstUnpackedDay, notePacked, rebuildSeriesDay, rebuildSeriesDays } from './series/days.ts'
 
 export interface SeriesQuestion {
   hours: number

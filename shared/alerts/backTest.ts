@@ -9,10 +9,13 @@ import type { Verdict } from './compare.ts'
 import { atRest, follow } from './follow.ts'
 import type { Track } from './follow.ts'
 import { heightLeft, quantityOf } from './quantities.ts'
+import type { PlaceQuantityKey } from '../schemas/placeQuantity.ts'
 import { spanChecker } from './timeSpan.ts'
 
-/** Columns of the packed days. */
+/** Quantities of the packed days: of stations by their columns, of places by their own names. */
 export type StoredFigure =
+  | PlaceQuantityKey | `${PlaceQuantityKey}Sd`
+  | 'towardDegreesSd' | 'speedSd' | 'swellTowardDegreesSd' | 'swellSpeedSd' | 'windSeaTowardDegreesSd' | 'windSeaSpeedSd'
   | 'significantWaveHeight' | 'significantWaveHeightSd' | 'peakPeriod' | 'meanPeriod' | 'energyPeriod' | 'energyFlux'
   | 'surgeHeight' | 'height' | 'period' | 'towardDegrees' | 'speed' | 'swellHeight' | 'swellPeriod' | 'swellTowardDegrees'
   | 'swellSpeed' | 'windSeaHeight' | 'windSeaPeriod' | 'windSeaTowardDegrees' | 'windSeaSpeed' // prettier-ignore
@@ -39,7 +42,22 @@ const stored: Partial<Record<QuantityKey, StoredFigure>> = {
 }
 
 /** Null for quantities of which no series is kept: data health. */
-export const storedFigureOf = (key: QuantityKey): StoredFigure | null => stored[key] ?? null
+export const storedFigureOf = (key: QuantityKey): StoredFigure | null => stored[key] ?? quantityOf(key).ofPlace ?? null
+
+const storedErrors: Partial<Record<QuantityKey, StoredFigure>> = {
+  leadingFrom: 'towardDegreesSd',
+  leadingSpeed: 'speedSd',
+  swellFrom: 'swellTowardDegreesSd',
+  swellSpeed: 'swellSpeedSd',
+  windSeaFrom: 'windSeaTowardDegreesSd',
+  windSeaSpeed: 'windSeaSpeedSd',
+}
+
+/** Standard deviations that are kept beside the figure; null where none is, as live: of periods none is known. */
+export function storedErrorOf(key: QuantityKey): StoredFigure | null {
+  const { ofPlace } = quantityOf(key)
+  return ofPlace ? `${ofPlace}Sd` : (storedErrors[key] ?? null)
+}
 
 const otherOf: Partial<Record<QuantityKey, StoredFigure>> = {
   swellHeight: 'windSeaHeight',
@@ -48,9 +66,11 @@ const otherOf: Partial<Record<QuantityKey, StoredFigure>> = {
 
 /** Every series that a condition needs. */
 export function figuresNeeded(condition: Condition): StoredFigure[] {
-  const needed = new Set<StoredFigure>(['significantWaveHeight', 'significantWaveHeightSd'])
+  const isOfPlace = condition.comparisons.every(({ quantity }) => quantityOf(quantity).ofPlace !== undefined)
+  const needed = new Set<StoredFigure>(isOfPlace ? [] : ['significantWaveHeight', 'significantWaveHeightSd'])
   for (const { quantity } of condition.comparisons) {
-    for (const figure of [storedFigureOf(quantity), otherOf[quantity]]) if (figure) needed.add(figure)
+    const figures = [storedFigureOf(quantity), otherOf[quantity], storedErrorOf(quantity)]
+    for (const figure of figures) if (figure) needed.add(figure)
   }
   return [...needed]
 }
@@ -106,6 +126,7 @@ function judgeOf(comparison: Comparison, condition: Condition, earlier: Earlier)
   const other = otherOf[key]
   const { isCircular } = quantityOf(key)
   const errors = relativeErrors(key)
+  const errorFigure = storedErrorOf(key)
   const hasBound = isOfSystem(key)
   const rise = comparison.kind === 'above' ? comparison.riseOverSeconds : null
   let stretch: Stretch | null = null
@@ -113,17 +134,20 @@ function judgeOf(comparison: Comparison, condition: Condition, earlier: Earlier)
   let others: Float32Array = empty
   let totals: Float32Array = empty
   let totalSds: Float32Array = empty
+  let ownSds: Float32Array = empty
 
   function ask(slot: number): Verdict {
     let value = valueIn(values, slot)
     if (isCircular) value = opposite(value)
     const total = valueIn(totals, slot)
     const totalSd = valueIn(totalSds, slot)
-    let sd = errors === 0 ? NaN : (errors * value * totalSd) / total
+    let sd = errorFigure ? valueIn(ownSds, slot) : errors === 0 ? NaN : (errors * value * totalSd) / total
     let atMost = NaN
     if (rise !== null && figure && stretch) {
-      const before = earlier(figure, stretch.startsAt + slot * stretch.stepMs - rise * 1000)
-      if (errors !== 0) sd = Math.hypot(sd, (errors * before * totalSd) / total)
+      const then = stretch.startsAt + slot * stretch.stepMs - rise * 1000
+      const before = earlier(figure, then)
+      if (errorFigure) sd = Math.hypot(sd, earlier(errorFigure, then))
+      else if (errors !== 0) sd = Math.hypot(sd, (errors * before * totalSd) / total)
       value -= before
     } else if (hasBound && Number.isNaN(value)) {
       atMost = heightLeft(total, valueIn(others, slot))
@@ -139,6 +163,7 @@ function judgeOf(comparison: Comparison, condition: Condition, earlier: Earlier)
     others = (other && series[other]) ?? empty
     totals = series.significantWaveHeight ?? empty
     totalSds = series.significantWaveHeightSd ?? empty
+    ownSds = (errorFigure && series[errorFigure]) ?? empty
   }
   const judge: Judge = { ask, turnTo, compared: NaN }
   return judge

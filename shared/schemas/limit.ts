@@ -317,6 +317,10 @@ export const backTestView = z.object({
   judgedSeconds: z.number(),
   missingSeconds: z.number(),
   gaps: z.array(z.object({ from: time, to: time })),
+  /** Days packed before this quantity was kept: they stand among the gaps. */
+  daysWithoutFigure: z.number().int(),
+  /** Days packed before its ± was kept: there the value alone clears. */
+  daysWithoutError: z.number().int(),
   /** Part of the record is invented for the demonstration. */
   isInvented: z.boolean(),
   draft: backTestRun,

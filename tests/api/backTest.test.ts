@@ -1,4 +1,6 @@
 import { describe, expect, it } from 'vitest'
+import { startKeepSeriesDays } from '../../server/jobs/keepSeriesDays.ts'
+import { SeriesDay } from '../../server/models/index.ts'
 import { rebuildSeriesDays } from '../../server/services/series.ts'
 import { at, judgedStation, plainCondition } from '../support/judgedStation.ts'
 
@@ -62,6 +64,52 @@ describe('a back-test', () => {
     const condition = { ...plainCondition, comparisons: [sector] }
     const direction = await held.desk.post('/api/backTests').send(question({ condition })).expect(200)
     expect(direction.body).toMatchObject({ judgedSeconds: 0, draft: { count: 0 } })
+  })
+
+  it('counts the ± of a bearing as the live judgement does, packed or not, and says where it was not kept', async () => {
+    const sector = { kind: 'sector', quantity: 'leadingFrom', from: 200, to: 245, deadBand: 2 }
+    const condition = {
+      ...plainCondition,
+      comparisons: [sector],
+      onDelaySeconds: 0,
+      offDelaySeconds: 0,
+      clearSigmas: 1,
+    }
+    const start = -24 * 60
+    for (let minutes = start; minutes < start + 30; minutes += 1) {
+      // From 240 inside; then from 249, 4° outside: with its ± of 3° no further than 1° for certain.
+      await held.estimate(minutes, { toward: minutes < start + 10 ? 60 : 69 })
+    }
+    held.parts.clock.set(at(0))
+    const ask = async () => (await held.desk.post('/api/backTests').send(question({ condition })).expect(200)).body
+    const fresh = await ask()
+    expect(fresh.draft).toMatchObject({ count: 1, episodes: [{ clearedAt: null }] })
+    await rebuildSeriesDays(held.parts, held.station.id, '2026-11-30', '2026-11-30')
+    const packed = await ask()
+    expect(packed.draft).toEqual(fresh.draft)
+    expect(packed).toMatchObject({ daysWithoutFigure: 0, daysWithoutError: 0 })
+    const ofDay = { subjectKind: 'station', subjectId: held.station.id }
+    await SeriesDay.destroy({ where: { ...ofDay, quantity: 'towardDegreesSd' } })
+    const without = await ask()
+    expect(without).toMatchObject({ daysWithoutFigure: 0, daysWithoutError: 1 })
+    expect(without.draft.episodes[0].clearedAt).toBe(at(start + 10).toISOString())
+    await SeriesDay.destroy({ where: { ...ofDay, quantity: 'towardDegrees' } })
+    const older = await ask()
+    expect(older).toMatchObject({ daysWithoutFigure: 1, judgedSeconds: 0, draft: { count: 0 }, points: [] })
+    expect(older.missingSeconds).toBeGreaterThan(6.9 * 86_400)
+  })
+
+  it('finds days that were packed before a quantity was kept packed again by the job', async () => {
+    await yesterday()
+    held.parts.clock.set(at(0))
+    const ofDay = { subjectKind: 'station', subjectId: held.station.id, day: '2026-11-30' }
+    await rebuildSeriesDays(held.parts, held.station.id, '2026-11-30', '2026-11-30')
+    const all = await SeriesDay.count({ where: ofDay })
+    await SeriesDay.destroy({ where: { ...ofDay, quantity: 'speedSd' } })
+    const job = startKeepSeriesDays(held.parts, { isUnscheduled: true })
+    await job.wake()
+    await job.stop()
+    expect(await SeriesDay.count({ where: ofDay })).toBe(all)
   })
 
   it('of data health, of a place or of a station that is not there is refused', async () => {

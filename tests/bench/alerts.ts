@@ -179,7 +179,7 @@ async function backTesting(parts: Parts): Promise<Figure[]> {
   await addYear(parts, station.id, from)
   const condition = conditionOf(2)
   const figures = figuresNeeded(condition)
-  const read = () => packedStretches(parts, station.id, figures, from, today)
+  const read = () => packedStretches(parts, { subjectKind: 'station', subjectId: station.id }, figures, from, today)
   const reading: number[] = []
   const judged: number[] = []
   for (let n = 0; n < 7; n += 1) {

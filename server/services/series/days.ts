@@ -38,12 +38,18 @@ const furtherQuantities = [
   'windSeaPeriod',
   'windSeaTowardDegrees',
   'windSeaSpeed',
+  'towardDegreesSd',
+  'speedSd',
+  'swellTowardDegreesSd',
+  'swellSpeedSd',
+  'windSeaTowardDegreesSd',
+  'windSeaSpeedSd',
 ] as const
 type PointQuantity = (typeof pointQuantities)[number]
 type Quantity = PointQuantity | (typeof furtherQuantities)[number]
 const names: Quantity[] = [...pointQuantities, ...furtherQuantities]
 /** Of the vector: withheld where it was refused. */
-const ofVector: Quantity[] = ['height', 'period', 'towardDegrees', 'speed', 'directionalSpread']
+const ofVector: Quantity[] = ['height', 'period', 'towardDegrees', 'towardDegreesSd', 'speed', 'speedSd', 'directionalSpread'] // prettier-ignore
 const isDirection = (quantity: Quantity): boolean => /owardDegrees$/.test(quantity)
 
 /** `YYYY-MM-DD` of the UTC day that a time lies in. */
@@ -162,6 +168,20 @@ function pointsOfDay(day: string, stored: StoredDay[]): SeriesPoint[] {
       spread: at('directionalSpread', slot),
     }
   })
+}
+
+/** Days that were packed before some quantity was kept and whose estimates are still there, oldest first. */
+export async function daysLacking({ sequelize }: Parts, stationId: number, most: number): Promise<string[]> {
+  const rows = await select<{ day: string }>(
+    sequelize,
+    `SELECT DATE_FORMAT(p.day, '%Y-%m-%d') AS day FROM seriesDays p
+     WHERE p.subjectKind = 'station' AND p.subjectId = :stationId GROUP BY p.day
+     HAVING COUNT(*) < :wanted AND EXISTS (SELECT 1 FROM estimates e WHERE e.stationId = :stationId AND e.runId = 0
+       AND e.windowEndsAt >= p.day AND e.windowEndsAt < p.day + INTERVAL 1 DAY)
+     ORDER BY p.day LIMIT :most`,
+    { stationId, wanted: names.length, most },
+  )
+  return rows.map(({ day }) => day)
 }
 
 const job = { job: 'seriesDays', subjectKind: 'station' }

@@ -34,6 +34,12 @@ export interface WindowRow extends PointRow {
   windSeaPeriod: number | null
   windSeaTowardDegrees: number | null
   windSeaSpeed: number | null
+  towardDegreesSd: number | null
+  speedSd: number | null
+  swellTowardDegreesSd: number | null
+  swellSpeedSd: number | null
+  windSeaTowardDegreesSd: number | null
+  windSeaSpeedSd: number | null
 }
 
 const ofPoints = [
@@ -43,7 +49,8 @@ const ofPoints = [
 const ofWindows = [
   'reason', 'significantWaveHeightSd', 'peakPeriod', 'meanPeriod', 'energyPeriod', 'energyFlux', 'surgeHeight',
   'swellHeight', 'swellPeriod', 'swellTowardDegrees', 'swellSpeed', 'windSeaHeight', 'windSeaPeriod',
-  'windSeaTowardDegrees', 'windSeaSpeed',
+  'windSeaTowardDegrees', 'windSeaSpeed', 'towardDegreesSd', 'speedSd', 'swellTowardDegreesSd', 'swellSpeedSd',
+  'windSeaTowardDegreesSd', 'windSeaSpeedSd',
 ] // prettier-ignore
 
 /** Of the windows that end after `from` and not after `to`, rising in time; highest revisions of the operational run. */

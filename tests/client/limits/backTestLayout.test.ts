@@ -7,6 +7,7 @@ const run = { raise: 1, clear: 0.85, count: 0, activeSeconds: 0, aWeek: 0, episo
 const hour = (n: number): string => new Date(Date.parse('2026-11-12T00:00:00.000Z') + n * 3_600_000).toISOString()
 const view: BackTestView = {
   ...{ from: hour(0), to: hour(10), quantity: 'significantWaveHeight', judgedSeconds: 0, missingSeconds: 0 },
+  ...{ daysWithoutFigure: 0, daysWithoutError: 0 },
   ...{ gaps: [], isInvented: false, draft: run, others: [], stepSeconds: 3600 },
   points: [0, 1, 2, 6, 7].map((n) => ({ at: hour(n), least: 0.5, most: n === 2 ? 1.5 : 0.5 })),
 }
