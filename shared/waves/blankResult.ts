@@ -45,9 +45,12 @@ export function blankResult(window: ArrayWindow, prepared: PreparedArray): Estim
   }
 }
 
+/** The record is sound and the sea is what it is: of high interest rather than a fault. */
+const seasOfInterest: UnresolvedReason[] = ['standing-sea', 'surf-zone']
+
 /**
- * No vector: flag 9 when nothing came, 2 (not evaluated) when the record is sound but holds no wave that the array resolves, else 4.
- * What is known of height and period stays.
+ * No vector: flag 9 when nothing came, 2 (not evaluated) when the record is sound but holds no wave that the array resolves, 3 for a sea
+ * that has no single vector, else 4. What is known of height and period stays.
  */
 export function refuse(result: EstimateResult, reason: UnresolvedReason): EstimateResult {
   const silent = result.completeness === 0
@@ -55,7 +58,7 @@ export function refuse(result: EstimateResult, reason: UnresolvedReason): Estima
     ...result,
     resolved: false,
     reason,
-    qualityFlag: silent ? 9 : reason === 'no-resolvable-wave' ? 2 : 4,
+    qualityFlag: silent ? 9 : reason === 'no-resolvable-wave' ? 2 : seasOfInterest.includes(reason) ? 3 : 4,
     systems: [],
     traceSpeeds: result.traceSpeeds,
   }

@@ -101,6 +101,7 @@ export function describeSea(
     },
   }
   if (doubts.ambiguous) return refuse(described, 'ambiguous')
+  if (isSurfZone(described)) return refuse(described, 'surf-zone')
   return { ...described, qualityFlag: overallFlag(described) }
 }
 
@@ -151,6 +152,9 @@ function unexplainedTest({ unexplained }: SeaDoubts): QualityTest {
   }
 }
 
+const isSurfZone = ({ significantWaveHeight, waterDepth }: EstimateResult): boolean =>
+  (significantWaveHeight ?? 0) > breakingShare * waterDepth
+
 function seaTests(result: EstimateResult, leading: WaveSystem): QualityTest[] {
   const ratio = leading.speedRatio
   const share = (result.significantWaveHeight ?? 0) / result.waterDepth
@@ -167,8 +171,7 @@ function seaTests(result: EstimateResult, leading: WaveSystem): QualityTest[] {
       flag: share <= breakingShare ? 1 : 3,
       value: share,
       limit: breakingShare,
-      detail:
-        share <= breakingShare ? 'outside the surf zone' : 'waves break over the array: linear theory is doubtful',
+      detail: share <= breakingShare ? 'outside the surf zone' : 'waves break over the array: no single vector',
     },
   ]
 }

@@ -15,6 +15,7 @@ import { findRegularSea } from './regularSea.ts'
 import { coherenceTest, describeSea } from './describeSea.ts'
 import { blameFaults, doubtGeometry, judgeSensors } from './sensorVerdicts.ts'
 import type { FaultVerdict } from './sensorVerdicts.ts'
+import { judgeStanding } from './standingSea.ts'
 import type { ArrayWindow } from './window.ts'
 
 /** ln L gained over unrelated sensors below which no wave is claimed; noise alone loses by this measure. */
@@ -40,12 +41,15 @@ export function estimate(window: ArrayWindow): EstimateResult {
     if (prepared.usable.length === 0) return refuse(blank, refusalForData(prepared))
     const spectra = arraySpectra(window, prepared)
     if (!spectra || spectra.duration < leastDuration) return refuse(blank, 'too-little-data')
-    const result = addHeights(blank, window, prepared, spectra)
+    let result = addHeights(blank, window, prepared, spectra)
     if (prepared.usable.length < 3)
       return refuse(result, faults.length > 0 ? 'geometry-doubtful' : refusalForData(prepared))
     if (prepared.frame.axisRatio < leastAxisRatio)
       return refuse(result, faults.length > 0 ? 'geometry-doubtful' : 'collinear-array')
     if ((result.significantWaveHeight ?? 0) < window.settings.leastHeight) return refuse(result, 'no-resolvable-wave')
+    const { judged, stands } = judgeStanding(result, window, prepared, spectra)
+    if (stands) return refuse(judged, 'standing-sea')
+    result = judged
     const regular = findRegularSea(window, prepared, spectra)
     if (regular) return describeSea(result, window, prepared, spectra, [regular.train], regular.doubts)
     const sea = findRandomSea(spectra, prepared.frame, window.waterDepth, window.settings.gravity)
