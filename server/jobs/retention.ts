@@ -2,6 +2,7 @@
 import { schedule } from 'node-cron'
 import type { Parts, RunningPart } from '../config/parts.ts'
 import { thinDetails } from '../services/estimates.ts'
+import { thinOutlooks } from '../services/places.ts'
 import { keepPartitions } from '../services/readings.ts'
 import { settingInForce } from '../services/settings.ts'
 
@@ -15,6 +16,8 @@ export async function startRetention(parts: Pick<Parts, 'clock' | 'logger' | 'se
         parts.logger.info(change, 'partitions changed')
       const thinned = await thinDetails(parts)
       if (thinned > 0) parts.logger.info({ thinned }, 'details of old estimates went')
+      const outlooks = await thinOutlooks(parts)
+      if (outlooks > 0) parts.logger.info({ outlooks }, 'details of old outlooks went')
     } catch (error) {
       parts.logger.error({ error }, 'retention could not be kept now; it is tried again the next night')
     }

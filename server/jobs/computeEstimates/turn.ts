@@ -7,6 +7,8 @@ import { softwareVersion } from '../../config/softwareVersion.ts'
 import type { Parts } from '../../config/parts.ts'
 import * as estimates from '../../services/estimates.ts'
 import type { Mark, Origin, StationTimeline, WindowOutcome } from '../../services/estimates.ts'
+import { saveOutlooks } from '../../services/places.ts'
+import type { SavedOutlook } from '../../services/places.ts'
 import { linkOf, readWindow } from '../../services/readings.ts'
 import type { StoredWindow } from '../../services/readings.ts'
 import type { EstimateAnswer, EstimateTask } from '../../workers/estimateTask.ts'
@@ -65,7 +67,12 @@ export async function takeTurn(parts: Parts, estimators: Estimators, turn: Turn)
     inputCommitId: readings.newestCommitId,
     resultDigest: answer.digest,
   }
-  await estimates.saveEstimate(parts, outcome, { figures: answer.figures, making, detail: answer.detail })
+  let outlooks: SavedOutlook[] = []
+  const computed = { figures: answer.figures, making, detail: answer.detail }
+  await estimates.saveEstimate(parts, outcome, computed, async (transaction) => {
+    outlooks = await saveOutlooks(parts, making, transaction)
+  })
+  for (const saved of outlooks) parts.bus.publish('outlook.saved', saved)
   return answer.known
 }
 

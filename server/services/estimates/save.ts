@@ -26,8 +26,13 @@ export interface ComputedEstimate {
   detail: Uint8Array | null
 }
 
-/** Answers the revision. News goes out when it is durable. */
-export async function saveEstimate(parts: Parts, outcome: WindowOutcome, computed: ComputedEstimate): Promise<number> {
+/** Answers the revision. News goes out when it is durable. `alongside`: what is written with it, or not at all. */
+export async function saveEstimate(
+  parts: Parts,
+  outcome: WindowOutcome,
+  computed: ComputedEstimate,
+  alongside?: (transaction: Transaction) => Promise<void>,
+): Promise<number> {
   const { stationId } = outcome.mark
   const { windowEndsAt } = outcome
   const revision = await inTransaction(parts.sequelize, async (transaction) => {
@@ -46,6 +51,7 @@ export async function saveEstimate(parts: Parts, outcome: WindowOutcome, compute
       const detail = { stationId, windowEndsAt: row.windowEndsAt, runId, revision: number }
       await EstimateDetail.create({ ...detail, payload: Buffer.from(computed.detail) }, { transaction })
     }
+    await alongside?.(transaction)
     return row.revision
   })
   parts.bus.publish('estimate.saved', { stationId, windowEndsAt, revision })

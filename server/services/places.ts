@@ -1,0 +1,10 @@
+/** Places: what they are, what the sea does there, kept with each estimate. */
+export { addPlace, changePlace, changePlaceSettings, createPlace, restorePlace, retirePlace } from './places/change.ts'
+export { listPlaces, listPlaceSettings, readPlace } from './places/read.ts'
+export type { PlaceFacts } from './places/read.ts'
+export { saveOutlooks } from './places/save.ts'
+export type { SavedOutlook } from './places/save.ts'
+export { lastGoodOf, newestOutlook, outlookOfWindow } from './places/outlooks.ts'
+export type { Around } from './places/outlooks.ts'
+export { readPlaceSeries } from './places/series.ts'
+export { thinOutlooks } from './places/thin.ts'
