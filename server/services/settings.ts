@@ -3,8 +3,11 @@ import { Op } from 'sequelize'
 import type { Transaction } from 'sequelize'
 import { z } from 'zod'
 import { english } from '../../shared/catalogue/english.ts'
+import { usualFlagSet, usualPlaceCautions } from '../../shared/places/usualWords.ts'
 import { coast } from '../../shared/schemas/coast.ts'
 import type { PublicSettings } from '../../shared/schemas/coast.ts'
+import { placeCautions } from '../../shared/schemas/placeCautions.ts'
+import { flagSet } from '../../shared/schemas/placeNotice.ts'
 import { dailyEmail, watchRules } from '../../shared/schemas/watchRules.ts'
 import type { Parts } from '../config/parts.ts'
 import { SettingVersion } from '../models/index.ts'
@@ -28,6 +31,10 @@ const shapes = {
     capSender: z.string().regex(/^[^\s,<&]{3,100}$/),
   }),
   people: z.strictObject({ administratorsNeedSecondFactor: z.boolean() }),
+  placeCautions,
+  beachFlags: flagSet,
+  /** How long before its end the watch and its lists are told of a notice about to expire. */
+  notices: z.strictObject({ warnMinutes: z.number().int().min(5).max(1440) }),
   /** Months kept besides the current one; null keeps all. */
   retention: z.strictObject({
     readingBlocks: monthsKept,
@@ -49,6 +56,9 @@ const initial: Settings = {
   alerts: { asksSecondPerson: true, longestShelfHours: 8, capSender: 'duty@harbour.example' },
   mail: { heartbeatAt: '07:00', heartbeatListId: null },
   people: { administratorsNeedSecondFactor: false },
+  placeCautions: usualPlaceCautions,
+  beachFlags: usualFlagSet,
+  notices: { warnMinutes: 30 },
   retention: { readingBlocks: 25, stationHealthHours: 25, estimates: null, estimateDetails: 25 },
 }
 
