@@ -3,7 +3,7 @@
  * sounding on the way. Only where no headland, bar or breakwater lies between: else a transfer table of the site.
  */
 import { check, determined, input, undetermined } from './figure.ts'
-import type { Figure, FigureFrame, FigureMethod, FigureUnit } from './figure.ts'
+import type { Figure, FigureFrame, FigureMethod, FigureUnit, RangeCheck } from './figure.ts'
 import type { PathDepth } from './depths.ts'
 import { headingOf, incidenceAngle, isRefused, refract, wrap } from './refraction.ts'
 import type { SeaSystem } from './sea.ts'
@@ -75,13 +75,11 @@ export function carryOverContours(system: SeaSystem, contours: Contours): Carrie
         ? []
         : [
             check(
-              'height over depth at the place',
-              (height.value * there.heightRatio) / depthAtPlace.value,
-              '1',
-              0,
-              saturation,
+              ...(['height over depth at the place', (height.value * there.heightRatio) / depthAtPlace.value] as const),
+              ...(['1', 0, saturation] as const),
             ),
           ]),
+      ...checkOfTheWay(points),
     ],
   })
   if (isRefused(there)) {
@@ -112,6 +110,14 @@ export function carryOverContours(system: SeaSystem, contours: Contours): Carrie
       spread: system.spread === null ? null : system.spread * there.turning,
     },
   }
+}
+
+/** A bar on the way breaks what is carried over it. */
+function checkOfTheWay(points: CarriedPoint[]): RangeCheck[] {
+  const shares = points.flatMap(({ height, depth }) => (height === null ? [] : [height / depth]))
+  return shares.length === 0
+    ? []
+    : [check('height over depth on the way, highest', Math.max(...shares), '1', 0, saturation)]
 }
 
 function pointOn(

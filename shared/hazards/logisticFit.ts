@@ -30,7 +30,7 @@ export type LogisticRefusal = 'separated' | 'does not vary' | 'no answer'
 export const chanceOf = (model: LogisticModel, values: readonly number[]): number =>
   logistic(model.coefficients.reduce((sum, { value }, n) => sum + value * values[n], model.intercept.value))
 
-const logistic = (x: number): number => (x >= 0 ? 1 / (1 + Math.exp(-x)) : Math.exp(x) / (1 + Math.exp(x)))
+export const logistic = (x: number): number => (x >= 0 ? 1 / (1 + Math.exp(-x)) : Math.exp(x) / (1 + Math.exp(x)))
 /** ln(1 + eˣ) without overflow. */
 const softplus = (x: number): number => (x > 0 ? x + Math.log1p(Math.exp(-x)) : Math.log1p(Math.exp(x)))
 

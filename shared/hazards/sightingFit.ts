@@ -7,6 +7,7 @@ import type { CalibrationBin } from './calibration.ts'
 import { gainOf, predictUnseen } from './folds.ts'
 import type { Gain } from './folds.ts'
 import { chanceOf, fitLogistic } from './logisticFit.ts'
+import { spreadOf } from './uncertain.ts'
 import type { Coefficient, LogisticModel, LogisticRefusal, SightingRow } from './logisticFit.ts'
 
 export interface Scores {
@@ -23,6 +24,10 @@ export interface SightingFit {
   predictors: string[]
   intercept: Coefficient
   coefficients: Coefficient[]
+  /** Of intercept and coefficients, row by row. */
+  covariance: number[]
+  /** Least and most of each predictor: beyond it the fit says nothing. */
+  observedRange: { from: number; to: number }[]
   /** Share of yes by the first predictor, as predicted. */
   bins: CalibrationBin[]
   /** Cross-validated chances against share of yes: on the diagonal the fit is honest. */
@@ -78,6 +83,8 @@ export function fitSightings(
     predictors,
     intercept: model.intercept,
     coefficients: model.coefficients,
+    covariance: Array.from(model.covariance),
+    observedRange: predictors.map((_, p) => spreadOf(rows.map(({ values }) => values[p]))),
     bins: calibrationBins(
       rows.map(({ values }) => values[0]),
       outcomes,

@@ -52,6 +52,19 @@ describe('mean overtopping by the formulas of EurOtop 2018', () => {
     expect(wallRegime(squareOn(1.5, 3.5), 3)).toBe('foreshore, not impulsive')
   })
 
+  it.each([
+    ['smooth slope', 45.2, 75.1],
+    ['vertical wall', 2.43, 5.32],
+  ])(
+    'of a %s lies within a factor of 3 of the manual’s design value, mean and one standard deviation',
+    (_, mean, design) => {
+      // Design: 0.1035 exp[−(1.35 Rc/H)^1.3] (5.13), 0.054 exp[−(2.12 Rc/H)^1.3] (7.2), of 2 m with a free crest of 3 m.
+      const formula = mean > 10 ? 0.1035 * Math.exp(-((1.35 * 1.5) ** 1.3)) : 0.054 * Math.exp(-((2.12 * 1.5) ** 1.3))
+      expect(litres(Math.sqrt(9.81 * 8) * formula)).toBeCloseTo(design, 1)
+      expect(design / mean).toBeLessThan(3)
+    },
+  )
+
   it('falls with obliquity by 0.0033 or 0.0063 a degree, no further beyond 80°', () => {
     expect(obliquityFactor(20 * degree, 'rubble')).toBeCloseTo(1 - 0.126, 12)
     expect(obliquityFactor(-20 * degree, 'smooth')).toBeCloseTo(1 - 0.066, 12)

@@ -119,6 +119,13 @@ describe('a system carried to a place', () => {
     expect(validity.checks.find(({ inside }) => !inside)?.name).toBe('height over depth at the place')
   })
 
+  it('over a bar that breaks it on the way is out of range, even if the place is deep', () => {
+    const bar = [...contours.path]
+    bar[1] = { distance: 600, depth: 2.5 }
+    const { validity } = carryOverContours(swell, { ...contours, path: bar }).height
+    expect(validity.checks.find(({ inside }) => !inside)?.name).toBe('height over depth on the way, highest')
+  })
+
   it('that runs away from the shore is refused with the reason', () => {
     const away = carryOverContours(system({ height: 1, period: 6, toward: 200 }), contours)
     expect(away.height).toMatchObject({ value: null, reason: 'the waves run along or away from the shore' })
