@@ -5,6 +5,7 @@ import { accountRoutes } from './accounts.ts'
 import { alertRoutes } from './alerts.ts'
 import { capRoutes } from './cap.ts'
 import { clockOffsetRoutes } from './clockOffsets.ts'
+import { deploymentRoutes } from './deployments.ts'
 import { installationRoutes } from './installation.ts'
 import { jobRoutes } from './jobs.ts'
 import { limitRoutes } from './limits.ts'
@@ -35,6 +36,7 @@ const features: ((parts: Parts) => Route[])[] = [
   jobRoutes,
   stationRoutes,
   stationSetUpRoutes,
+  deploymentRoutes,
   stationKeyRoutes,
   stationHealthRoutes,
   runRoutes,

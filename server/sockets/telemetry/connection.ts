@@ -19,6 +19,7 @@ const fewWaiting = 100
 const malformedInARow = 3
 
 interface Streaming {
+  hello: HelloMessage
   station: StationFacts
   stream: OpenStream
 }
@@ -91,7 +92,7 @@ export class Connection {
     const stream = await store.streams.open(station.id, hello.stream)
     if (this.socket.readyState !== this.socket.OPEN) return
     this.malformed = 0
-    this.streaming = { station, stream }
+    this.streaming = { hello, station, stream }
     this.clockWatch.note(Date.parse(hello.sentAt), arrivedAt)
     this.around.welcomed(this)
     this.send({
@@ -128,7 +129,8 @@ export class Connection {
     if ('code' in placed) return this.putAside(frame.seq, start, placed, message, streaming)
     store.enqueue({
       kind: 'frame',
-      ...streaming,
+      station: streaming.station,
+      stream: streaming.stream,
       seq: frame.seq,
       span: placed.span,
       ...packFrame(placed.span),
@@ -150,7 +152,8 @@ export class Connection {
     const { clock, store } = this.around
     store.enqueue({
       kind: 'refused',
-      ...streaming,
+      station: streaming.station,
+      stream: streaming.stream,
       seq,
       reason: code,
       startsAt,
@@ -225,9 +228,9 @@ export class Connection {
     if (!streaming) return
     const station = await loadStationFacts(this.stationId, this.around.clock.now())
     if (!station || station.state === 'retired') return this.close(telemetryClose.retired, 'the station is retired')
-    const before = streaming.station.deployment
-    if (station.deployment?.id === before?.id && station.sampleRate === streaming.station.sampleRate) {
-      streaming.station = station
-    } else this.close(telemetryClose.helloDoesNotFit, 'another array is in force now: say hello again')
+    // A new survey of the same sensors asks nothing of the station.
+    const difference = differenceOfHello(streaming.hello, station)
+    if (difference !== null) return this.close(telemetryClose.helloDoesNotFit, difference)
+    streaming.station = station
   }
 }
