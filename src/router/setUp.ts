@@ -24,4 +24,28 @@ export const setUpRoutes: RouteRecordRaw[] = [
     component: () => import('../pages/SetUpArrayPage.vue'),
     meta: meta('Array, set-up'),
   },
+  {
+    path: `${station}/sensors`,
+    name: 'setUpSensors',
+    component: () => import('../pages/SetUpSensorsPage.vue'),
+    meta: meta('Sensors, set-up'),
+  },
+  {
+    path: `${station}/link`,
+    name: 'setUpLink',
+    component: () => import('../pages/SetUpLinkPage.vue'),
+    meta: meta('Keys and link, set-up'),
+  },
+  {
+    path: `${station}/readings`,
+    name: 'setUpReadings',
+    component: () => import('../pages/SetUpReadingsPage.vue'),
+    meta: meta('Readings, set-up'),
+  },
+  {
+    path: `${station}/inputs`,
+    name: 'setUpInputs',
+    component: () => import('../pages/SetUpInputsPage.vue'),
+    meta: meta('Other inputs, set-up'),
+  },
 ]
