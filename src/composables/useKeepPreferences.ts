@@ -23,7 +23,7 @@ export function useKeepPreferences(): void {
   let running: Promise<void> = Promise.resolve()
 
   async function keep(): Promise<void> {
-    const kept = session.view?.preferences
+    const kept = session.preferences
     if (!kept || session.state !== 'in' || session.readOnly) return
     const change = changed(display.chosen, kept)
     if (Object.keys(change).length === 0) return

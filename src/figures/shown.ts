@@ -56,3 +56,10 @@ export const speedSd = (metresPerSecond: number | null): string =>
 
 /** What a voice reads for a figure or a drawing. */
 export const spoken = (sentence: string): string => (shown.spokenDigits ? spokenBearings(sentence) : sentence)
+
+/** After a limit or what is set against it, which keep the unit they were set in: `, 3.3 ft` for who reads feet, else nothing. */
+export function alsoIn(unit: string, value: number | null): string {
+  if (value === null) return ''
+  if (unit === 'm' && shown.heightUnit === 'ft') return `, ${heightWords(value)}`
+  return unit === 'm/s' && shown.speedUnit === 'kn' ? `, ${speedWords(value)}` : ''
+}

@@ -4,7 +4,7 @@ import { computed, ref, shallowRef } from 'vue'
 import { may } from '../../shared/access.ts'
 import type { Action } from '../../shared/access.ts'
 import type { InstallationView, SessionView, SetUpRequest, SignInRequest } from '../../shared/schemas/session.ts'
-import type { PreferencesChange } from '../../shared/schemas/preferences.ts'
+import type { Preferences, PreferencesChange } from '../../shared/schemas/preferences.ts'
 import { changePreferences } from '../api/accounts.ts'
 import * as api from '../api/session.ts'
 import { useDisplay } from './display.ts'
@@ -18,6 +18,8 @@ export const useSession = defineStore('session', () => {
   const display = useDisplay()
   const state = ref<SessionState>('unknown')
   const view = shallowRef<SessionView | null>(null)
+  /** As the server keeps them. */
+  const preferences = shallowRef<Preferences | null>(null)
   const readOnly = ref(false)
   const installation = shallowRef<InstallationView | null>(null)
 
@@ -33,13 +35,13 @@ export const useSession = defineStore('session', () => {
     view.value = next
     readOnly.value = next.readOnly
     state.value = 'in'
+    preferences.value = next.preferences
     display.take(next.preferences)
   }
 
   /** Keeps choices of this person on the server; the screen shows them already. */
   async function keepPreferences(change: PreferencesChange): Promise<void> {
-    const kept = await changePreferences(change)
-    if (view.value) view.value = { ...view.value, preferences: kept }
+    preferences.value = await changePreferences(change)
   }
 
   /** Asks the server who this is; throws where no answer comes. */
@@ -85,6 +87,7 @@ export const useSession = defineStore('session', () => {
     view,
     person,
     mustEnrol,
+    preferences,
     readOnly,
     installation,
     isDemonstration,

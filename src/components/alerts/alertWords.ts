@@ -6,6 +6,7 @@ import type { LimitView, NotJudgedReason, Priority } from '../../../shared/schem
 import { dateUtc, momentUtc } from '../../../shared/times.ts'
 import { plusMinus } from '../../../shared/units.ts'
 import type { AlertRow, AlertTally } from '../../stores/alertOrder.ts'
+import { alsoIn } from '../../figures/shown.ts'
 
 export const priorityNames: Record<Priority, string> = { low: 'Low', medium: 'Medium', high: 'High', urgent: 'Urgent' }
 
@@ -30,7 +31,8 @@ export function sdOf(alert: AlertView): string {
 export function limitOf(alert: AlertView): string {
   if (alert.raise === null) return 'limit: a sector'
   if (alert.quantity === 'arrayDisagreement') return ''
-  return `limit ${valueWords(quantityOf(alert.quantity), alert.raise)}`
+  const quantity = quantityOf(alert.quantity)
+  return `limit ${valueWords(quantity, alert.raise)}${alsoIn(quantity.unit, alert.raise)}`
 }
 
 /** `Cross-sea, Marrowick Entrance` without the place. */
@@ -100,7 +102,7 @@ export function rowFigure({ alert, limit }: AlertRow): { value: string; under: s
         ? 'limit: a sector'
         : first.quantity === 'arrayDisagreement'
           ? ''
-          : `limit ${valueWords(quantity, first.raise)}`,
+          : `limit ${valueWords(quantity, first.raise)}${alsoIn(quantity.unit, first.raise)}`,
   }
 }
 

@@ -1,6 +1,7 @@
 /** Figures of the whole sea beside height and period: single waves, energy, cut-off and tail, surge. */
 import type { EstimateResult } from '../../../shared/schemas/estimate.ts'
-import { decimals, heightPlaces, metres, seconds } from '../../../shared/units.ts'
+import { decimals, heightPlaces, seconds } from '../../../shared/units.ts'
+import { heightWords } from '../../figures/shown.ts'
 
 export interface SeaFigure {
   name: string
@@ -20,8 +21,8 @@ export function seaFigures({ waveByWave, energyFlux, spectrum, surgeHeight }: Es
     const few = count < enoughWaves ? `, few: ${enoughWaves} are wanted` : ''
     const places = heightPlaces(significantHeight)
     rows.push(
-      { name: 'H 1/3', help: `of ${count} waves${few}`, figure: metres(significantHeight, places) },
-      { name: 'Highest wave', help: `at ${greatestAt}`, figure: metres(greatestHeight, places) },
+      { name: 'H 1/3', help: `of ${count} waves${few}`, figure: heightWords(significantHeight, places) },
+      { name: 'Highest wave', help: `at ${greatestAt}`, figure: heightWords(greatestHeight, places) },
       { name: 'T z', help: 'between up-crossings', figure: seconds(meanPeriod) },
     )
   }
@@ -35,12 +36,12 @@ export function seaFigures({ waveByWave, energyFlux, spectrum, surgeHeight }: Es
       rows.push({
         name: 'With a tail',
         help: `f${superscript(tail.exponent)} above the cut-off, not in H m0`,
-        figure: metres(tail.significantWaveHeight, places),
+        figure: heightWords(tail.significantWaveHeight, places),
       })
     }
   }
   if (surgeHeight !== null)
-    rows.push({ name: 'Surge', help: '0.004 to 0.04 Hz, one hour', figure: metres(surgeHeight, 2) })
+    rows.push({ name: 'Surge', help: '0.004 to 0.04 Hz, one hour', figure: heightWords(surgeHeight, 2) })
   return rows
 }
 

@@ -1,7 +1,8 @@
 /** Why a vector can, or cannot, be trusted: each ground with its mark, as a line of words and a figure. */
 import { turnBetween } from '../../../shared/directions.ts'
 import type { EstimateResult, QualityFlag, QualityTest } from '../../../shared/schemas/estimate.ts'
-import { decimals, metres, metresPerSecond, percent, seconds } from '../../../shared/units.ts'
+import { decimals, metres, percent, seconds } from '../../../shared/units.ts'
+import { speedSd, speedUnit, speedWords } from '../../figures/shown.ts'
 
 export interface TrustGround {
   key: string
@@ -52,7 +53,7 @@ export function trustGrounds(detail: EstimateResult): TrustGround[] {
       key: 'runnerUp',
       // A cycle that fits nearly as well is refused as ambiguous, so one that stands has been decided.
       flag: detail.reason === 'ambiguous' ? 4 : 1,
-      words: `Best other cycle: ${metresPerSecond(detail.runnerUp.speed)}, fit compared with this one`,
+      words: `Best other cycle: ${speedWords(detail.runnerUp.speed)}, fit compared with this one`,
       figure: decimals(detail.runnerUp.ratio, 2),
     })
   }
@@ -97,6 +98,6 @@ function subArrayGround({ subArrays, systems }: EstimateResult): TrustGround {
     key: 'subArrays',
     flag: 1,
     words: `${subArrays.length} sub-arrays of 3 or more agree within`,
-    figure: `± ${Math.max(1, Math.ceil(turn))}°, ± ${decimals(Math.max(0.1, speed), 1)} m/s`,
+    figure: `± ${Math.max(1, Math.ceil(turn))}°, ${speedSd(Math.max(0.1, speed))} ${speedUnit()}`,
   }
 }

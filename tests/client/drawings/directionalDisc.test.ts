@@ -21,8 +21,8 @@ describe('the disc of directions', () => {
     expect(highestPower(found)).toEqual({ density: 2, frequency: 0.08, from: 247 })
     const disc = mount(DirectionalDisc, { props: { ...found, method: 'IMLM', systems: [swell] } })
     const sentence = disc.find('svg').attributes('aria-label')
-    expect(sentence).toContain('highest from 247° T at 12.5 s')
-    expect(sentence).toContain('Swell from 247° T at 12.5 s')
+    expect(sentence).toContain('highest from two four seven degrees true at 12.5 s')
+    expect(sentence).toContain('Swell from two four seven degrees true at 12.5 s')
   })
 
   it('draws one ring piece, left of and below the middle for waves from the west-south-west', () => {

@@ -54,7 +54,9 @@ describe('every drawing', () => {
 describe('the glyph', () => {
   it('says both senses and the height', () => {
     const glyph = mount(WaveGlyph, { props: { toward: 61, height: 1.9, name: 'Swell' } })
-    expect(glyph.attributes('aria-label')).toBe('Swell from 241° T, toward 061° T, 1.9 m.')
+    expect(glyph.attributes('aria-label')).toBe(
+      'Swell from two four one degrees true, toward zero six one degrees true, 1.9 m.',
+    )
   })
 
   it('without a resolvable wave is a dashed ring and no arrow', () => {

@@ -50,7 +50,7 @@ describe('lead block', () => {
     expect(text).toContain('toward 067° T ± 3°')
     expect(text).toContain('all systems 2.4 m ± 0.1')
     expect(block.find('[role=group]').attributes('aria-label')).toBe(
-      'Swell from 247° T, toward 067° T, ± 3°, 11.4 m/s ± 0.3, 2.1 m ± 0.1, 12.4 s',
+      'Swell from two four seven degrees true, toward zero six seven degrees true, ± 3°, 11.4 m/s ± 0.3, 2.1 m ± 0.1, 12.4 s',
     )
   })
 
@@ -98,7 +98,10 @@ describe('lead block', () => {
     const block = lead(station({ estimate: estimate({ systems: [swell({ key: 3 }), second] }) }))
     expect(wordsOf(block.element)).toContain('Two systems, no single leading direction')
     const labels = block.findAll('[role=group]').map((one) => one.attributes('aria-label')?.split(',')[0])
-    expect(labels).toEqual(['West swell from 290° T', 'South-west swell from 247° T'])
+    expect(labels).toEqual([
+      'West swell from two nine zero degrees true',
+      'South-west swell from two four seven degrees true',
+    ])
   })
 })
 

@@ -73,7 +73,7 @@ describe('the page of a station', () => {
   it('reads its velocity as one sentence with both senses', async () => {
     const block = (await openPage(station({ estimate: estimate() }), end + 130_000)).find('.velocity')
     expect(block.attributes('aria-label')).toBe(
-      'Swell from 247° T, toward 067° T, ± 3°, 11.4 m/s ± 0.3, height 2.1 m ± 0.1, peak period 12.4 s, Good, 2 min old, mean of 20 min',
+      'Swell from two four seven degrees true, toward zero six seven degrees true, ± 3°, 11.4 m/s ± 0.3, height 2.1 m ± 0.1, peak period 12.4 s, Good, 2 min old, mean of 20 min',
     )
   })
 

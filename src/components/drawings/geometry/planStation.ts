@@ -2,7 +2,8 @@
 import { livePicture } from '../../../../shared/livePicture.ts'
 import type { StationView } from '../../../../shared/schemas/station.ts'
 import { momentUtc } from '../../../../shared/times.ts'
-import { age, heightPlaces, metres, metresPerSecond } from '../../../../shared/units.ts'
+import { age, heightPlaces } from '../../../../shared/units.ts'
+import { heightWords, speedWords } from '../../../figures/shown.ts'
 import { systemSign, systemTitle } from '../../../../shared/waveSystemNames.ts'
 import type { SystemSign } from '../../../../shared/waveSystemNames.ts'
 
@@ -48,7 +49,7 @@ export function planStation(station: StationView, nowMs: number): PlanStation {
   const doubt = picture.isSuspect ? ', Suspect' : ''
   return {
     ...place,
-    words: `${name} ${metres(height, heightPlaces(height))}, ${metresPerSecond(lead.speed)}${doubt}`,
+    words: `${name} ${heightWords(height, heightPlaces(height))}, ${speedWords(lead.speed)}${doubt}`,
     spacing: lead.speed * lead.peakPeriod,
     vectors: systems.map((system) => ({
       key: system.key,
