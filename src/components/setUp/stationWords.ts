@@ -23,4 +23,4 @@ export const keyWords = (count: number): string =>
   count === 0 ? 'no key' : count === 1 ? '1 key valid' : `${count} keys valid`
 
 export const stationWords = (record: StationRecord): string =>
-  `${record.code}, ${stateWords[record.state]}. ${deploymentWords(record)}`
+  `${record.code}, ${stateWords[record.state]}; ${deploymentWords(record)}`
