@@ -28,6 +28,7 @@ const together = {
   escalations: 'messages',
   alerts: 'limits',
   limits: 'alerts',
+  notices: 'messages',
   people: 'messages|sessions|secondFactor',
   sessions: 'secondFactor',
 }

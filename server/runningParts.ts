@@ -8,6 +8,7 @@ import { startDemonstrationPast } from './jobs/demonstrationPast.ts'
 import { startEscalate } from './jobs/escalate.ts'
 import { startForgetSessions } from './jobs/forgetSessions.ts'
 import { startJudgeLimits } from './jobs/judgeLimits.ts'
+import { startKeepNotices } from './jobs/keepNotices.ts'
 import { startKeepSeriesDays } from './jobs/keepSeriesDays.ts'
 import { startRecompute } from './jobs/recompute.ts'
 import { startRetention } from './jobs/retention.ts'
@@ -40,6 +41,7 @@ export async function startRunningParts(parts: Parts, server: Server): Promise<S
     started.push(await startComputeEstimates(parts))
     started.push(startRecompute(parts))
     started.push(startKeepSeriesDays(parts))
+    started.push(startKeepNotices(parts))
     started.push(await startCompactReadings(parts, telemetry.store))
     started.push(startDemonstrationPast(parts))
   } catch (error) {

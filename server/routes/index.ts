@@ -3,6 +3,7 @@ import type { Parts } from '../config/parts.ts'
 import { sessionCookieName } from '../config/sessionCookie.ts'
 import { accountRoutes } from './accounts.ts'
 import { alertRoutes } from './alerts.ts'
+import { auditRoutes } from './audits.ts'
 import { capRoutes } from './cap.ts'
 import { clockOffsetRoutes } from './clockOffsets.ts'
 import { deploymentRoutes } from './deployments.ts'
@@ -11,14 +12,17 @@ import { jobRoutes } from './jobs.ts'
 import { limitRoutes } from './limits.ts'
 import { listRoutes } from './lists.ts'
 import { messageRoutes } from './messages.ts'
+import { noticeRoutes } from './notices.ts'
 import { withOpenApi } from './openApi.ts'
 import { ownAccountRoutes } from './ownAccount.ts'
 import { passphraseLinkRoutes } from './passphraseLinks.ts'
 import { peopleRoutes } from './people.ts'
+import { placeRoutes } from './places.ts'
 import { receiptRoutes } from './receipts.ts'
 import type { Route } from './registry.ts'
 import { secondFactorRoutes } from './secondFactor.ts'
 import { runRoutes } from './runs.ts'
+import { sensorRoutes } from './sensors.ts'
 import { sessionRoutes } from './session.ts'
 import { settingsRoutes } from './settings.ts'
 import { setUpRoutes } from './setUp.ts'
@@ -37,6 +41,7 @@ const features: ((parts: Parts) => Route[])[] = [
   stationRoutes,
   stationSetUpRoutes,
   deploymentRoutes,
+  sensorRoutes,
   stationKeyRoutes,
   stationHealthRoutes,
   runRoutes,
@@ -51,7 +56,10 @@ const features: ((parts: Parts) => Route[])[] = [
   ownAccountRoutes,
   secondFactorRoutes,
   passphraseLinkRoutes,
+  auditRoutes,
   receiptRoutes,
+  placeRoutes,
+  noticeRoutes,
   watchRulesRoutes,
 ]
 

@@ -18,7 +18,7 @@ export {
 export { beginDrill, endDrill } from './alerts/drill.ts'
 export { readBoard } from './alerts/board.ts'
 export { readAlert, readAlertDetail, readAlertHistory } from './alerts/detail.ts'
-export { listAlerts } from './alerts/list.ts'
+export { acknowledgementsOf, listAlerts } from './alerts/list.ts'
 export { atDesk } from './alerts/desk.ts'
 export type { Desk } from './alerts/desk.ts'
 export { measurePerformance } from './alerts/performance.ts'

@@ -16,6 +16,13 @@ export async function listLimits(parts: Parts): Promise<LimitView[]> {
   return presentLimits(parts, await Limit.findAll({ where: { retiredAt: null }, order: [['id', 'ASC']] }))
 }
 
+/** Set at these places and not retired, by number. */
+export async function limitsOfPlaces(parts: Parts, placeIds: number[]): Promise<LimitView[]> {
+  if (placeIds.length === 0) return []
+  const where = { subjectKind: 'place', subjectId: placeIds, retiredAt: null }
+  return presentLimits(parts, await Limit.findAll({ where, order: [['id', 'ASC']] }))
+}
+
 /** Throws the 404. */
 export async function readLimit(parts: Parts, limitId: number): Promise<LimitView> {
   const row = await Limit.findByPk(limitId)

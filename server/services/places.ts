@@ -1,5 +1,6 @@
 /** Places: what they are, what the sea does there, kept with each estimate. */
 export { addPlace, changePlace, changePlaceSettings, createPlace, restorePlace, retirePlace } from './places/change.ts'
+export type { PlaceOrder } from './places/change.ts'
 export { listPlaces, listPlaceSettings, readPlace } from './places/read.ts'
 export type { PlaceFacts } from './places/read.ts'
 export { saveOutlooks } from './places/save.ts'

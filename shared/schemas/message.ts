@@ -17,6 +17,8 @@ export const messageKind = z.enum([
   'reset',
   /** To administrators: somebody put an urgent limit in force, or aside, without a second person. */
   'alone',
+  /** A flag, closure or advisory: set, extended, withdrawn, about to expire, expired. */
+  'notice',
 ])
 export type MessageKind = z.infer<typeof messageKind>
 

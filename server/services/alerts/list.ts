@@ -29,3 +29,17 @@ export async function listAlerts(parts: Parts, question: AlertQuestion): Promise
   const last = page.at(-1)
   return { alerts: await presentAlerts(parts, page), next: rows.length > pageLength && last ? last.id : null }
 }
+
+/** When these alerts were raised and acknowledged. */
+export async function acknowledgementsOf(
+  alertIds: number[],
+): Promise<Map<number, { raisedAt: string; acknowledgedAt: string | null }>> {
+  if (alertIds.length === 0) return new Map()
+  const rows = await Alert.findAll({ where: { id: alertIds }, attributes: ['id', 'raisedAt', 'acknowledgedAt'] })
+  return new Map(
+    rows.map(({ id, raisedAt, acknowledgedAt }) => [
+      id,
+      { raisedAt: raisedAt.toISOString(), acknowledgedAt: acknowledgedAt?.toISOString() ?? null },
+    ]),
+  )
+}
