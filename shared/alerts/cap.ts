@@ -172,7 +172,10 @@ function messageOf(facts: CapFacts, event: CapEvent, msgType: CapMessage['msgTyp
       area: {
         areaDesc: facts.subjectName,
         polygon: facts.ring && facts.ring.length >= 4 ? capPolygon(facts.ring) : null,
-        circle: facts.ring ? null : `${facts.latitude.toFixed(5)},${facts.longitude.toFixed(5)} ${radiusKm}`,
+        circle:
+          facts.ring && facts.ring.length >= 4
+            ? null
+            : `${facts.latitude.toFixed(5)},${facts.longitude.toFixed(5)} ${radiusKm}`,
       },
     },
   }

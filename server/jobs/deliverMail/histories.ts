@@ -2,7 +2,7 @@
 import { quantityOf } from '../../../shared/alerts/quantities.ts'
 import type { Parts } from '../../config/parts.ts'
 import type { Surroundings } from '../../mail/letter.ts'
-import { seaBetween } from '../../services/alerts/seaFigures.ts'
+import { quantityBetween } from '../../services/alerts/quantityHistory.ts'
 import type { Leased } from '../../services/deliveries.ts'
 
 type History = Surroundings['history']
@@ -21,14 +21,9 @@ export function createHistories({ sequelize, logger }: Pick<Parts, 'sequelize' |
     if (!content || !drawing) return null
     const quantity = quantityOf(content.quantity)
     const to = Date.parse(content.windowEndsAt)
-    const windows = await seaBetween(sequelize, drawing.stationId, to - longMs, to)
+    const found = await quantityBetween(sequelize, drawing, quantity, to - longMs, to)
     const { unit, decimals, toUnit, isCircular } = quantity
-    const points = windows
-      .map(({ windowEndsAt, sea }) => ({
-        at: windowEndsAt,
-        value: quantity.read({ sea, health: null }).value * toUnit,
-      }))
-      .filter(({ value }) => Number.isFinite(value))
+    const points = found.map(({ at, value }) => ({ at, value: value * toUnit }))
     const raise = drawing.raise === null ? null : drawing.raise * toUnit
     return points.length < 2 ? null : { points, raise, isCircular, unit, decimals }
   }

@@ -14,7 +14,7 @@ import { fromJson } from '../limits/rows.ts'
 import { notFound } from '../problems.ts'
 import type { Office } from './office.ts'
 import { presentAlerts } from './present.ts'
-import { seaBetween } from './seaFigures.ts'
+import { quantityBetween } from './quantityHistory.ts'
 
 type Detail = z.input<typeof alertDetail>
 
@@ -116,12 +116,7 @@ export async function readAlertHistory(parts: Parts, alertId: number, hours: num
   const quantity = quantityOf(judged.comparisons[0].quantity)
   const limit = await Limit.findByPk(alert.limitId)
   const to = (alert.closedAt ?? parts.clock.now()).getTime()
-  const isOfStation = quantity.limitClass === 'wave' && limit?.subjectKind === 'station' && limit.subjectId !== null
-  const windows = isOfStation ? await seaBetween(parts.sequelize, limit.subjectId ?? 0, to - hours * 3_600_000, to) : []
-  const points = windows.flatMap(({ windowEndsAt, sea }) => {
-    const { value, sd } = quantity.read({ sea, health: null })
-    if (Number.isNaN(value)) return []
-    return [{ at: new Date(windowEndsAt).toISOString(), value, sd: Number.isNaN(sd) ? null : sd }]
-  })
+  const found = limit ? await quantityBetween(parts.sequelize, limit, quantity, to - hours * 3_600_000, to) : []
+  const points = found.map(({ at, ...point }) => ({ at: new Date(at).toISOString(), ...point }))
   return { quantity: quantity.key, ...thresholdsOf(judged), points }
 }

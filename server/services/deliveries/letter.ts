@@ -2,6 +2,7 @@
 import { z } from 'zod'
 import type { Transaction } from 'sequelize'
 import { condition, recipients } from '../../../shared/schemas/limit.ts'
+import type { SubjectKind } from '../../../shared/schemas/limit.ts'
 import { messageContent, messageKind } from '../../../shared/schemas/message.ts'
 import type { MessageContent, MessageKind } from '../../../shared/schemas/message.ts'
 import type { Parts } from '../../config/parts.ts'
@@ -34,7 +35,7 @@ export interface Letter {
   /** What follows without a receipt; in order of time. */
   next: { reminderAt: Date | null; step: { at: Date; lists: string[] } | null }
   /** Of which a drawing of the last hours can be made; null: of none. */
-  drawing: { stationId: number; raise: number | null } | null
+  drawing: { subjectKind: SubjectKind; subjectId: number; raise: number | null } | null
 }
 
 const askForReceipt: MessageKind[] = ['alert', 'reminder', 'escalation', 'flood']
@@ -82,10 +83,11 @@ async function drawingOf(alert: Alert, transaction: Transaction): Promise<Letter
     Limit.findByPk(alert.limitId, { transaction }),
     LimitVersion.findByPk(alert.limitVersionId, { transaction }),
   ])
-  if (limit?.limitClass !== 'wave' || limit.subjectKind !== 'station' || limit.subjectId === null) return null
+  if (limit?.limitClass !== 'wave' || limit.subjectId === null) return null
   const first = condition.parse(version?.condition).comparisons[0]
   const isValue = first.kind === 'below' || (first.kind === 'above' && first.riseOverSeconds === null)
-  return { stationId: limit.subjectId, raise: isValue ? first.raise : null }
+  const { subjectKind, subjectId } = limit
+  return { subjectKind, subjectId, raise: isValue ? first.raise : null }
 }
 
 /** From the stored times of the escalation itself. */

@@ -1,10 +1,9 @@
 /** Limits made, changed as a new version with author and reason, retired. */
-import type { Transaction } from 'sequelize'
 import { conditionWords, titleOf } from '../../../shared/alerts/describe.ts'
 import { quantityOf } from '../../../shared/alerts/quantities.ts'
-import type { LimitClass, LimitContent, Priority, SubjectKind } from '../../../shared/schemas/limit.ts'
+import type { LimitContent, Priority, SubjectKind } from '../../../shared/schemas/limit.ts'
 import type { Parts } from '../../config/parts.ts'
-import { Alert, DistributionList, Limit, LimitState, LimitVersion, Station } from '../../models/index.ts'
+import { Alert, Limit, LimitState, LimitVersion, Station } from '../../models/index.ts'
 import { recordAudit } from '../audit.ts'
 import { askConsent, noConsent, noteConsent } from '../alerts/consent.ts'
 import type { Consent } from '../alerts/consent.ts'
@@ -17,6 +16,7 @@ import { endShelvings } from '../alerts/shelves.ts'
 import { endSteps } from '../alerts/tell.ts'
 import { changedMeanwhile, invalidInput, notFound, Refused } from '../problems.ts'
 import { writeSystemLine } from '../watchLog.ts'
+import { classOf } from './check.ts'
 import { presentLimits } from './present.ts'
 import { limitsInForce } from './rows.ts'
 
@@ -31,46 +31,7 @@ export interface NewLimit extends LimitOrder {
   subjectId: number | null
 }
 
-type Faults = { path: string; message: string }[]
 const ranks: Priority[] = ['low', 'medium', 'high', 'urgent']
-
-/** What shapes alone cannot tell: quantities that fit the subject and each other, values in their range, lists that are there. */
-async function classOf(
-  draft: Pick<NewLimit, 'subjectKind' | 'subjectId' | 'content'>,
-  transaction: Transaction,
-): Promise<LimitClass> {
-  const { subjectKind, subjectId, content } = draft
-  const faults: Faults = []
-  const refuse = (path: string, message: string) => faults.push({ path, message })
-  const limitClass = quantityOf(content.condition.comparisons[0].quantity).limitClass
-  for (const [index, comparison] of content.condition.comparisons.entries()) {
-    const quantity = quantityOf(comparison.quantity)
-    const path = `content.condition.comparisons.${index}`
-    if (!quantity.subjects.includes(subjectKind)) refuse(`${path}.quantity`, `is not a quantity of a ${subjectKind}`)
-    if (quantity.limitClass !== limitClass) refuse(`${path}.quantity`, 'must not mix waves and data health')
-    if (quantity.isCircular !== (comparison.kind === 'sector')) refuse(`${path}.kind`, 'does not fit the quantity')
-    if (comparison.kind === 'above' && comparison.riseOverSeconds !== null && !quantity.hasRise) {
-      refuse(`${path}.riseOverSeconds`, 'has no rise')
-    }
-    if (comparison.kind === 'sector') continue
-    for (const end of ['raise', 'clear'] as const) {
-      if (comparison[end] < quantity.least || comparison[end] > quantity.most)
-        refuse(`${path}.${end}`, 'is out of range')
-    }
-  }
-  if (subjectKind === 'place') refuse('subjectKind', 'places have no limits yet')
-  if ((subjectKind === 'system') !== (subjectId === null)) refuse('subjectId', 'does not fit the subject')
-  if (subjectKind === 'station' && subjectId !== null) {
-    const station = await Station.findByPk(subjectId, { transaction })
-    if (!station || station.retiredAt !== null) refuse('subjectId', 'is no station in service')
-  }
-  const wanted = [...new Set(content.recipients.steps.flatMap(({ listIds }) => listIds))]
-  const known =
-    wanted.length === 0 ? 0 : await DistributionList.count({ where: { id: wanted, retiredAt: null }, transaction })
-  if (known < wanted.length) refuse('content.recipients.steps', 'names a list that is not there')
-  if (faults.length > 0) throw invalidInput(faults)
-  return limitClass
-}
 
 interface NewVersion {
   limitId: number

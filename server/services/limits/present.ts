@@ -9,10 +9,17 @@ import {
   recipients,
   timeSpan,
 } from '../../../shared/schemas/limit.ts'
-import type { LimitVersionView, LimitView, PersonName, ShelfView, SubjectView } from '../../../shared/schemas/limit.ts'
+import type {
+  LimitVersionView,
+  LimitView,
+  PersonName,
+  ShelfView,
+  SubjectKind,
+  SubjectView,
+} from '../../../shared/schemas/limit.ts'
 import type { Parts } from '../../config/parts.ts'
 import type { Limit } from '../../models/index.ts'
-import { Alert, LimitState, LimitVersion, Person, Shelving, Station } from '../../models/index.ts'
+import { Alert, LimitState, LimitVersion, Person, Place, Shelving, Station } from '../../models/index.ts'
 import { fromJson } from './rows.ts'
 
 export type NameOf = (personId: number | null) => PersonName | null
@@ -35,24 +42,38 @@ export interface Subjects {
   ): boolean
 }
 
-export async function subjectsOf(limits: Pick<Limit, 'subjectKind' | 'subjectId'>[]): Promise<Subjects> {
-  const ids = limits.flatMap(({ subjectKind, subjectId }) =>
-    subjectKind === 'station' && subjectId ? [subjectId] : [],
-  )
-  const stations = ids.length === 0 ? [] : await Station.findAll({ where: { id: [...new Set(ids)] } })
-  const stationOf = ({ subjectKind, subjectId }: Pick<Limit, 'subjectKind' | 'subjectId'>) =>
+type OfSubject = Pick<Limit, 'subjectKind' | 'subjectId'>
+
+export async function subjectsOf(limits: OfSubject[]): Promise<Subjects> {
+  const idsOf = (wanted: SubjectKind): number[] => [
+    ...new Set(
+      limits.flatMap(({ subjectKind, subjectId }) => (subjectKind === wanted && subjectId ? [subjectId] : [])),
+    ),
+  ]
+  const [stationIds, placeIds] = [idsOf('station'), idsOf('place')]
+  const [stations, places, longest] = await Promise.all([
+    stationIds.length === 0 ? [] : Station.findAll({ where: { id: stationIds } }),
+    placeIds.length === 0 ? [] : Place.findAll({ where: { id: placeIds } }),
+    placeIds.length === 0
+      ? null
+      : Station.max<number | null, Station>('staleAfterSeconds', { where: { retiredAt: null } }),
+  ])
+  const stationOf = ({ subjectKind, subjectId }: OfSubject) =>
     subjectKind === 'station' ? stations.find(({ id }) => id === subjectId) : undefined
+  const placeOf = ({ subjectKind, subjectId }: OfSubject) =>
+    subjectKind === 'place' ? places.find(({ id }) => id === subjectId) : undefined
   return {
     viewOf(limit) {
       const { subjectKind: kind, subjectId: id } = limit
-      const station = stationOf(limit)
-      if (station) return { kind, id, name: station.name, code: station.code }
+      const named = stationOf(limit) ?? placeOf(limit)
+      if (named) return { kind, id, name: named.name, code: named.code }
       const isSystem = kind === 'system'
       return { kind, id, name: isSystem ? 'Offing itself' : `${kind} ${id}`, code: isSystem ? 'SYSTEM' : '' }
     },
     isStale(limit, state, now) {
       const last = state?.lastWindowEndsAt ?? null
-      const staleAfter = stationOf(limit)?.staleAfterSeconds ?? Infinity
+      // A place may be fed by any station: it is stale when the most patient of them would be.
+      const staleAfter = stationOf(limit)?.staleAfterSeconds ?? (placeOf(limit) ? longest : null) ?? Infinity
       return limit.limitClass === 'wave' && last !== null && now.getTime() - last.getTime() > staleAfter * 1000
     },
   }

@@ -28,7 +28,7 @@ export interface LimitInForce {
   isOutOfService: boolean
   subjectName: string
   subjectCode: string
-  /** Of the station: its limits are suppressed by design while it is not active. */
+  /** Of the station, or of a place that is retired: limits are suppressed by design while it is not active. */
   stationState: 'active' | 'maintenance' | 'retired' | null
   staleAfterSeconds: number | null
 }
@@ -68,13 +68,18 @@ function contentOf(sequelize: Sequelize, row: StoredLimit): Content {
   return content
 }
 
+/** A place may be fed by any station: it is stale when the most patient of them would be. */
+const longestStale = 'SELECT MAX(staleAfterSeconds) FROM stations WHERE retiredAt IS NULL'
+
 const selected = `
   SELECT l.id AS limitId, l.subjectKind, l.subjectId, l.limitClass, l.outOfServiceAt, v.id AS versionId, v.title,
     v.condition, v.priority, v.steps, v.schedule, v.toCheck, v.isPublished,
-    COALESCE(s.name, 'Offing itself') AS subjectName, COALESCE(s.code, 'SYSTEM') AS subjectCode,
-    s.state AS stationState, s.staleAfterSeconds
+    COALESCE(s.name, p.name, 'Offing itself') AS subjectName, COALESCE(s.code, p.code, 'SYSTEM') AS subjectCode,
+    COALESCE(s.state, IF(p.retiredAt IS NULL, NULL, 'retired')) AS stationState,
+    COALESCE(s.staleAfterSeconds, IF(p.id IS NULL, NULL, (${longestStale}))) AS staleAfterSeconds
   FROM limits l JOIN limitVersions v ON v.id = l.currentVersionId
-    LEFT JOIN stations s ON l.subjectKind = 'station' AND s.id = l.subjectId`
+    LEFT JOIN stations s ON l.subjectKind = 'station' AND s.id = l.subjectId
+    LEFT JOIN places p ON l.subjectKind = 'place' AND p.id = l.subjectId`
 
 /** `which` is a condition on `l`; retired limits are left out. By id, the order in which they are locked. */
 export async function limitsInForce(
