@@ -20,17 +20,19 @@ const usedByAll = 'bus|audit|watchLog|problems|passwords|transaction'
 /**
  * Services whose writes share a transaction with others: an imported file is stored with the record of it, a leased
  * e-mail with its link, a step of an escalation with its e-mail, an invitation with its e-mail, a session with the
- * code that opened it.
+ * code that opened it, a deployment under the lock of its station, an order to take a file in with the work of doing so.
  */
 const together = {
   imports: 'readings',
   deliveries: 'receipts|people',
+  deployments: 'stationSetUp',
   escalations: 'messages',
   alerts: 'limits',
   limits: 'alerts',
   notices: 'messages',
   people: 'messages|sessions|secondFactor',
   sessions: 'secondFactor',
+  uploads: 'longJobs',
 }
 
 const serviceRules = [

@@ -161,6 +161,7 @@ export const changes = (action: Action): boolean =>
 export function actionOfRoom(room: string): Action | null {
   if (room === 'stations' || /^(station|traces):\d+$/.test(room)) return 'stations.read'
   if (room === 'system') return 'jobs.read'
+  if (room === 'connections') return 'stationKeys.read'
   if (room === 'alerts') return 'alerts.read'
   if (room === 'places' || /^place:\d+$/.test(room)) return 'places.read'
   if (room === 'limits') return 'limits.read'

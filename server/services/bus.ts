@@ -5,6 +5,7 @@
 import { EventEmitter } from 'node:events'
 import type { LongJobView } from '../../shared/schemas/longJob.ts'
 import type { TracesChunk } from '../../shared/schemas/station.ts'
+import type { ConnectionAttempt } from '../../shared/schemas/stationSetUpLink.ts'
 
 export interface News {
   /** Durable readings of a station, newest end in milliseconds since 1970 UTC. */
@@ -19,6 +20,8 @@ export interface News {
   'person.changed': { personId: number }
   /** A station was made, changed, retired or restored; its settings or its array. */
   'station.changed': { stationId: number }
+  /** Somebody tries to connect as a station, or how far it came changed. */
+  'connection.changed': ConnectionAttempt
   /** A key was revoked. */
   'stationKey.revoked': { stationId: number; keyId: number }
   'job.progressed': LongJobView

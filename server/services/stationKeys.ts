@@ -1,5 +1,6 @@
 /** Keys by which stations prove themselves: `prefix.secret`, shown once, hashed at rest. */
 import { createHash, randomBytes, timingSafeEqual } from 'node:crypto'
+import { Op } from 'sequelize'
 import type { Transaction } from 'sequelize'
 import type { z } from 'zod'
 import type { issuedStationKey, stationKeyView } from '../../shared/schemas/station.ts'
@@ -57,6 +58,36 @@ export async function issueStationKey(
   return within ? issue(within) : inTransaction(parts.sequelize, issue)
 }
 
+/** A new key beside those that are valid now, which end after the overlap. */
+export async function rotateStationKeys(
+  parts: Pick<Parts, 'sequelize' | 'clock' | 'bus'>,
+  { stationId, overlapMinutes, personId }: { stationId: number; overlapMinutes: number; personId: number },
+): Promise<IssuedStationKey> {
+  const until = new Date(parts.clock.now().getTime() + overlapMinutes * 60_000)
+  const { issued, ended } = await inTransaction(parts.sequelize, async (transaction) => {
+    const issued = await issueStationKey(parts, { stationId, validUntil: null, personId }, transaction)
+    const others = await StationKey.findAll({
+      where: {
+        stationId,
+        id: { [Op.ne]: issued.id },
+        revokedAt: null,
+        [Op.or]: [{ validUntil: null }, { validUntil: { [Op.gt]: until } }],
+      },
+      lock: transaction.LOCK.UPDATE,
+      transaction,
+    })
+    for (const key of others) {
+      const before = { validUntil: key.validUntil }
+      await key.update({ validUntil: until }, { transaction })
+      const change = { personId, action: 'stationKey.end', entity: 'stationKey', entityId: key.id, before }
+      await recordAudit(parts, { ...change, after: { stationId, validUntil: until } }, transaction)
+    }
+    return { issued, ended: others.map(({ id }) => id) }
+  })
+  if (overlapMinutes === 0) for (const keyId of ended) parts.bus.publish('stationKey.revoked', { stationId, keyId })
+  return issued
+}
+
 export async function listStationKeys(stationId: number): Promise<StationKeyView[]> {
   if (!(await Station.findByPk(stationId))) throw notFound('station', stationId)
   const keys = await StationKey.findAll({ where: { stationId }, order: [['id', 'ASC']] })
@@ -92,19 +123,41 @@ export interface KeyHolder {
   validUntil: Date | null
 }
 
-/** Whose key this is; null for one that is unknown, revoked or past its date. `key` is `prefix.secret`. */
-export async function holderOfKey({ clock }: Pick<Parts, 'clock'>, key: string): Promise<KeyHolder | null> {
-  const [, prefix, secret] = /^([\w-]{1,16})\.([\w-]{1,100})$/.exec(key) ?? []
-  if (prefix === undefined || secret === undefined) return null
-  const known = await StationKey.findOne({ where: { prefix } })
-  if (!known || !timingSafeEqual(known.secretHash, hashOf(secret))) return null
+export interface ExaminedKey {
+  state: 'valid' | 'unknown' | 'revoked' | 'expired' | 'missing'
+  /** As it stands in the list of keys; null: none was sent. */
+  prefix: string | null
+  /** Whose key begins like this; null where none does. */
+  stationId: number | null
+  /** Null for a key that opens nothing. */
+  holder: KeyHolder | null
+}
+
+/** Whose key this is and whether it opens anything. `key` is `prefix.secret`. */
+export async function examineKey({ clock }: Pick<Parts, 'clock'>, key: string): Promise<ExaminedKey> {
+  const [, prefix = '', secret = ''] = /^([\w-]{1,16})\.([\w-]{1,100})$/.exec(key) ?? []
+  const known = prefix === '' ? null : await StationKey.findOne({ where: { prefix } })
+  const shut = (state: ExaminedKey['state']): ExaminedKey => ({
+    state,
+    prefix: prefix === '' ? key.slice(0, 8) || null : prefix,
+    stationId: known?.stationId ?? null,
+    holder: null,
+  })
+  if (key === '') return shut('missing')
+  if (!known || !timingSafeEqual(known.secretHash, hashOf(secret))) return shut('unknown')
   const now = clock.now()
-  if (known.revokedAt || (known.validUntil && known.validUntil <= now)) return null
+  if (known.revokedAt) return shut('revoked')
+  if (known.validUntil && known.validUntil <= now) return shut('expired')
   if (!known.lastUsedAt || now.getTime() - known.lastUsedAt.getTime() > useNotedEveryMs) {
     await known.update({ lastUsedAt: now })
   }
-  return { keyId: known.id, stationId: known.stationId, validUntil: known.validUntil }
+  const { id: keyId, stationId, validUntil } = known
+  return { state: 'valid', prefix, stationId, holder: { keyId, stationId, validUntil } }
 }
+
+/** Whose key this is; null for one that is unknown, revoked or past its date. */
+export const holderOfKey = async (parts: Pick<Parts, 'clock'>, key: string): Promise<KeyHolder | null> =>
+  (await examineKey(parts, key)).holder
 
 const presentKey = (key: StationKey): StationKeyView => ({
   id: key.id,

@@ -7,7 +7,8 @@ import { heartbeatSeconds, maxFrameBytes, telemetryClose, telemetryProtocol } fr
 import type { Parts } from '../config/parts.ts'
 import { createReadingStore, noteConnected } from '../services/readings.ts'
 import type { ReadingStore } from '../services/readings.ts'
-import { holderOfKey } from '../services/stationKeys.ts'
+import { forgetConnections, noteAttempt } from '../services/connections.ts'
+import { examineKey } from '../services/stationKeys.ts'
 import { Connection } from './telemetry/connection.ts'
 import { createPace } from './telemetry/pace.ts'
 import type { Pace } from './telemetry/pace.ts'
@@ -38,6 +39,7 @@ export async function startTelemetry(options: TelemetryOptions): Promise<Telemet
   const { bus, clock, logger, upgrades, heartbeatMs = heartbeatSeconds * 1000 } = options
   const { betweenCommitsMs } = options
   const store = await createReadingStore({ bus, clock, logger, betweenCommitsMs })
+  forgetConnections()
   const sockets = new WebSocketServer({ noServer: true, maxPayload: maxFrameBytes, perMessageDeflate: false })
   const connections = new Map<WebSocket, Connection>()
   const streaming = new Map<number, StreamingStation>()
@@ -66,12 +68,13 @@ export async function startTelemetry(options: TelemetryOptions): Promise<Telemet
     if (!offered.includes(telemetryProtocol)) return refuseUpgrade(socket, 400)
     if (sockets.clients.size >= mostConnections) return refuseUpgrade(socket, 503)
     sockets.handleUpgrade(request, socket, head, (websocket) => {
-      void serve(websocket, request.headers.authorization ?? '')
+      void serve(websocket, request.headers.authorization ?? '', request.socket.remoteAddress ?? 'unknown')
     })
   }
 
   /** Messages wait their turn while the one before is worked on, and so does the sender. */
-  async function serve(socket: WebSocket, authorization: string): Promise<void> {
+  async function serve(socket: WebSocket, authorization: string, remoteAddress: string): Promise<void> {
+    const attempt = noteAttempt({ clock, bus }, remoteAddress)
     let turn: Promise<void> = Promise.resolve()
     let connection: Connection | null = null
     let early = 0
@@ -85,8 +88,9 @@ export async function startTelemetry(options: TelemetryOptions): Promise<Telemet
       if (!connection?.isStreaming) socket.close(telemetryClose.malformed, 'no hello within 10 s')
     }, helloWithinMs)
     socket.on('error', () => socket.terminate())
-    socket.on('close', (code) => {
+    socket.on('close', (code, reason) => {
       clearTimeout(hurry)
+      attempt.ended(code, connection?.closeReason ?? reason.toString())
       if (connection) forget(socket, connection, code)
     })
     socket.on('message', (message, isBinary) => {
@@ -97,9 +101,10 @@ export async function startTelemetry(options: TelemetryOptions): Promise<Telemet
     })
     inTurn(async () => {
       const [, key = ''] = /^Bearer (\S{1,200})$/.exec(authorization) ?? []
-      const holder = await holderOfKey({ clock }, key)
-      if (!holder) return socket.close(telemetryClose.keyRefused, 'the key is unknown or revoked')
-      connection = new Connection(socket, holder, around)
+      const examined = await examineKey({ clock }, key)
+      attempt.keyExamined(examined)
+      if (!examined.holder) return socket.close(telemetryClose.keyRefused, 'the key is unknown or revoked')
+      connection = new Connection(socket, examined.holder, around, attempt)
       connections.set(socket, connection)
     })
     return turn

@@ -10,7 +10,7 @@
  *   GET  /api/stations/:stationId/connections          action stationKeys.read     -> connectionAttempt[], newest first, at most 20
  *   GET  /api/connections                              action stationKeys.read     -> connectionAttempt[] of all, also with unknown keys
  *
- * Live: kind `connection` in room `system`, body connectionAttempt, at most once a second an attempt.
+ * Live: kind `connection` in room `connections`, body connectionAttempt, at most once a second an attempt.
  */
 import { z } from 'zod'
 import { linkView } from './station.ts'

@@ -1,8 +1,10 @@
 /** Live: messages between the server and a browser on `/live` (session cookie and Origin checked before the upgrade). */
 import { z } from 'zod'
 
-/** Rooms: `stations`, `station:ID`, `traces:ID`, `system`, `alerts`, `limits`, `messages`, `places`, `place:ID`; watch joins with its feature. */
-export const roomName = z.string().regex(/^(stations|system|alerts|limits|messages|places|(station|traces|place):[1-9][0-9]{0,8})$/)
+/** Rooms: `stations`, `station:ID`, `traces:ID`, `system`, `connections`, `alerts`, `limits`, `messages`, `places`, `place:ID`; watch joins with its feature. */
+export const roomName = z
+  .string()
+  .regex(/^(stations|system|connections|alerts|limits|messages|places|(station|traces|place):[1-9][0-9]{0,8})$/)
 
 export const liveClientMessage = z.discriminatedUnion('type', [
   z.strictObject({ type: z.literal('subscribe'), rooms: z.array(roomName).min(1).max(100) }),
@@ -44,6 +46,8 @@ export const liveEventKinds = {
   traces: 'traces',
   /** room `system`; body: longJobView */
   job: 'job',
+  /** room `connections`; body: connectionAttempt */
+  connection: 'connection',
   /** room `alerts`; body: alertView */
   alert: 'alert',
   /** room `limits`; body: limitView */

@@ -3,6 +3,7 @@ import { currentEstimate, seriesPoint, stationView, tracesChunk } from '../../..
 import { alertView } from '../../../shared/schemas/alert.ts'
 import { limitView } from '../../../shared/schemas/limit.ts'
 import { messageView } from '../../../shared/schemas/message.ts'
+import { connectionAttempt } from '../../../shared/schemas/stationSetUpLink.ts'
 import { liveEventKinds as kinds } from '../../../shared/wire/live.ts'
 import type { Parts } from '../../config/parts.ts'
 import { presentStation } from '../../presenters/station.ts'
@@ -104,6 +105,9 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
       if (clock.monotonic() - (toldAt.get(stationId) ?? -Infinity) >= stationEveryMs) tellStation(stationId)
     }),
     bus.subscribe('estimate.saved', ({ stationId, windowEndsAt }) => tellEstimate(stationId, windowEndsAt)),
+    bus.subscribe('connection.changed', (attempt) =>
+      hub.publish('connections', kinds.connection, connectionAttempt.parse(attempt), attempt.id),
+    ),
     bus.subscribe('job.progressed', (job) => hub.publish('system', kinds.job, job, job.id)),
   ]
 

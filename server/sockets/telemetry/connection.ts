@@ -5,9 +5,10 @@ import { heartbeatSeconds, maxFrameBytes, telemetryClose } from '../../../shared
 import type { FrameMessage, HelloMessage, RefusalCode, TelemetryServerMessage } from '../../../shared/wire/telemetry.ts'
 import { loadStationFacts, noteClockOffset, packFrame } from '../../services/readings.ts'
 import type { OpenStream, Outcome, StationFacts } from '../../services/readings.ts'
+import type { Attempt } from '../../services/connections.ts'
 import type { KeyHolder } from '../../services/stationKeys.ts'
 import { createClockWatch } from './clockWatch.ts'
-import { differenceOfHello } from './fitHello.ts'
+import { differenceOfHello, differencesOfHello } from './fitHello.ts'
 import type { Pace } from './pace.ts'
 import { placeFrame } from './placeFrame.ts'
 import { readMessage } from './readMessage.ts'
@@ -26,6 +27,9 @@ interface Streaming {
 
 export class Connection {
   readonly key: KeyHolder
+  /** What it was closed for, in full; null while it stands. */
+  closeReason: string | null = null
+  private readonly attempt: Attempt
   private readonly socket: WebSocket
   private readonly around: Surroundings
   private readonly pace: Pace
@@ -36,8 +40,9 @@ export class Connection {
   private heldBack = false
   private answered = true
 
-  constructor(socket: WebSocket, key: KeyHolder, around: Surroundings) {
+  constructor(socket: WebSocket, key: KeyHolder, around: Surroundings, attempt: Attempt) {
     this.socket = socket
+    this.attempt = attempt
     this.key = key
     this.around = around
     this.pace = around.paceOf(key.stationId)
@@ -53,6 +58,7 @@ export class Connection {
   }
 
   close(code: number, reason: string): void {
+    this.closeReason ??= reason
     // A reason travels in a control frame of at most 125 bytes, two of which are the code.
     this.socket.close(
       code,
@@ -83,18 +89,26 @@ export class Connection {
     const { clock, store } = this.around
     const arrivedAt = clock.now().getTime()
     const station = await loadStationFacts(this.stationId, clock.now())
+    const { station: code, software, sampleRate, sensors } = hello
+    const clockOffsetSeconds = (arrivedAt - Date.parse(hello.sentAt)) / 1000
+    const differences = station ? differencesOfHello(hello, station) : []
+    this.attempt.heard(
+      { station: code, software, sampleRate, sensors, clockOffsetSeconds },
+      differences,
+      station?.code ?? null,
+    )
     if (!station || station.code !== hello.station) {
       return this.close(telemetryClose.keyRefused, `this key is not that of station ${hello.station}`)
     }
     if (station.state === 'retired') return this.close(telemetryClose.retired, 'the station is retired')
-    const difference = differenceOfHello(hello, station)
-    if (difference !== null) return this.close(telemetryClose.helloDoesNotFit, difference)
+    if (differences.length > 0) return this.close(telemetryClose.helloDoesNotFit, differences.join('; '))
     const stream = await store.streams.open(station.id, hello.stream)
     if (this.socket.readyState !== this.socket.OPEN) return
     this.malformed = 0
     this.streaming = { hello, station, stream }
     this.clockWatch.note(Date.parse(hello.sentAt), arrivedAt)
     this.around.welcomed(this)
+    this.attempt.welcomed()
     this.send({
       type: 'welcome',
       resumeFrom: stream.ledger.contiguous + 1,
@@ -106,6 +120,7 @@ export class Connection {
 
   private takeMalformed(seq: number | null, detail: string, message: Buffer): void {
     this.malformed += 1
+    if (seq === null || !this.streaming) this.attempt.refused('malformed', detail)
     if (seq !== null && this.streaming) this.putAside(seq, null, { code: 'malformed', detail }, message, this.streaming)
     else this.send({ type: 'refused', seq, code: 'malformed', detail })
     if (this.malformed >= malformedInARow) this.close(telemetryClose.malformed, `malformed: ${detail}`)
@@ -125,6 +140,14 @@ export class Connection {
       return this.close(telemetryClose.malformed, 'too many holes in the sequence: begin a new stream')
     }
     this.watchClock(sentAt, arrivedAt)
+    this.attempt.framed({
+      seq: frame.seq,
+      values: frame.sensors.map((sensor, n) => ({ sensor, value: frame.values[n]?.at(-1) ?? null })),
+      start,
+      arrivedAt,
+      samples: frame.values[0]?.length ?? 0,
+      end: start + seconds * 1000,
+    })
     const placed = placeFrame(frame, streaming.station, arrivedAt)
     if ('code' in placed) return this.putAside(frame.seq, start, placed, message, streaming)
     store.enqueue({
@@ -150,6 +173,7 @@ export class Connection {
     streaming: Streaming,
   ): void {
     const { clock, store } = this.around
+    this.attempt.refused(code, detail)
     store.enqueue({
       kind: 'refused',
       station: streaming.station,
@@ -174,6 +198,7 @@ export class Connection {
       if (this.streaming) this.around.store.streams.forget(this.streaming.stream)
       return this.close(telemetryClose.tryAgainLater, 'the readings could not be stored')
     }
+    if (outcome.kind === 'conflict') this.attempt.refused('conflict', outcome.detail)
     if (outcome.kind === 'conflict') this.send({ type: 'refused', seq, code: 'conflict', detail: outcome.detail })
     if (this.ackDue === null) queueMicrotask(() => this.acknowledge())
     this.ackDue = durableSeq
@@ -182,7 +207,9 @@ export class Connection {
   private acknowledge(): void {
     const seq = this.ackDue
     this.ackDue = null
-    if (seq !== null) this.send({ type: 'ack', seq })
+    if (seq === null) return
+    this.attempt.acknowledged(seq)
+    this.send({ type: 'ack', seq })
   }
 
   private watchClock(sentAt: number, arrivedAt: number): void {
