@@ -175,6 +175,11 @@ export const estimateResult = z.object({
   energyFlux: z.number().nullable(),
   /** Surge (infragravity) height 4 sqrt(m0) over 0.004 to 0.04 Hz, m; null when no hour of readings stands behind it. */
   surgeHeight: z.number().nullable(),
+  /** Of the same hour: Hz, rising and even, and m²/Hz. */
+  surgeSpectrum: z
+    .object({ frequency: z.array(z.number()), density: z.array(z.number()), degreesOfFreedom: z.number() })
+    .nullable()
+    .default(null),
   /** Still water depth used, m, and where it came from. */
   waterDepth: z.number(),
   waterDepthSource: z.enum(['level', 'tide', 'nominal']),

@@ -1,10 +1,11 @@
 /** The answer before anything is known of the waves, and the answer that says why nothing is. */
 import type { EstimateResult, UnresolvedReason } from '../schemas/estimate.ts'
 import type { PreparedArray } from './preparedArray.ts'
-import { surgeHeight } from './surge.ts'
+import { longWaves } from './surge.ts'
 import type { ArrayWindow } from './window.ts'
 
 export function blankResult(window: ArrayWindow, prepared: PreparedArray): EstimateResult {
+  const surge = window.surge ? longWaves(window.surge.level, window.surge.sampleRate) : null
   return {
     resolved: false,
     reason: null,
@@ -15,7 +16,8 @@ export function blankResult(window: ArrayWindow, prepared: PreparedArray): Estim
     meanPeriod: null,
     energyPeriod: null,
     energyFlux: null,
-    surgeHeight: window.surge ? surgeHeight(window.surge.level, window.surge.sampleRate) : null,
+    surgeHeight: surge?.height ?? null,
+    surgeSpectrum: surge?.spectrum ?? null,
     waterDepth: window.waterDepth,
     waterDepthSource: window.waterDepthSource,
     completeness: prepared.sensors.reduce((sum, s) => sum + s.completeness, 0) / Math.max(1, prepared.sensors.length),

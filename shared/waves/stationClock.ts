@@ -56,6 +56,7 @@ export function withoutFigures(result: Verdicts): EstimateResult {
     energyPeriod: null,
     energyFlux: null,
     surgeHeight: null,
+    surgeSpectrum: null,
     systems: [],
     traceSpeeds: [],
     subArrays: [],

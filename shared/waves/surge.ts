@@ -1,6 +1,6 @@
 /**
  * Height of the long waves (surge, infragravity): H = 4 √m₀ over 0.004 to 0.04 Hz of the mean level of an hour or more, tide taken out
- * by a cubic of least squares. Welch's spectra of segments of 1024 s.
+ * by a cubic of least squares, and its spectrum. Welch's spectra of segments of 1024 s.
  */
 import { bridgeGaps } from './bridgeGaps.ts'
 import { segmentSpectra, welchDensity } from './spectrum.ts'
@@ -15,8 +15,15 @@ const leastSeconds = 3600
 const longestGap = 6
 const leastPresent = 0.95
 
-/** Metres; null for a record that is too short or has too many or too long gaps. `level` in metres, missing samples NaN. */
-export function surgeHeight(level: Float64Array, sampleRate: number): number | null {
+export interface LongWaves {
+  /** H = 4 √m₀ of the band, m. */
+  height: number
+  /** One-sided, from the bin below the band to the one above it. */
+  spectrum: { frequency: number[]; density: number[]; degreesOfFreedom: number }
+}
+
+/** Null for a record that is too short or has too many or too long gaps. `level` in metres, missing samples NaN. */
+export function longWaves(level: Float64Array, sampleRate: number): LongWaves | null {
   if (level.length < leastSeconds * sampleRate) return null
   const flat = withoutCubic(level)
   const missing = bridgeGaps(flat, Math.round(longestGap * sampleRate))
@@ -25,13 +32,28 @@ export function surgeHeight(level: Float64Array, sampleRate: number): number | n
   const length = 2 ** Math.round(Math.log2(segmentSeconds * sampleRate))
   const spectra = segmentSpectra([flat], sampleRate, length)
   const density = welchDensity(spectra, 0)
+  const spectrum: LongWaves['spectrum'] = {
+    frequency: [],
+    density: [],
+    degreesOfFreedom: Math.round(2 * effectiveSegments(spectra.segments)),
+  }
   let m0 = 0
   for (let bin = 0; bin < density.length; bin++) {
     const frequency = bin * spectra.step
     if (frequency >= surgeBand.from && frequency <= surgeBand.to) m0 += density[bin] * spectra.step
+    if (frequency < surgeBand.from - spectra.step || frequency > surgeBand.to + spectra.step) continue
+    spectrum.frequency.push(Number(frequency.toPrecision(6)))
+    spectrum.density.push(Number(density[bin].toPrecision(4)))
   }
-  return 4 * Math.sqrt(m0)
+  return { height: 4 * Math.sqrt(m0), spectrum }
 }
+
+/** Metres; null as with `longWaves`. */
+export const surgeHeight = (level: Float64Array, sampleRate: number): number | null =>
+  longWaves(level, sampleRate)?.height ?? null
+
+/** Independent ones among Hann segments that overlap by half: K / (1 + 2 (K − 1)/K · 1/36) (Welch 1967). */
+const effectiveSegments = (segments: number): number => segments / (1 + (2 * (segments - 1)) / segments / 36)
 
 /** A new series without its cubic of least squares; missing samples stay missing. */
 function withoutCubic(series: Float64Array): Float64Array {

@@ -53,6 +53,7 @@ function answerTo({ window, known, windowEndsAt }: EstimateTask): EstimateAnswer
     energyPeriod: null,
     energyFlux: null,
     surgeHeight: window.surge ? 0.01 : null,
+    surgeSpectrum: null,
     waterDepth: window.waterDepth,
     waterDepthSource: window.waterDepthSource,
     completeness: present / all,

@@ -18,6 +18,7 @@ const answer: EstimateAnswer = {
     energyPeriod: null,
     energyFlux: null,
     surgeHeight: null,
+    surgeSpectrum: null,
     waterDepth: 10,
     waterDepthSource: 'nominal',
     completeness: 1,

@@ -3,7 +3,7 @@ import { join } from 'node:path'
 import { describe, expect, it } from 'vitest'
 import { z } from 'zod'
 import { estimate } from '../../../shared/waves/estimate.ts'
-import { surgeHeight } from '../../../shared/waves/surge.ts'
+import { longWaves as longWavesOf, surgeHeight } from '../../../shared/waves/surge.ts'
 import { fiveSensors, spreadSea } from './spreadSea.ts'
 
 /** Made by surgeReference.py with scipy. */
@@ -31,6 +31,21 @@ describe('the surge height', () => {
     expect(surgeHeight(level(1), 1)).toBeCloseTo(reference.surge, 9)
     const put = 4 * Math.sqrt(longWaves.reduce((sum, [, a]) => sum + (a * a) / 2, 0))
     expect(Math.abs((surgeHeight(level(1), 1) ?? 0) / put - 1)).toBeLessThan(0.03)
+  })
+
+  it('is the area under its own spectrum, which has a peak at each sine put in', () => {
+    const spectrum = longWavesOf(level(1), 1)?.spectrum
+    if (!spectrum) throw new Error('no spectrum')
+    const step = spectrum.frequency[1] - spectrum.frequency[0]
+    const inside = spectrum.density.filter((_, i) => spectrum.frequency[i] >= 0.004 && spectrum.frequency[i] <= 0.04)
+    const m0 = inside.reduce((sum, density) => sum + density * step, 0)
+    expect(4 * Math.sqrt(m0)).toBeCloseTo(reference.surge, 3)
+    for (const [f] of longWaves) {
+      const near = spectrum.density.filter((_, i) => Math.abs(spectrum.frequency[i] - f) < 1.5 * step)
+      const far = spectrum.density.filter((_, i) => Math.abs(spectrum.frequency[i] - f - 0.0045) < step)
+      expect(Math.max(...near)).toBeGreaterThan(2 * Math.min(...far))
+    }
+    expect(spectrum.degreesOfFreedom).toBe(11)
   })
 
   it('of tide and sea alone is next to nothing, as with scipy', () => {
