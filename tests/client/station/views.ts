@@ -14,6 +14,7 @@ export const detail = (changes: Partial<EstimateResult> = {}): EstimateResult =>
   energyPeriod: 10.2,
   energyFlux: 41_000,
   surgeHeight: null,
+  surgeSpectrum: null,
   waterDepth: 14.2,
   waterDepthSource: 'tide',
   completeness: 1,
