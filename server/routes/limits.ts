@@ -1,12 +1,12 @@
 import { z } from 'zod'
 import { presentQuantity, quantities } from '../../shared/alerts/quantities.ts'
 import { shelving, withReason, withReasonAndConsent } from '../../shared/schemas/alert.ts'
-import { backTestQuestion, backTestView, limitChange, limitDraft, limitView, limitWithHistory, quantityView } from '../../shared/schemas/limit.ts' // prettier-ignore
+import { backTestQuestion, backTestView, limitChange, limitDraft, limitSubject, limitView, limitWithHistory, quantityView } from '../../shared/schemas/limit.ts' // prettier-ignore
 import type { Parts } from '../config/parts.ts'
 import { officeOf } from '../presenters/office.ts'
 import { resetLimit, returnToService, shelveLimit, takeOutOfService, unshelveLimit } from '../services/alerts.ts'
 import type { Office } from '../services/alerts.ts'
-import { askBackTest, changeLimit, createLimit, listLimits, readLimit, readLimitHistory, retireLimit } from '../services/limits.ts' // prettier-ignore
+import { askBackTest, changeLimit, createLimit, listLimits, listSubjects, readLimit, readLimitHistory, retireLimit } from '../services/limits.ts' // prettier-ignore
 import { versionIn } from './ifMatch.ts'
 import { idInPath } from './parameters.ts'
 import { consentDeadline, consentIn } from './secondPerson.ts'
@@ -66,6 +66,14 @@ export const limitRoutes = (parts: Parts): Route[] => [
     summary: 'Everything a limit may be set on',
     answer: z.array(quantityView),
     handle: async () => quantities.map(presentQuantity),
+  }),
+  route({
+    method: 'get',
+    path: '/api/limitSubjects',
+    action: 'limits.read',
+    summary: 'Stations, places and the program itself, each with the quantities that a limit may be set on',
+    answer: z.array(limitSubject),
+    handle: () => listSubjects(),
   }),
   route({
     method: 'post',

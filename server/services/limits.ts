@@ -7,6 +7,8 @@ import { Limit, LimitVersion } from '../models/index.ts'
 import { namesOf, presentLimits, presentVersion } from './limits/present.ts'
 import { notFound } from './problems.ts'
 
+export { listSubjects } from './limits/subjects.ts'
+
 export { askBackTest } from './limits/backTest.ts'
 export { addLimit, changeLimit, createLimit, retireLimit, staleContent } from './limits/change.ts'
 export type { NewLimit } from './limits/change.ts'

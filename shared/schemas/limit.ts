@@ -235,6 +235,10 @@ export const subjectView = z.object({
 })
 export type SubjectView = z.infer<typeof subjectView>
 
+/** What a limit may be set on. */
+export const limitSubject = subjectView.extend({ quantities: z.array(quantityKey) })
+export type LimitSubject = z.infer<typeof limitSubject>
+
 /** Why a limit was not judged at the newest moment. `settling`: the program has just begun, its stations are catching up. */
 export const notJudgedReason = z.enum(['stale', 'failed', 'noValue', 'settling', 'outOfService', 'neverYet'])
 export type NotJudgedReason = z.infer<typeof notJudgedReason>

@@ -1,7 +1,14 @@
 import { z } from 'zod'
 import type { ReasonAndConsent } from '../../shared/schemas/alert.ts'
-import { backTestView, limitView, limitWithHistory } from '../../shared/schemas/limit.ts'
-import type { BackTestQuestion, BackTestView, LimitChange, LimitDraft, LimitView } from '../../shared/schemas/limit.ts'
+import { backTestView, limitSubject, limitView, limitWithHistory } from '../../shared/schemas/limit.ts'
+import type {
+  BackTestQuestion,
+  BackTestView,
+  LimitChange,
+  LimitDraft,
+  LimitSubject,
+  LimitView,
+} from '../../shared/schemas/limit.ts'
 import { request } from './request.ts'
 
 export type LimitWithHistory = z.infer<typeof limitWithHistory>
@@ -10,6 +17,9 @@ export const readLimits = (): Promise<LimitView[]> => request('GET', '/api/limit
 
 export const readLimit = (id: number): Promise<LimitWithHistory> =>
   request('GET', `/api/limits/${id}`, limitWithHistory)
+
+/** What a limit may be set on. */
+export const readSubjects = (): Promise<LimitSubject[]> => request('GET', '/api/limitSubjects', z.array(limitSubject))
 
 export const createLimit = (draft: LimitDraft): Promise<LimitView> => request('POST', '/api/limits', limitView, draft)
 

@@ -1,9 +1,9 @@
 /** Limits and their states. REST answers and live events pass through one function, `apply`. */
 import { defineStore } from 'pinia'
-import { computed, ref, shallowReactive } from 'vue'
+import { computed, ref, shallowReactive, shallowRef } from 'vue'
 import type { ReasonAndConsent } from '../../shared/schemas/alert.ts'
 import { limitView } from '../../shared/schemas/limit.ts'
-import type { LimitChange, LimitDraft, LimitVersionView, LimitView } from '../../shared/schemas/limit.ts'
+import type { LimitChange, LimitDraft, LimitSubject, LimitVersionView, LimitView } from '../../shared/schemas/limit.ts'
 import * as api from '../api/limits.ts'
 import { useLive } from './live.ts'
 
@@ -87,5 +87,24 @@ export const useLimits = defineStore('limits', () => {
     held.delete(id)
   }
 
-  return { loaded, all, byId, history, apply, watchAll, open, create, change, retire, backTest: api.backTest }
+  const subjects = shallowRef<LimitSubject[]>([])
+  async function readSubjects(): Promise<void> {
+    subjects.value = await api.readSubjects()
+  }
+
+  return {
+    loaded,
+    all,
+    subjects,
+    readSubjects,
+    byId,
+    history,
+    apply,
+    watchAll,
+    open,
+    create,
+    change,
+    retire,
+    backTest: api.backTest,
+  }
 })

@@ -112,7 +112,7 @@ describe('a back-test', () => {
     expect(await SeriesDay.count({ where: ofDay })).toBe(all)
   })
 
-  it('of data health, of a place or of a station that is not there is refused', async () => {
+  it('of data health, of a place or of a station that are not there, is refused', async () => {
     const stale = { kind: 'above', quantity: 'dataAge', raise: 900, clear: 900, riseOverSeconds: null }
     const condition = { ...plainCondition, comparisons: [stale] }
     await held.desk.post('/api/backTests').send(question({ condition })).expect(422)

@@ -2,10 +2,10 @@
 import type { Transaction } from 'sequelize'
 import { quantityOf } from '../../../shared/alerts/quantities.ts'
 import type { LimitClass, LimitContent, SubjectKind } from '../../../shared/schemas/limit.ts'
-import { quantitiesOfKind } from '../../../shared/schemas/placeQuantity.ts'
 import type { PlaceKind } from '../../../shared/schemas/placeQuantity.ts'
 import { DistributionList, Place, Station } from '../../models/index.ts'
 import { invalidInput } from '../problems.ts'
+import { quantitiesOf } from './subjects.ts'
 
 /** As a fault names them. */
 const words: Record<PlaceKind, string> = {
@@ -25,10 +25,14 @@ export async function classOf(
   const faults: Faults = []
   const refuse = (path: string, message: string) => faults.push({ path, message })
   const limitClass = quantityOf(content.condition.comparisons[0].quantity).limitClass
+  const isPlace = subjectKind === 'place' && subjectId !== null
+  const place = isPlace ? await Place.findByPk(subjectId, { transaction }) : null
+  const told = quantitiesOf(subjectKind, place?.kind)
+  const named = place ? words[place.kind] : subjectKind === 'system' ? 'the system' : `a ${subjectKind}`
   for (const [index, comparison] of content.condition.comparisons.entries()) {
     const quantity = quantityOf(comparison.quantity)
     const path = `content.condition.comparisons.${index}`
-    if (!quantity.subjects.includes(subjectKind)) refuse(`${path}.quantity`, `is not a quantity of a ${subjectKind}`)
+    if (!told.includes(comparison.quantity)) refuse(`${path}.quantity`, `is not told of ${named}`)
     if (quantity.limitClass !== limitClass) refuse(`${path}.quantity`, 'must not mix waves and data health')
     if (quantity.isCircular !== (comparison.kind === 'sector')) refuse(`${path}.kind`, 'does not fit the quantity')
     if (comparison.kind === 'above' && comparison.riseOverSeconds !== null && !quantity.hasRise) {
@@ -45,16 +49,7 @@ export async function classOf(
     const station = await Station.findByPk(subjectId, { transaction })
     if (!station || station.retiredAt !== null) refuse('subjectId', 'is no station in service')
   }
-  if (subjectKind === 'place' && subjectId !== null) {
-    const place = await Place.findByPk(subjectId, { transaction })
-    if (!place || place.retiredAt) refuse('subjectId', 'is no place in service')
-    for (const [index, { quantity }] of content.condition.comparisons.entries()) {
-      const { ofPlace } = quantityOf(quantity)
-      const path = `content.condition.comparisons.${index}.quantity`
-      if (place && ofPlace && !quantitiesOfKind[place.kind].includes(ofPlace))
-        refuse(path, `is not told of ${words[place.kind]}`)
-    }
-  }
+  if (isPlace && (!place || place.retiredAt)) refuse('subjectId', 'is no place in service')
   const wanted = [...new Set(content.recipients.steps.flatMap(({ listIds }) => listIds))]
   const known =
     wanted.length === 0 ? 0 : await DistributionList.count({ where: { id: wanted, retiredAt: null }, transaction })

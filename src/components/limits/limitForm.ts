@@ -1,14 +1,7 @@
 /** The editor's own form of a limit, in the units people read, and its way from and to the contract. Pure. */
-import { quantities, quantityOf } from '../../../shared/alerts/quantities.ts'
+import { quantityOf } from '../../../shared/alerts/quantities.ts'
 import { limitContent } from '../../../shared/schemas/limit.ts'
-import type {
-  Comparison,
-  LimitContent,
-  Priority,
-  QuantityKey,
-  SubjectKind,
-  TimeSpan,
-} from '../../../shared/schemas/limit.ts'
+import type { Comparison, LimitContent, Priority, QuantityKey, TimeSpan } from '../../../shared/schemas/limit.ts'
 
 export interface ComparisonForm {
   quantity: QuantityKey
@@ -130,6 +123,15 @@ export function firstComparison(quantity: QuantityKey): ComparisonForm {
   const starts: Partial<Record<QuantityKey, [number, number]>> = {
     ...{ dataAge: [15, 14], usableSensors: [4, 4], diskFree: [10, 12], clockOffset: [1, 0.8], mailQueueAge: [10, 8] },
     ...{ arrayDisagreement: [0, 0], energyFlux: [40, 34] },
+    ...{
+      placeHeight: [2, 1.7],
+      crossSea: [1, 0.85],
+      alongSea: [1.5, 1.3],
+      overtopping: [1, 0.8],
+      longSwell: [0.08, 0.07],
+    },
+    ...{ largestVolume: [600, 500], breakerHeight: [1.5, 1.3], runUp: [1.5, 1.3], setUp: [0.3, 0.25] },
+    longshoreCurrent: [0.5, 0.4],
   }
   const isPeriod = /[pP]eriod$/.test(quantity)
   const isSpeed = /[sS]peed$/.test(quantity)
@@ -144,7 +146,8 @@ export function firstComparison(quantity: QuantityKey): ComparisonForm {
   }
 }
 
-export const quantitiesFor = (kind: SubjectKind) => quantities.filter((one) => one.subjects.includes(kind))
+/** In the order given. */
+export const quantitiesAmong = (told: QuantityKey[]) => told.map(quantityOf)
 
 export function formOf(content: LimitContent): LimitForm {
   const { condition, recipients } = content
