@@ -4,6 +4,7 @@ import { defineAbsence } from './absence.ts'
 import { defineAlert } from './alert.ts'
 import { defineAlertEvent } from './alertEvent.ts'
 import { defineAudit } from './audit.ts'
+import { defineAuditCheck } from './auditCheck.ts'
 import { defineAuxiliaryReading } from './auxiliaryReading.ts'
 import { defineClockOffset } from './clockOffset.ts'
 import { defineConflict } from './conflict.ts'
@@ -53,6 +54,7 @@ export { Absence } from './absence.ts'
 export { Alert } from './alert.ts'
 export { AlertEvent } from './alertEvent.ts'
 export { Audit } from './audit.ts'
+export { AuditCheck } from './auditCheck.ts'
 export { AuxiliaryReading } from './auxiliaryReading.ts'
 export { ClockOffset } from './clockOffset.ts'
 export { Conflict } from './conflict.ts'
@@ -103,6 +105,7 @@ const definitions = [
   defineAlert,
   defineAlertEvent,
   defineAudit,
+  defineAuditCheck,
   defineAuxiliaryReading,
   defineClockOffset,
   defineConflict,

@@ -13,11 +13,29 @@ import type { Parts } from '../config/parts.ts'
 import { SettingVersion } from '../models/index.ts'
 import { recordAudit } from './audit.ts'
 
+function isTimeZone(timeZone: string): boolean {
+  try {
+    new Intl.DateTimeFormat('en-GB', { timeZone })
+    return true
+  } catch {
+    return false
+  }
+}
+
 const monthsKept = z.number().int().min(1).max(1200).nullable()
+
+/** A line break could begin a header line of an e-mail. */
+const oneLine = z
+  .string()
+  .trim()
+  .regex(/^[^\p{Cc}"<>]*$/u, 'must be one line without quotation marks and angle brackets')
 
 /** Every group with the shape of its content. */
 const shapes = {
-  port: z.strictObject({ portName: z.string().min(1).max(80), timeZone: z.string().min(1).max(60) }),
+  port: z.strictObject({
+    portName: z.string().min(1).max(80),
+    timeZone: z.string().min(1).max(60).refine(isTimeZone, 'is not a zone of the IANA list, such as Atlantic/Azores'),
+  }),
   watch: z.strictObject({ leadStationId: z.number().int().nullable() }),
   cautions: z.strictObject({
     figures: z.string().min(20).max(400),
@@ -31,6 +49,10 @@ const shapes = {
     capSender: z.string().regex(/^[^\s,<&]{3,100}$/),
   }),
   people: z.strictObject({ administratorsNeedSecondFactor: z.boolean() }),
+  /** Whom to call here in an emergency: stands beside cautions, in e-mails and on the receipt page; empty: nothing stands there. */
+  contact: z.strictObject({ emergencyLine: oneLine.max(200) }),
+  /** Name before the address from which e-mails come; empty: as the configuration has it. */
+  sender: z.strictObject({ name: oneLine.max(80) }),
   placeCautions,
   beachFlags: flagSet,
   /** How long before its end the watch and its lists are told of a notice about to expire. */
@@ -56,14 +78,20 @@ const initial: Settings = {
   alerts: { asksSecondPerson: true, longestShelfHours: 8, capSender: 'duty@harbour.example' },
   mail: { heartbeatAt: '07:00', heartbeatListId: null },
   people: { administratorsNeedSecondFactor: false },
+  contact: { emergencyLine: '' },
+  sender: { name: '' },
   placeCautions: usualPlaceCautions,
   beachFlags: usualFlagSet,
   notices: { warnMinutes: 30 },
   retention: { readingBlocks: 25, stationHealthHours: 25, estimates: null, estimateDetails: 25 },
 }
 
+/** Shape and first content of every group, for those who list them all. */
+export const settingGroups = Object.keys(shapes) as SettingGroup[]
+export const initialSettings: Readonly<Settings> = initial
+
 type Shapes = { [Group in SettingGroup]: z.ZodType<Settings[Group]> }
-const shapeOf: Shapes = shapes
+export const shapeOf: Shapes = shapes
 
 /** What is in force now. */
 export async function settingInForce<Group extends SettingGroup>(

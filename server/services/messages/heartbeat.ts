@@ -67,6 +67,9 @@ interface Counts {
   limits: number
   open: number
   notOut: number
+  /** Of the audit: kept in a mailbox, it shows later whether rows were cut off its end. */
+  seal: number | null
+  sealHash: string | null
 }
 
 const plural = (count: number, one: string, many: string): string => `${count} ${count === 1 ? one : many}`
@@ -86,16 +89,20 @@ async function textOf(
             (SELECT COUNT(*) FROM limits WHERE retiredAt IS NULL AND outOfServiceAt IS NULL) AS limits,
             (SELECT COUNT(*) FROM alerts WHERE closedAt IS NULL AND isExercise = 0) AS open,
             (SELECT COUNT(*) FROM deliveries
-             WHERE state IN ('refused', 'givenUp', 'unknown') AND createdAt > :now - INTERVAL 1 DAY) AS notOut`,
+             WHERE state IN ('refused', 'givenUp', 'unknown') AND createdAt > :now - INTERVAL 1 DAY) AS notOut,
+            (SELECT MAX(sealNumber) FROM audits) AS seal,
+            (SELECT LOWER(HEX(hash)) FROM audits ORDER BY sealNumber DESC LIMIT 1) AS sealHash`,
     { now: new Date(now) },
     transaction,
   )
-  const { stations, current, limits, open, notOut } = counts ?? {
+  const { stations, current, limits, open, notOut, seal, sealHash } = counts ?? {
     stations: 0,
     current: 0,
     limits: 0,
     open: 0,
     notOut: 0,
+    seal: null,
+    sealHash: null,
   }
   return [
     `The watch program of ${portName} is running and sends e-mails: ${dateUtc(now)}, ${clockUtc(now)} UTC, ${clockLocal(now, timeZone)} local.`,
@@ -104,6 +111,7 @@ async function textOf(
     `Stations with a current estimate: ${current} of ${stations}.`,
     `Limits in service: ${limits}. Alerts open: ${open}.`,
     `E-mails of the last 24 h that did not go out: ${plural(notOut, 'e-mail', 'e-mails')}.`,
+    ...(seal && sealHash ? [`Newest seal of the audit: ${seal}, ${sealHash.slice(0, 16)}.`] : []),
     '',
     caution,
   ].join('\n')
