@@ -5,12 +5,15 @@ import type { ArrayFrame } from './arrayGeometry.ts'
 import type { BandMatrices } from './bandMatrices.ts'
 import { fitSlowness, velocityOf } from './slownessFit.ts'
 import type { PairLag, SlownessFit } from './slownessFit.ts'
+import { firstMoment, spreadExponent } from './spreading.ts'
 import { bandLags } from './timeLag.ts'
 import type { BandLag } from './timeLag.ts'
 
 export interface LagFit {
   lags: BandLag[]
   fit: SlownessFit | null
+  /** Independent averages behind the lags, frequencies weighing by their energy. */
+  averages: number
 }
 
 /** Lags of the band, unwrapped about the vector (m/s, radians in the frame), and the slowness that fits them best. */
@@ -19,7 +22,27 @@ export function lagFit(bands: BandMatrices, frame: ArrayFrame, direction: number
   const sx = Math.cos(direction) / speed
   const sy = Math.sin(direction) / speed
   const lags = bandLags(bands, (i, j) => sx * (x[j] - x[i]) + sy * (y[j] - y[i]))
-  return { lags, fit: fitSlowness(x, y, lags.map(asPair)) }
+  return { lags, fit: fitSlowness(x, y, lags.map(asPair)), averages: averagesOf(bands) }
+}
+
+function averagesOf({ groups, averages, density }: BandMatrices): number {
+  let sum = 0
+  let squares = 0
+  for (let g = 0; g < groups; g++) {
+    sum += averages[g] * density[g]
+    squares += averages[g] * density[g] * density[g]
+  }
+  return squares > 0 ? (sum * sum) / squares : 0
+}
+
+/**
+ * Variance of the mean direction that plain phases of a spread sea show, rad²: (1 − m₂)/2 / (m₁² ν) with ν = 2 averages
+ * (Kuik, van Vledder & Holthuijsen 1988), m₂ of cos^2s. All sensors see the same waves, so agreement among the lags says nothing of it.
+ */
+export function lagWander(spread: number, averages: number): number {
+  const s = spreadExponent(spread)
+  const m2 = (s * (s - 1)) / ((s + 1) * (s + 2))
+  return (1 - m2) / 2 / (firstMoment(spread) ** 2 * 2 * Math.max(1, averages))
 }
 
 const asPair = (lag: BandLag): PairLag => ({ i: lag.i, j: lag.j, lag: lag.lag, weight: Math.max(1e-3, lag.coherence) })

@@ -2,7 +2,7 @@
 import { degreesTrue } from '../directions.ts'
 import type { EstimateResult, QualityFlag, QualityTest, WaveSystem } from '../schemas/estimate.ts'
 import type { ArraySpectra } from './arraySpectra.ts'
-import { closureTest, lagFit, subArrayFits, traceSpeeds } from './arrayLags.ts'
+import { closureTest, lagFit, lagWander, subArrayFits, traceSpeeds } from './arrayLags.ts'
 import type { LagFit } from './arrayLags.ts'
 import { selectGroups } from './bandMatrices.ts'
 import { phaseSpeed } from './dispersion.ts'
@@ -138,7 +138,8 @@ function lagsDisagree(trains: readonly TrainVector[], measured: readonly LagFit[
   // Lags that do not agree among themselves have no heading to set against the fit's.
   const { x, y, xx, xy, yy } = lagged
   const own = (y * y * xx - 2 * x * y * xy + x * x * yy) / (x * x + y * y) ** 2
-  return turn > greatestTurn && turn > 5 * Math.sqrt(trains[0].directionVariance + own)
+  const wander = lagWander(trains[0].spread, measured[0].averages)
+  return turn > greatestTurn && turn > 5 * Math.sqrt(trains[0].directionVariance + own + wander)
 }
 
 function unexplainedTest({ unexplained }: SeaDoubts): QualityTest {

@@ -16,6 +16,7 @@ import {
   noiseIndex,
   parameterCount,
   parametersPerSystem,
+  priorTerm,
   spreadAt,
 } from './seaModel.ts'
 import { makeSpreadingNodes, spreadingNodes } from './spreading.ts'
@@ -203,11 +204,10 @@ export function seaLikelihood(model: SeaModel): SeaLikelihood {
     }
     evaluation.value += evaluation.dataValue
     for (let a = 0; a < count; a++) {
-      const prior = model.priors[a]
-      const off = (p[a] - prior.mean) / prior.sd
-      evaluation.value -= 0.5 * off * off
-      evaluation.gradient[a] -= off / prior.sd
-      evaluation.information[a * count + a] += 1 / (prior.sd * prior.sd)
+      const { value, slope, precision } = priorTerm(model.priors[a], p[a])
+      evaluation.value += value
+      evaluation.gradient[a] += slope
+      evaluation.information[a * count + a] += precision
     }
     return evaluation
   }

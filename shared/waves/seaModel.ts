@@ -26,10 +26,33 @@ export interface PhaseFault {
   sensor: number
 }
 
-/** Gaussian prior of one parameter: what is known before the record is seen. Wide, so that the record decides. */
+/** What is known of one parameter before the record is seen. */
 export interface Prior {
   mean: number
   sd: number
+  /** Degrees of freedom of a Student t; Gaussian when absent. Heavy tails yield to a record that clearly says otherwise. */
+  freedom?: number
+}
+
+export interface PriorTerm {
+  /** ln of the prior but for a constant, its slope, and the precision that goes into the information. */
+  value: number
+  slope: number
+  precision: number
+}
+
+/**
+ * A Student t is a Gaussian whose precision falls with the distance, (ν + 1)/(ν + z²) (Lange, Little & Taylor 1989): near its mean it
+ * holds a parameter that the record leaves open, far from it it lets go.
+ */
+export function priorTerm({ mean, sd, freedom }: Prior, parameter: number): PriorTerm {
+  const off = (parameter - mean) / sd
+  const weight = freedom === undefined ? 1 : (freedom + 1) / (freedom + off * off)
+  return {
+    value: freedom === undefined ? -0.5 * off * off : -0.5 * (freedom + 1) * Math.log1p((off * off) / freedom),
+    slope: (-weight * off) / sd,
+    precision: weight / (sd * sd),
+  }
 }
 
 export interface SeaModel {

@@ -5,8 +5,15 @@ import type { PeakFit } from './jonswap.ts'
 import { jonswapShape } from './jonswap.ts'
 import type { SeaModel } from './seaModel.ts'
 
-/** Usual current across the waves at a nearshore array, m/s: the record must speak clearly for more. */
-const usualCrossCurrent = 0.25
+/**
+ * Usual errors of linear theory at the stated depth: current along and across the waves, m/s, and of ln depth, one standard deviation.
+ * Where the record leaves speed and bend open (few sensors, much noise) these hold the fit near theory; their heavy tails let go of
+ * it as soon as a strong current or a wrong depth is plainly there.
+ */
+const usualCurrent = 0.2
+const usualCrossCurrent = 0.1
+const usualDepthError = 0.05
+const tails = 3
 
 /** First group at or above a frequency. */
 export function firstGroup(bands: BandMatrices, frequency: number): number {
@@ -27,10 +34,10 @@ export function seaModel(
   const priors = peaks.flatMap(() => [
     // No heading is likelier than another.
     { mean: 0, sd: 1e9 },
-    { mean: 0, sd: 1 },
-    { mean: Math.log(depth), sd: 0.25 },
+    { mean: 0, sd: usualCurrent, freedom: tails },
+    { mean: Math.log(depth), sd: usualDepthError, freedom: tails },
     { mean: Math.log(0.3), sd: 1 },
-    { mean: 0, sd: usualCrossCurrent },
+    { mean: 0, sd: usualCrossCurrent, freedom: tails },
   ])
   priors.push({ mean: 0, sd: 0.7 })
   let densityPrior = null
