@@ -6,7 +6,8 @@ import { statfs } from 'node:fs/promises'
 import { schedule } from 'node-cron'
 import type { Parts, RunningPart } from '../config/parts.ts'
 import { officeOf } from '../presenters/office.ts'
-import { judgeHealth, judgeStation, keepTimers, logFlood, noteLateWindows } from '../services/alerts.ts'
+import { judgeHealth, judgePlace, judgeStation, keepTimers, logFlood, noteLateWindows } from '../services/alerts.ts'
+import { listPlaces } from '../services/places.ts'
 import { linkOf } from '../services/readings.ts'
 import { listStations } from '../services/stations.ts'
 
@@ -40,6 +41,8 @@ export function startJudgeLimits(parts: Parts, options: JudgeLimitsOptions = {})
   const { bus, environment, logger } = parts
   /** Stations with a new estimate, and whether one of them may have come late. */
   const saved = new Set<number>()
+  /** Places with a new outlook. */
+  const lookedOut = new Set<number>()
   let isAllDue = false
   let isStopped = false
   let running: Promise<void> | null = null
@@ -57,6 +60,11 @@ export function startJudgeLimits(parts: Parts, options: JudgeLimitsOptions = {})
     await guarded(`station ${stationId}`, () => judgeStation(parts, office, stationId))
   }
 
+  async function judgeOnePlace(placeId: number): Promise<void> {
+    const office = await officeOf(parts)
+    await guarded(`place ${placeId}`, () => judgePlace(parts, office, placeId))
+  }
+
   async function judgeAll(): Promise<void> {
     const office = await officeOf(parts)
     const diskFree = await freeShare(environment.dataFolder)
@@ -66,6 +74,10 @@ export function startJudgeLimits(parts: Parts, options: JudgeLimitsOptions = {})
       await judgeOne(id)
       await guarded(`late windows of station ${id}`, () => noteLateWindows(parts, office, id))
     }
+    for (const { id } of await listPlaces(parts)) {
+      lookedOut.delete(id)
+      await judgeOnePlace(id)
+    }
     const clockOffsetOf = (stationId: number) => linkOf(stationId).clockOffsetSeconds
     const isSettling = parts.clock.monotonic() - startedAt < settlesFor
     await guarded('data health', () => judgeHealth(parts, office, { clockOffsetOf, diskFree, isSettling }))
@@ -73,14 +85,18 @@ export function startJudgeLimits(parts: Parts, options: JudgeLimitsOptions = {})
   }
 
   async function drain(): Promise<void> {
-    while (!isStopped && (isAllDue || saved.size > 0)) {
+    while (!isStopped && (isAllDue || saved.size > 0 || lookedOut.size > 0)) {
       const [stationId] = saved
+      const [placeId] = lookedOut
       if (isAllDue) {
         isAllDue = false
         await guarded('all', judgeAll)
       } else if (stationId !== undefined) {
         saved.delete(stationId)
         await guarded(`station ${stationId}`, () => judgeOne(stationId))
+      } else if (placeId !== undefined) {
+        lookedOut.delete(placeId)
+        await guarded(`place ${placeId}`, () => judgeOnePlace(placeId))
       }
     }
   }
@@ -91,10 +107,16 @@ export function startJudgeLimits(parts: Parts, options: JudgeLimitsOptions = {})
     return wakeUp()
   }
 
-  const unsubscribe = bus.subscribe('estimate.saved', ({ stationId }) => {
-    saved.add(stationId)
-    if (!isUnscheduled) void wakeUp()
-  })
+  const subscriptions = [
+    bus.subscribe('estimate.saved', ({ stationId }) => {
+      saved.add(stationId)
+      if (!isUnscheduled) void wakeUp()
+    }),
+    bus.subscribe('outlook.saved', ({ placeId }) => {
+      lookedOut.add(placeId)
+      if (!isUnscheduled) void wakeUp()
+    }),
+  ]
   const task = isUnscheduled
     ? null
     : schedule('35 * * * * *', () => void wake(), { timezone: 'UTC', name: 'judgeLimits' })
@@ -105,7 +127,7 @@ export function startJudgeLimits(parts: Parts, options: JudgeLimitsOptions = {})
     wake,
     async stop() {
       isStopped = true
-      unsubscribe()
+      for (const unsubscribe of subscriptions) unsubscribe()
       await task?.destroy()
       await running
     },

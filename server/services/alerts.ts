@@ -2,7 +2,7 @@
 export type { Office } from './alerts/office.ts'
 export { noConsent } from './alerts/consent.ts'
 export type { Consent } from './alerts/consent.ts'
-export { judgeStation } from './alerts/judge.ts'
+export { judgePlace, judgeStation } from './alerts/judge.ts'
 export { judgeHealth } from './alerts/health.ts'
 export type { OutsideHealth } from './alerts/health.ts'
 export { keepTimers } from './alerts/timers.ts'

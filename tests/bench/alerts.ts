@@ -2,6 +2,7 @@
  * Limits, measured: a thousand of them over two hundred stations judged for one minute, in a calm and while all raise,
  * and a year's back-test beside reading the packed days alone and beside a plain count over the rows.
  */
+import { usualPlaceCautions } from '../../shared/places/usualWords.ts'
 import { addLimit, askBackTest } from '../../server/services/limits.ts'
 import type { NewLimit } from '../../server/services/limits.ts'
 import { atDesk, judgeStation, noConsent } from '../../server/services/alerts.ts'
@@ -32,6 +33,7 @@ const office: Office = {
   caution: 'Figures support and never replace judgement.',
   isDemonstration: false,
   asksSecondPerson: false,
+  placeCautions: usualPlaceCautions,
   longestShelfSeconds: 28_800,
 }
 

@@ -1,6 +1,6 @@
 /**
- * Judges a station's limits against its estimates, window by window in order of their ends, each in one transaction.
- * What is older than the station's stale limit moves the delays and tells nobody; the newest window then raises.
+ * Judges a station's limits against its estimates and a place's against its outlooks, window by window in order of their ends, each in
+ * one transaction. What is older than the stale limit moves the delays and tells nobody; the newest window then raises.
  */
 import { judgeCondition, risesOf } from '../../../shared/alerts/condition.ts'
 import type { Judgement } from '../../../shared/alerts/condition.ts'
@@ -17,72 +17,92 @@ import { atDesk, holdStates, keepStates } from './desk.ts'
 import type { Desk, HeldState } from './desk.ts'
 import { happen } from './lifecycle.ts'
 import type { Office } from './office.ts'
+import { placeSeaAt, placeSeaBetween } from './placeSea.ts'
 import { seaAt, seaBetween } from './seaFigures.ts'
 import type { SeaWindow } from './seaFigures.ts'
 import { shelvedAmong } from './shelves.ts'
 
 /** Stale windows only move delays: so many go into one transaction. */
 const staleAtOnce = 500
-const job = { job: 'judgeLimits', subjectKind: 'station' }
+const job = 'judgeLimits'
 
-async function judgedUpTo({ sequelize }: Parts, stationId: number): Promise<number | null> {
+/** Whose windows are judged. */
+interface Watched {
+  subjectKind: 'station' | 'place'
+  subjectId: number
+}
+
+async function judgedUpTo({ sequelize }: Parts, watched: Watched): Promise<number | null> {
   const [row] = await select<{ doneUpTo: Date | null }>(
     sequelize,
-    'SELECT doneUpTo FROM watermarks WHERE job = :job AND subjectKind = :subjectKind AND subjectId = :stationId',
-    { ...job, stationId },
+    'SELECT doneUpTo FROM watermarks WHERE job = :job AND subjectKind = :subjectKind AND subjectId = :subjectId',
+    { job, ...watched },
   )
   return row?.doneUpTo?.getTime() ?? null
 }
 
-async function noteJudged({ parts, now, transaction }: Desk, stationId: number, upTo: number): Promise<void> {
+async function noteJudged({ parts, now, transaction }: Desk, watched: Watched, upTo: number): Promise<void> {
   await execute(
     parts.sequelize,
     `INSERT INTO watermarks (job, subjectKind, subjectId, doneUpTo, epoch, updatedAt)
-     VALUES (:job, :subjectKind, :stationId, :upTo, 0, :now)
+     VALUES (:job, :subjectKind, :subjectId, :upTo, 0, :now)
      ON DUPLICATE KEY UPDATE doneUpTo = GREATEST(COALESCE(doneUpTo, VALUES(doneUpTo)), VALUES(doneUpTo)),
        updatedAt = VALUES(updatedAt)`,
-    { ...job, stationId, upTo: new Date(upTo), now: new Date(now) },
+    { job, ...watched, upTo: new Date(upTo), now: new Date(now) },
     transaction,
   )
 }
 
 /** Judges every window that is due; answers how many. */
-export async function judgeStation(parts: Parts, office: Office, stationId: number): Promise<number> {
-  const which = `l.subjectKind = 'station' AND l.subjectId = :stationId AND l.limitClass = 'wave'`
-  const limits = await limitsInForce(parts.sequelize, which, { stationId })
+export const judgeStation = (parts: Parts, office: Office, stationId: number): Promise<number> =>
+  judgeSubject(parts, office, { subjectKind: 'station', subjectId: stationId })
+
+export const judgePlace = (parts: Parts, office: Office, placeId: number): Promise<number> =>
+  judgeSubject(parts, office, { subjectKind: 'place', subjectId: placeId })
+
+async function judgeSubject(parts: Parts, office: Office, watched: Watched): Promise<number> {
+  const which = `l.subjectKind = :subjectKind AND l.subjectId = :subjectId AND l.limitClass = 'wave'`
+  const limits = await limitsInForce(parts.sequelize, which, { ...watched })
   const now = parts.clock.now().getTime()
   const staleMs = (limits[0]?.staleAfterSeconds ?? 0) * 1000
-  const from = (await judgedUpTo(parts, stationId)) ?? now - staleMs
+  const from = (await judgedUpTo(parts, watched)) ?? now - staleMs
   if (limits.length === 0) {
-    await atDesk(parts, office, (desk) => noteJudged(desk, stationId, Math.max(from, now - staleMs)))
+    await atDesk(parts, office, (desk) => noteJudged(desk, watched, Math.max(from, now - staleMs)))
     return 0
   }
   let judged = 0
   for (let after = from; ;) {
-    const windows = await seaBetween(parts.sequelize, stationId, after, now + staleMs, staleAtOnce)
+    const windows = await windowsBetween(parts, watched, after, now + staleMs)
     if (windows.length === 0) return judged
-    const earlier = await earlierFigures(parts, stationId, limits, windows)
+    const earlier = await earlierFigures(parts, watched, limits, windows)
     const isStale = ({ windowEndsAt }: SeaWindow) => now - windowEndsAt > staleMs
     const stale = windows.filter(isStale)
     for (const batch of [stale, ...windows.filter((window) => !isStale(window)).map((window) => [window])]) {
       if (batch.length === 0) continue
-      await atDesk(parts, office, (desk) => judgeWindows(desk, stationId, limits, batch, earlier, batch !== stale))
+      await atDesk(parts, office, (desk) => judgeWindows(desk, watched, limits, batch, earlier, batch !== stale))
       judged += batch.length
     }
     after = windows[windows.length - 1].windowEndsAt
   }
 }
 
+const windowsBetween = ({ sequelize }: Parts, { subjectKind, subjectId }: Watched, from: number, to: number) =>
+  subjectKind === 'station'
+    ? seaBetween(sequelize, subjectId, from, to, staleAtOnce)
+    : placeSeaBetween(sequelize, subjectId, from, to, staleAtOnce)
+
 /** Of the windows that rises are counted from. */
-function earlierFigures(parts: Parts, stationId: number, limits: LimitInForce[], windows: SeaWindow[]) {
+function earlierFigures({ sequelize }: Parts, watched: Watched, limits: LimitInForce[], windows: SeaWindow[]) {
   const rises = [...new Set(limits.flatMap(({ condition }) => risesOf(condition)))]
   const ends = windows.flatMap(({ windowEndsAt }) => rises.map((seconds) => windowEndsAt - seconds * 1000))
-  return seaAt(parts.sequelize, stationId, [...new Set(ends)])
+  const { subjectKind, subjectId } = watched
+  const at = subjectKind === 'station' ? seaAt : placeSeaAt
+  return at(sequelize, subjectId, [...new Set(ends)])
 }
 
 async function judgeWindows(
   desk: Desk,
-  stationId: number,
+  watched: Watched,
   limits: LimitInForce[],
   windows: SeaWindow[],
   earlier: Map<number, SeaFigures>,
@@ -109,7 +129,7 @@ async function judgeWindows(
   }
   await refreshAlerts(desk, limits, states)
   await keepStates(desk, [...states.values()])
-  await noteJudged(desk, stationId, windows[windows.length - 1].windowEndsAt)
+  await noteJudged(desk, watched, windows[windows.length - 1].windowEndsAt)
 }
 
 export function noteJudgement(

@@ -2,6 +2,7 @@
  * What people are told of an alert, written in the alert's own transaction: a frozen message and the stored times of
  * the steps to come. Who gets it by e-mail is worked out from these rows.
  */
+import { quantityOf } from '../../../shared/alerts/quantities.ts'
 import { messageContentOf, messageTextOf, subjectLineOf } from '../../../shared/alerts/messageText.ts'
 import type { SeaFigures } from '../../../shared/alerts/figures.ts'
 import type { MessageKind } from '../../../shared/schemas/message.ts'
@@ -24,10 +25,11 @@ const handling =
 
 export async function writeMessage(desk: Desk, { kind, alert, limit, sea, isCaughtUp, step }: Telling): Promise<void> {
   const { office, transaction } = desk
+  const { ofPlace } = quantityOf(limit.condition.comparisons[0].quantity)
   const content = messageContentOf({
     ...{ kind, sea, isCaughtUp, handling },
     ...{ isDemonstration: office.isDemonstration, portName: office.portName, timeZone: office.timeZone },
-    caution: office.caution,
+    caution: ofPlace ? office.placeCautions[ofPlace] : office.caution,
     alertId: alert.id,
     isExercise: Boolean(alert.isExercise),
     subjectName: limit.subjectName,

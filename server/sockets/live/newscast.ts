@@ -2,10 +2,12 @@
 import { currentEstimate, seriesPoint, stationView, tracesChunk } from '../../../shared/schemas/station.ts'
 import { alertView } from '../../../shared/schemas/alert.ts'
 import { limitView } from '../../../shared/schemas/limit.ts'
+import { placeView } from '../../../shared/schemas/place.ts'
 import { messageView } from '../../../shared/schemas/message.ts'
 import { connectionAttempt } from '../../../shared/schemas/stationSetUpLink.ts'
 import { liveEventKinds as kinds } from '../../../shared/wire/live.ts'
 import type { Parts } from '../../config/parts.ts'
+import { presentPlace } from '../../presenters/place.ts'
 import { presentStation } from '../../presenters/station.ts'
 import { readAlert } from '../../services/alerts.ts'
 import { currentEstimateOf } from '../../services/estimates.ts'
@@ -71,6 +73,15 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
     inTurn(room, [room], work)
   }
 
+  /** Whole: outlook, notices and limits change together. */
+  function tellPlace(placeId: number): void {
+    const rooms = ['places', `place:${placeId}`]
+    inTurn(`place ${placeId}`, rooms, async () => {
+      const body = placeView.parse(await presentPlace(parts, placeId))
+      for (const room of rooms) hub.publish(room, kinds.place, body, placeId)
+    })
+  }
+
   const tellAlert = (alertId: number): void =>
     tell('alerts', async () =>
       hub.publish('alerts', kinds.alert, alertView.parse(await readAlert(parts, alertId)), alertId),
@@ -81,6 +92,15 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
       hub.publish('limits', kinds.limit, limitView.parse(await readLimit(parts, limitId)), limitId),
     )
 
+  /** A place shows the state of its limits to everybody. */
+  function tellPlaceOfLimit(limitId: number): void {
+    if (!hub.isHeard('places')) return
+    inTurn(`limit ${limitId}`, ['places'], async () => {
+      const { subject } = await readLimit(parts, limitId)
+      if (subject.kind === 'place' && subject.id !== null) tellPlace(subject.id)
+    })
+  }
+
   const tellMessage = (messageId: number): void =>
     tell('messages', async () => {
       const line = await readMessageLine(messageId)
@@ -89,7 +109,12 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
 
   const subscriptions = [
     bus.subscribe('alert.changed', ({ alertId }) => tellAlert(alertId)),
-    bus.subscribe('limit.changed', ({ limitId }) => tellLimit(limitId)),
+    bus.subscribe('limit.changed', ({ limitId }) => {
+      tellLimit(limitId)
+      tellPlaceOfLimit(limitId)
+    }),
+    bus.subscribe('place.changed', ({ placeId }) => tellPlace(placeId)),
+    bus.subscribe('outlook.saved', ({ placeId }) => tellPlace(placeId)),
     bus.subscribe('message.changed', ({ messageId, alertId }) => {
       tellMessage(messageId)
       // Its counts of e-mails.
