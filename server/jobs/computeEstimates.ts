@@ -13,6 +13,8 @@ import type { Desk } from './computeEstimates/desk.ts'
 import { createPastProgress } from './computeEstimates/pastProgress.ts'
 import { takeTurn } from './computeEstimates/turn.ts'
 import type { Turn } from './computeEstimates/turn.ts'
+import { noSelfTest, passesSelfTest, selfTest } from './selfTest.ts'
+import type { SelfTest } from './selfTest.ts'
 
 /**
  * A window takes a second at most; a thread that is silent for so long hangs, even on a busy machine. Two tries stay
@@ -27,6 +29,8 @@ export interface ComputeEstimatesOptions {
   estimators?: Estimators
   /** Without node-cron: only `wake` and stored readings wake it. */
   isUnscheduled?: boolean
+  /** Another than the usual self-test. */
+  selfTest?: SelfTest
 }
 
 export interface ComputeEstimates extends RunningPart {
@@ -39,6 +43,9 @@ export async function startComputeEstimates(
   options: ComputeEstimatesOptions = {},
 ): Promise<ComputeEstimates> {
   const { bus, clock, logger } = parts
+  // Pages need not wait for it, estimates must.
+  const passes = passesSelfTest(parts, options.selfTest ?? (options.estimators ? noSelfTest : selfTest))
+  passes.catch((error: unknown) => logger.error({ error }, 'the outcome of the self-test could not be told'))
   const estimators =
     options.estimators ??
     startEstimators({
@@ -97,6 +104,8 @@ export async function startComputeEstimates(
   async function drain(): Promise<void> {
     const inHand = new Set<Promise<void>>()
     try {
+      // Windows stay due: a program that passes its self-test computes them.
+      if (!(await passes)) return
       while (!isStopped) {
         if (isAskedAgain) {
           isAskedAgain = false

@@ -14,6 +14,8 @@ import type { RunWork } from '../services/runs.ts'
 import type { EstimateTask } from '../workers/estimateTask.ts'
 import { EstimationFailed, startEstimators } from '../workers/estimators.ts'
 import type { Estimators } from '../workers/estimators.ts'
+import { noSelfTest, selfTest } from './selfTest.ts'
+import type { SelfTest } from './selfTest.ts'
 
 const deadlineMs = 60_000
 /** People need no more. */
@@ -24,6 +26,8 @@ export interface RecomputeOptions {
   estimators?: () => Estimators
   /** Without node-cron: only `wake` and the news of an order wake it. */
   isUnscheduled?: boolean
+  /** Another than the usual self-test. */
+  selfTest?: SelfTest
 }
 
 export interface Recompute extends RunningPart {
@@ -33,6 +37,7 @@ export interface Recompute extends RunningPart {
 
 export function startRecompute(parts: Parts, options: RecomputeOptions = {}): Recompute {
   const hire = options.estimators ?? (() => startEstimators({ threads: 1, deadlineMs }))
+  const test = options.selfTest ?? (options.estimators ? noSelfTest : selfTest)
   let isStopped = false
   let running: Promise<void> | null = null
 
@@ -47,6 +52,11 @@ export function startRecompute(parts: Parts, options: RecomputeOptions = {}): Re
   async function workOff(jobId: number, runId: number): Promise<void> {
     const run = await readRunWork(runId)
     if (!run) return failJob(parts, jobId, `There is no run ${runId}.`)
+    const faults = await test()
+    if (faults.length > 0) {
+      await endRun(runId, 'failed')
+      return failJob(parts, jobId, 'The self-test of the estimator failed: nothing is computed by this program.')
+    }
     const estimators = hire()
     try {
       await endRun(runId, 'running')
@@ -125,7 +135,7 @@ export function startRecompute(parts: Parts, options: RecomputeOptions = {}): Re
       digest,
       detail,
       known: next,
-    } = await estimators.run({ window, windowEndsAt, clockOffset: offset, known })
+    } = await estimators.run({ window, windowEndsAt, clockOffset: offset, known, past: [] })
     const making = {
       stationId: run.stationId,
       windowStartsAt: windowEndsAt - settings.content.windowSeconds * 1000,

@@ -1,5 +1,6 @@
 /** What goes to a worker thread for one window, and what comes back. Both are copied between threads. */
 import type { EstimateResult } from '../../shared/schemas/estimate.ts'
+import type { PastFigures } from '../../shared/waves/recordTests.ts'
 import type { Track } from '../../shared/waves/trackSystems.ts'
 import type { ArrayWindow } from '../../shared/waves/window.ts'
 
@@ -11,6 +12,8 @@ export interface EstimateTask {
   clockOffset: number | null
   /** Wave systems of the neighbouring windows, so that the same train keeps its key. */
   known: { tracks: Track[]; nextKey: number }
+  /** Estimates of the last day, to hold this one against; empty where it is to be held against none. */
+  past: PastFigures[]
 }
 
 /** The result without its bulky parts, which travel packed. */

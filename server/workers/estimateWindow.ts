@@ -3,15 +3,18 @@ import { setPriority } from 'node:os'
 import { parentPort } from 'node:worker_threads'
 import type { EstimateResult } from '../../shared/schemas/estimate.ts'
 import { estimate } from '../../shared/waves/estimate.ts'
+import { defaultQualityLimits } from '../../shared/waves/qualityLimits.ts'
+import { judgeAgainstPast } from '../../shared/waves/recordTests.ts'
 import { judgeStationClock } from '../../shared/waves/stationClock.ts'
 import { trackSystems } from '../../shared/waves/trackSystems.ts'
 import type { EstimateAnswer, EstimateFigures, EstimateTask, WorkerReply, WorkerRequest } from './estimateTask.ts'
 import { packDetail } from './packDetail.ts'
 import { resultDigest } from './resultDigest.ts'
 
-function answer({ window, windowEndsAt, clockOffset, known }: EstimateTask): EstimateAnswer {
+function answer({ window, windowEndsAt, clockOffset, known, past }: EstimateTask): EstimateAnswer {
   const bare = estimate(window)
-  const judged = judgeStationClock(bare, clockOffset)
+  const limits = window.settings.quality ?? defaultQualityLimits
+  const judged = judgeAgainstPast(judgeStationClock(bare, clockOffset), past, windowEndsAt, limits)
   const { systems, tracks, nextKey } = trackSystems(known, judged.systems, windowEndsAt)
   const result = { ...judged, systems }
   return {

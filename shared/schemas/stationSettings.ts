@@ -1,5 +1,6 @@
 /** How a station's windows are cut and its estimates made: the content of one version of `stationSettings`. SI units. */
 import { z } from 'zod'
+import { qualityLimits } from './qualityLimits.ts'
 
 /** Field by field as `EstimateSettings` of `shared/waves/window` documents them. */
 export const estimateSettings = z.strictObject({
@@ -15,6 +16,8 @@ export const estimateSettings = z.strictObject({
   flatSuspectSamples: z.number().int().min(2),
   flatFailSamples: z.number().int().min(2),
   rangeShareOfDepth: z.number().positive(),
+  /** Absent: the usual thresholds. */
+  quality: qualityLimits.optional(),
 })
 
 export const stationSettingsContent = z.strictObject({

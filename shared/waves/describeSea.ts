@@ -5,9 +5,11 @@ import type { ArraySpectra } from './arraySpectra.ts'
 import { closureTest, lagFit, lagWander, subArrayFits, traceSpeeds } from './arrayLags.ts'
 import type { LagFit } from './arrayLags.ts'
 import { selectGroups } from './bandMatrices.ts'
+import { bulkLimitsTest, bulkTestNames } from './bulkTests.ts'
 import { phaseSpeed } from './dispersion.ts'
 import { refuse } from './blankResult.ts'
 import type { PreparedArray } from './preparedArray.ts'
+import { defaultQualityLimits } from './qualityLimits.ts'
 import { median } from './robust.ts'
 import { greatestUnexplained } from './sensorFaults.ts'
 import type { SlownessFit } from './slownessFit.ts'
@@ -100,9 +102,11 @@ export function describeSea(
       ratio: other.ratio,
     },
   }
-  if (doubts.ambiguous) return refuse(described, 'ambiguous')
-  if (isSurfZone(described)) return refuse(described, 'surf-zone')
-  return { ...described, qualityFlag: overallFlag(described) }
+  const limits = window.settings.quality ?? defaultQualityLimits
+  const tested = { ...described, tests: [...described.tests, bulkLimitsTest(described, limits)] }
+  if (doubts.ambiguous) return refuse(tested, 'ambiguous')
+  if (isSurfZone(tested)) return refuse(tested, 'surf-zone')
+  return { ...tested, qualityFlag: overallFlag(tested) }
 }
 
 /**
@@ -180,6 +184,9 @@ function seaTests(result: EstimateResult, leading: WaveSystem): QualityTest[] {
 /** Suspect (3) when a sensor was left out, a geometry fault was found or a test of the sea is suspect; else good. */
 function overallFlag(result: EstimateResult): QualityFlag {
   const geometry = ['lag closure', 'dispersion ratio', 'height over depth', 'sensor phases', coherenceTest]
-  const doubtful = result.tests.some((test) => geometry.includes(test.test) && test.flag !== 1)
+  const doubtful = result.tests.some(
+    (test) =>
+      (geometry.includes(test.test) && test.flag !== 1) || (bulkTestNames.includes(test.test) && test.flag === 3),
+  )
   return doubtful || result.sensors.some((sensor) => !sensor.used) ? 3 : 1
 }

@@ -6,9 +6,11 @@ import type { EstimateResult } from '../schemas/estimate.ts'
 import { leastAxisRatio } from './arrayGeometry.ts'
 import { arrayDirections } from './arrayDirections.ts'
 import { arraySpectra } from './arraySpectra.ts'
+import { addBulkTests } from './bulkTests.ts'
 import { blankResult, refusalForData, refuse } from './blankResult.ts'
 import { addHeights } from './heights.ts'
 import { checkArray, prepareArray } from './preparedArray.ts'
+import { judgeNeighbours } from './neighbourTests.ts'
 import { findRandomSea } from './randomSea.ts'
 import type { RandomSea } from './randomSea.ts'
 import { findRegularSea } from './regularSea.ts'
@@ -41,7 +43,8 @@ export function estimate(window: ArrayWindow): EstimateResult {
     if (prepared.usable.length === 0) return refuse(blank, refusalForData(prepared))
     const spectra = arraySpectra(window, prepared)
     if (!spectra || spectra.duration < leastDuration) return refuse(blank, 'too-little-data')
-    let result = addHeights(blank, window, prepared, spectra)
+    const measured = addHeights(blank, window, prepared, spectra)
+    let result = addBulkTests(judgeNeighbours(measured, window, checked, prepared, spectra), window, spectra)
     if (prepared.usable.length < 3)
       return refuse(result, faults.length > 0 ? 'geometry-doubtful' : refusalForData(prepared))
     if (prepared.frame.axisRatio < leastAxisRatio)

@@ -49,7 +49,7 @@ export function checkArray(window: ArrayWindow): CheckedArray {
     clean.push(checked.clean)
     return {
       id: sensor.id,
-      used: checked.completeness >= settings.leastCompleteness,
+      used: checked.completeness >= settings.leastCompleteness && checked.flag !== 4,
       flag: checked.flag,
       findings: checked.findings,
       completeness: checked.completeness,

@@ -5,6 +5,8 @@
 import type { QualityFlag, QualityTest, SensorFinding } from '../schemas/estimate.ts'
 import type { EstimateSettings } from './window.ts'
 import { robustSpread, median } from './robust.ts'
+import { defaultQualityLimits } from './qualityLimits.ts'
+import { isOutside, signalTests } from './signalTests.ts'
 import { dropSpikes } from './spikes.ts'
 
 export interface CheckedSeries {
@@ -57,6 +59,8 @@ export function checkSeries(
     settings.longestBridgedGap,
     `longest gap ${gap.toFixed(1)} s`,
   )
+  const limits = settings.quality ?? defaultQualityLimits
+  for (let i = 0; i < clean.length; i++) if (isOutside(clean[i], limits.instrumentSpan)) clean[i] = NaN
   const reach = settings.rangeShareOfDepth * waterDepth
   const outside = dropOutside(clean, reach)
   note(
@@ -88,17 +92,23 @@ export function checkSeries(
     rateSigmas,
     `fastest change ${fastest.toFixed(1)} sd of the changes`,
   )
+  for (const { finding, ...test } of signalTests(id, raw, clean, sampleRate, limits)) {
+    tests.push(test)
+    if (test.flag === 3 || test.flag === 4) findings.push(finding)
+  }
   const completeness = count(clean) / raw.length
   const enough = completeness >= settings.leastCompleteness
+  const many = completeness >= limits.suspectCompleteness
   tests.push({
     test: 'percent good',
-    flag: enough ? 1 : 4,
+    flag: !enough ? 4 : many ? 1 : 3,
     value: completeness,
-    limit: settings.leastCompleteness,
+    limit: enough ? limits.suspectCompleteness : settings.leastCompleteness,
     detail: `${id}: ${(100 * completeness).toFixed(1)} % usable`,
   })
-  const flag: QualityFlag = !enough ? (completeness === 0 ? 9 : 4) : findings.length > 0 ? 3 : 1
-  return { clean, findings, tests, flag, completeness }
+  const hasSignal = tests.every(({ test, flag: found }) => test !== 'attenuated signal' || found !== 4)
+  const flag: QualityFlag = completeness === 0 ? 9 : !enough || !hasSignal ? 4 : findings.length > 0 || !many ? 3 : 1
+  return { clean, findings: [...new Set(findings)], tests, flag, completeness }
 }
 
 /** Changes from one sample to the next beyond so many robust standard deviations are of high interest; they are kept. */

@@ -12,6 +12,8 @@ export interface FaultVerdict {
   finding: Extract<SensorFinding, 'clock' | 'position'>
   clockOffset: number | null
   clockOffsetSd: number | null
+  positionOffset: number | null
+  positionOffsetSd: number | null
   detail: string
   value: number
   limit: number
@@ -44,6 +46,8 @@ export function judgeSensors(
       finding: isClock ? 'clock' : 'position',
       clockOffset: isClock ? fault.value : null,
       clockOffsetSd: isClock ? fault.sd : null,
+      positionOffset: isClock ? null : fault.value,
+      positionOffsetSd: isClock ? null : fault.sd,
       detail: `${id}: ${isClock ? 'clock off by' : 'position off along the waves by'} ${size}; left out`,
       value: fault.value,
       limit: 4 * fault.sd,
@@ -59,13 +63,15 @@ export function blameFaults(result: EstimateResult, faults: readonly FaultVerdic
     sensors: result.sensors.map((sensor, index) => {
       const fault = faults.find((f) => f.sensor === index)
       if (!fault) return sensor
-      const { clockOffset, clockOffsetSd } = fault
+      const { clockOffset, clockOffsetSd, positionOffset, positionOffsetSd } = fault
       return {
         ...sensor,
         qualityFlag: 4 as const,
         findings: [...sensor.findings, fault.finding],
         clockOffset,
         clockOffsetSd,
+        positionOffset,
+        positionOffsetSd,
       }
     }),
     tests: [

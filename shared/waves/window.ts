@@ -2,6 +2,8 @@
  * What the estimator is given: one window of one array. Arguments in, values out; the clock and the database
  * stay outside.
  */
+import type { QualityLimits } from './qualityLimits.ts'
+
 export type SensorKind = 'pressure' | 'surface'
 
 export interface ArraySensor {
@@ -59,6 +61,8 @@ export interface EstimateSettings {
   flatFailSamples: number
   /** Gross range about the mean, as a share of the depth. */
   rangeShareOfDepth: number
+  /** Thresholds of the other QARTOD tests; absent: the usual ones. */
+  quality?: QualityLimits | undefined
 }
 
 export const defaultEstimateSettings: EstimateSettings = {

@@ -17,6 +17,7 @@ const task = (sampleRate: number): EstimateTask => ({
   windowEndsAt: 0,
   clockOffset: null,
   known: { tracks: [], nextKey: 1 },
+  past: [],
 })
 const fine = 2
 const program = new URL('../support/unrulyEstimator.ts', import.meta.url)

@@ -51,7 +51,9 @@ export async function takeTurn(parts: Parts, estimators: Estimators, turn: Turn)
   const question = { windowEndsAt, deployment, settings, clockOffsets: timeline.clockOffsets, readings }
   const { window, surgeStartsAt } = await estimates.assembleWindow(parts, timeline.id, question)
   const clockOffset = clockOffsetOf(turn, readings)
-  const task = { window, windowEndsAt, clockOffset, known: turn.known }
+  const hopMs = settings.content.hopSeconds * 1000
+  const past = await estimates.pastFigures(parts, timeline.id, windowEndsAt, hopMs)
+  const task = { window, windowEndsAt, clockOffset, known: turn.known, past }
   const answer = isEmpty ? nothingThere(task) : await compute(parts, estimators, turn, task)
   const making = {
     stationId: timeline.id,
