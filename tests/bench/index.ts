@@ -1,6 +1,6 @@
 /**
- * Measures what the program does in earnest; the figures go to the screen. `npm run bench`, or `npm run bench -- --accuracy [seas of
- * each kind]` for the errors of the estimator.
+ * Measures what the program does in earnest; the figures go to the screen. `npm run bench`, or `npm run bench -- --accuracy [seas
+ * an array] [first seed]` for the errors of the estimator.
  */
 import { benchAccuracy } from './accuracy.ts'
 import { benchAcknowledgement } from './acknowledgement.ts'
@@ -10,7 +10,7 @@ import { benchStorage } from './storage.ts'
 
 const words = process.argv.slice(2)
 if (words[0] === '--accuracy') {
-  benchAccuracy(Number(words[1] ?? 12), (line) => process.stdout.write(`${line}\n`))
+  benchAccuracy(Number(words[1] ?? 200), Number(words[2] ?? 300_001), (line) => process.stdout.write(`${line}\n`))
 } else {
   for (const { what, value, unit } of [
     ...(await benchStorage()),

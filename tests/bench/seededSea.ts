@@ -28,6 +28,10 @@ export interface SeaRecipe {
   noise: number
   /** Metres above the bed of pressure sensors; absent for surface sensors. */
   heightAboveBed?: number
+  /** Current along the first train's heading and across it to the left, m/s. */
+  current?: { along: number; across: number }
+  /** Depth that the estimator is told, m; the true one when absent. */
+  statedDepth?: number
 }
 
 const g = 9.81
@@ -57,6 +61,18 @@ export function linearWaveNumber(omega: number, depth: number): number {
     else high = k
   }
   return (low + high) / 2
+}
+
+/** ω = √(g k tanh kh) + k U by Newton's method from still water; U is the current along the wave, m/s. */
+export function wavenumberOnCurrent(omega: number, depth: number, current: number): number {
+  let k = linearWaveNumber(omega, depth)
+  if (current === 0) return k
+  for (let i = 0; i < 20; i++) {
+    const t = Math.tanh(k * depth)
+    const sigma = Math.sqrt(g * k * t)
+    k -= (sigma + k * current - omega) / ((g * (t + k * depth * (1 - t * t))) / (2 * sigma) + current)
+  }
+  return k
 }
 
 /** Shape alone; the caller scales it to the height. */
@@ -100,6 +116,7 @@ export function seededSea(recipe: SeaRecipe): ArrayWindow {
   const fft = new FFT(size)
   const step = sampleRate / size
   const lines = positions.map(() => new Float64Array(2 * size))
+  const firstHeading = trains[0].toward
   for (const train of trains) {
     const peak = 1 / train.peakPeriod
     const density = Array.from({ length: size / 2 }, (_, n) => jonswap(n * step, peak, train.gamma))
@@ -118,8 +135,9 @@ export function seededSea(recipe: SeaRecipe): ArrayWindow {
         const a = size0 * normal()
         const b = size0 * normal()
         const angle = mean + offset[d] + turn
-        const kx = k * Math.cos(angle)
-        const ky = k * Math.sin(angle)
+        const here = recipe.current ? wavenumberOnCurrent(2 * Math.PI * n * step, depth, currentAlong(angle)) : k
+        const kx = here * Math.cos(angle)
+        const ky = here * Math.sin(angle)
         positions.forEach((p, m) => {
           const phase = kx * p.east + ky * p.north
           const cos = Math.cos(phase)
@@ -129,6 +147,10 @@ export function seededSea(recipe: SeaRecipe): ArrayWindow {
         })
       }
     }
+  }
+  function currentAlong(angle: number): number {
+    const off = angle - ((90 - firstHeading) * Math.PI) / 180
+    return (recipe.current?.along ?? 0) * Math.cos(off) + (recipe.current?.across ?? 0) * Math.sin(off)
   }
   const out = new Float64Array(2 * size)
   // x(t) = Σ 2 Re(X e^{iωt}); the transform below is unscaled, its sign turned by taking conjugates.
@@ -151,7 +173,7 @@ export function seededSea(recipe: SeaRecipe): ArrayWindow {
       clockSd: 0,
     })),
     series,
-    waterDepth: depth,
+    waterDepth: recipe.statedDepth ?? depth,
     waterDepthSource: 'level',
     settings: defaultEstimateSettings,
   }
