@@ -7,6 +7,7 @@ import { changeSetting } from '../services/settings.ts'
 import { inTransaction } from '../services/transaction.ts'
 import { writeSystemLine } from '../services/watchLog.ts'
 import { seedDemonstrationLimits } from './demonstrationLimits.ts'
+import { seedDemonstrationTide } from './demonstrationPlaces.ts'
 import { prepareDemonstrationPeople } from './demonstrationPeople.ts'
 import { demonstrationKeys, seedStation } from './demonstrationStations.ts'
 
@@ -35,5 +36,6 @@ export async function seedDemonstration(parts: Parts): Promise<boolean> {
     await writeSystemLine(parts, { kind: 'system', text }, transaction)
   })
   await seedDemonstrationLimits(parts)
+  await seedDemonstrationTide(parts)
   return isFirst
 }

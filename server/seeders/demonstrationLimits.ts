@@ -7,6 +7,7 @@ import { DistributionList, Limit, ListMember, Person, Station } from '../models/
 import { officeOf } from '../presenters/office.ts'
 import { atDesk, noConsent } from '../services/alerts.ts'
 import type { Desk } from '../services/alerts.ts'
+import { seedDemonstrationPlaces } from './demonstrationPlaces.ts'
 import { addLimit, staleContent } from '../services/limits.ts'
 import type { NewLimit } from '../services/limits.ts'
 
@@ -37,9 +38,13 @@ function recipientsOf(steps: DemonstrationLimit['steps'], lists: Map<string, num
   }
 }
 
-const draftOf = (stationId: number | null, content: NewLimit['content']): NewLimit => ({
-  subjectKind: stationId === null ? 'system' : 'station',
-  subjectId: stationId,
+type Subject = Pick<NewLimit, 'subjectKind' | 'subjectId'>
+
+const ofStation = (id: number): Subject => ({ subjectKind: 'station', subjectId: id })
+const ofSystem: Subject = { subjectKind: 'system', subjectId: null }
+
+const draftOf = (subject: Subject, content: NewLimit['content']): NewLimit => ({
+  ...subject,
   content,
   reason: 'Demonstration',
   consent: noConsent,
@@ -50,14 +55,17 @@ export async function seedDemonstrationLimits(parts: Parts): Promise<void> {
   const stations = await Station.findAll({ order: [['id', 'ASC']] })
   await atDesk(parts, await officeOf(parts), async (desk) => {
     const lists = await addLists(desk)
-    for (const { stationCode, steps, content } of demonstrationLimits) {
+    const places = await seedDemonstrationPlaces(desk, stations, lists)
+    for (const { stationCode, placeCode, steps, content } of demonstrationLimits) {
       const station = stations.find(({ code }) => code === stationCode)
-      const draft = draftOf(station?.id ?? null, { ...content, recipients: recipientsOf(steps, lists) })
-      await addLimit(desk, draft, null)
+      const placeId = placeCode === undefined ? undefined : places.get(placeCode)
+      const atPlace: Subject | null = placeId === undefined ? null : { subjectKind: 'place', subjectId: placeId }
+      const subject = atPlace ?? (station ? ofStation(station.id) : ofSystem)
+      await addLimit(desk, draftOf(subject, { ...content, recipients: recipientsOf(steps, lists) }), null)
     }
     const duty = recipientsOf([{ afterMinutes: 0, lists: ['Harbour duty'] }], lists)
     for (const { id, staleAfterSeconds } of stations) {
-      await addLimit(desk, draftOf(id, staleContent(staleAfterSeconds, duty)), null)
+      await addLimit(desk, draftOf(ofStation(id), staleContent(staleAfterSeconds, duty)), null)
     }
   })
 }

@@ -5,12 +5,12 @@
 import type { Coast } from '../schemas/coast.ts'
 import { demonstrationStations } from './stations.ts'
 
-type Metres = [east: number, north: number]
+export type Metres = [east: number, north: number]
 
 const metresPerDegree = 111_180
 const origin = demonstrationStations[0]
 
-function position([east, north]: Metres): [longitude: number, latitude: number] {
+export function position([east, north]: Metres): [longitude: number, latitude: number] {
   const shrink = Math.cos((origin.latitude * Math.PI) / 180)
   const rounded = (degrees: number): number => Math.round(degrees * 1e6) / 1e6
   return [

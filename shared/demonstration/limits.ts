@@ -34,8 +34,9 @@ export const demonstrationLists: DemonstrationList[] = [
 ]
 
 export interface DemonstrationLimit {
-  /** Null: Offing itself. */
+  /** Null: Offing itself, or the place. */
   stationCode: string | null
+  placeCode?: string
   /** Names of lists by step: minutes after the alert. */
   steps: { afterMinutes: number; lists: string[] }[]
   content: Omit<LimitContent, 'recipients'>
@@ -141,6 +142,47 @@ const waveLimits: DemonstrationLimit[] = [
   },
 ]
 
+const beach = [{ afterMinutes: 0, lists: ['Harbour duty', 'Beach patrol'] }]
+
+const placeLimits: DemonstrationLimit[] = [
+  {
+    ...{ stationCode: null, placeCode: 'EN', steps: harbour },
+    content: content(
+      'high',
+      condition([above('crossSea', 1, 0.85)]),
+      'Entrance traffic; pilots and tugs; small craft.',
+    ),
+  },
+  {
+    ...{ stationCode: null, placeCode: 'LA', steps: everybody },
+    content: content(
+      'urgent',
+      condition([above('overtopping', 0.001, 0.0006)]),
+      'The gate at the root of the walk; people on the walk; tell the warden by telephone.',
+    ),
+  },
+  {
+    ...{ stationCode: null, placeCode: 'B36', steps: dutyOnly },
+    content: content(
+      'medium',
+      condition([above('longSwell', 0.08, 0.07)]),
+      'Lines and fenders of the ships at berths 3 to 6.',
+    ),
+  },
+  {
+    ...{ stationCode: null, placeCode: 'PS', steps: beach },
+    content: content(
+      'high',
+      condition([above('breakerHeight', 2.5, 2.2)]),
+      'The flag; people in the water; the next low water.',
+    ),
+  },
+  {
+    ...{ stationCode: null, placeCode: 'OB', steps: beach },
+    content: content('medium', condition([above('breakerHeight', 2, 1.7)]), 'The flag; people in the water.'),
+  },
+]
+
 const healthLimits: DemonstrationLimit[] = [
   {
     stationCode: 'OL',
@@ -176,4 +218,4 @@ const healthLimits: DemonstrationLimit[] = [
 ]
 
 /** Limits on stale data come with each station. */
-export const demonstrationLimits: DemonstrationLimit[] = [...waveLimits, ...healthLimits]
+export const demonstrationLimits: DemonstrationLimit[] = [...waveLimits, ...placeLimits, ...healthLimits]

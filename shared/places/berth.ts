@@ -58,11 +58,15 @@ export function berthOutlook(
 ): KindOutlook {
   const { length, bedLevel, mouth } = settings.basin
   const depth = depthNow(level, bedLevel) ?? { value: 0, sd: null }
-  const modes = basinModes({ kinds: [mouth], length: { value: length, sd: null }, depth })
+  const modes = basinModes({
+    kinds: mouth === 'between' ? ['closed', 'open'] : [mouth],
+    length: { value: length, sd: null },
+    depth,
+  })
   return {
     ...nothingElse,
     figures: [graded('longSwell', longSwell(surgeHeight, feed, relativeSd), grounds)],
-    basin: modes.map(({ mode, period }) => ({ mode, period })),
+    basin: modes.map(({ kind, mode, period }) => ({ kind, mode, period })),
     remarks: feed.isInBasin
       ? []
       : [`Not measured in the basin: ${surgeBand.from} to ${surgeBand.to} Hz outside, times ${feed.factor.value} (${feed.factor.source}).`], // prettier-ignore

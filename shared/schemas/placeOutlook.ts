@@ -127,7 +127,7 @@ export const outlookContent = z.object({
   arrivals: z.array(arrival.omit({ stationName: true })),
   rip: ripCaution.omit({ caution: true }).nullable(),
   /** The basin's own periods, longest first. */
-  basin: z.array(z.object({ mode: z.number().int(), period: figure })),
+  basin: z.array(z.object({ kind: z.enum(['closed', 'open']), mode: z.number().int(), period: figure })),
   /** Sentences that belong beside the figures, such as that any overtopping means no access. */
   remarks: z.array(z.string()),
 })

@@ -6,7 +6,7 @@ export type PlaceKind = z.infer<typeof placeKind>
 
 /** SI: heights and levels m, current m/s, overtopping m³/s per m of crest, largest volume m³ per m. */
 export const placeQuantityKey = z.enum([
-  /** H_m0 of all systems, carried to the place. Not at berths. */
+  /** H_m0 of all systems, carried to the place. At entrances and breakwaters. */
   'placeHeight',
   'crossSea',
   'alongSea',
@@ -26,5 +26,5 @@ export const quantitiesOfKind: Record<PlaceKind, readonly PlaceQuantityKey[]> = 
   entrance: ['crossSea', 'alongSea', 'placeHeight'],
   breakwater: ['overtopping', 'largestVolume', 'placeHeight'],
   berth: ['longSwell'],
-  beach: ['breakerHeight', 'runUp', 'setUp', 'longshoreCurrent', 'placeHeight'],
+  beach: ['breakerHeight', 'runUp', 'setUp', 'longshoreCurrent'],
 }

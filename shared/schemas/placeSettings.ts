@@ -149,8 +149,8 @@ export const berthSettings = z.strictObject({
     length: z.number().positive().max(20_000),
     width: z.number().positive().max(20_000),
     bedLevel,
-    /** Open: the mouth is a node. */
-    mouth: z.enum(['closed', 'open']),
+    /** Open: the mouth is a node. Between: neither a wall nor wide open, and the periods of both are told. */
+    mouth: z.enum(['closed', 'open', 'between']),
   }),
   /** What the berthing master reads beside the figure; from metres of long swell on. */
   meanings: z

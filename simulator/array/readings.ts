@@ -7,7 +7,7 @@ import type { Scenario } from '../scenarios/scenario.ts'
 import { depthAt } from '../sea/nearshore.ts'
 import { hashText, normalAt } from '../sea/random.ts'
 import { createStationSea } from '../sea/stationSea.ts'
-import { tideLevel } from '../sea/tide.ts'
+import { tideLevel } from '../../shared/demonstration/tide.ts'
 import { clockOffsetOf, spoil } from './faults.ts'
 
 export interface ArrayStation {

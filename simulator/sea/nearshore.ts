@@ -5,7 +5,7 @@
 import { phaseSpeed } from '../../shared/waves/dispersion.ts'
 import { normalise, opposite, turnBetween } from '../../shared/directions.ts'
 import type { OffshoreSystem, Scenario } from '../scenarios/scenario.ts'
-import { tideLevel } from './tide.ts'
+import { tideLevel } from '../../shared/demonstration/tide.ts'
 
 export interface NearshoreSystem {
   key: string

@@ -4,7 +4,7 @@ import { createReadings } from '../../../simulator/array/readings.ts'
 import { scenarioNamed, scenarios } from '../../../simulator/scenarios/index.ts'
 import type { Scenario } from '../../../simulator/scenarios/scenario.ts'
 import { blockStep } from '../../../simulator/sea/stationSea.ts'
-import { tideLevel } from '../../../simulator/sea/tide.ts'
+import { tideLevel } from '../../../shared/demonstration/tide.ts'
 
 const anchor = Date.parse('2026-11-12T14:30:00Z')
 const [outerLedge, fairway, pennowBar] = demonstrationStations
