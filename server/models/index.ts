@@ -6,8 +6,10 @@ import { defineAlertEvent } from './alertEvent.ts'
 import { defineAudit } from './audit.ts'
 import { defineAuditCheck } from './auditCheck.ts'
 import { defineAuxiliaryReading } from './auxiliaryReading.ts'
+import { defineBackupRun } from './backupRun.ts'
 import { defineClockOffset } from './clockOffset.ts'
 import { defineConflict } from './conflict.ts'
+import { defineDatabaseSize } from './databaseSize.ts'
 import { defineDelivery } from './delivery.ts'
 import { defineDeployment } from './deployment.ts'
 import { defineDeploymentDraft } from './deploymentDraft.ts'
@@ -56,8 +58,10 @@ export { AlertEvent } from './alertEvent.ts'
 export { Audit } from './audit.ts'
 export { AuditCheck } from './auditCheck.ts'
 export { AuxiliaryReading } from './auxiliaryReading.ts'
+export { BackupRun } from './backupRun.ts'
 export { ClockOffset } from './clockOffset.ts'
 export { Conflict } from './conflict.ts'
+export { DatabaseSize } from './databaseSize.ts'
 export { Delivery } from './delivery.ts'
 export { Deployment } from './deployment.ts'
 export { DeploymentDraft } from './deploymentDraft.ts'
@@ -107,8 +111,10 @@ const definitions = [
   defineAudit,
   defineAuditCheck,
   defineAuxiliaryReading,
+  defineBackupRun,
   defineClockOffset,
   defineConflict,
+  defineDatabaseSize,
   defineDelivery,
   defineDeployment,
   defineDeploymentDraft,

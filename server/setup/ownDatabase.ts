@@ -43,6 +43,8 @@ const accountStatements = (password: string): string =>
     `CREATE USER IF NOT EXISTS '${user}'@'127.0.0.1';`,
     `ALTER USER '${user}'@'127.0.0.1' IDENTIFIED BY '${password}';`,
     `GRANT ALL PRIVILEGES ON ${schema}.* TO '${user}'@'127.0.0.1';`,
+    // Where a backup is tried.
+    `GRANT ALL PRIVILEGES ON \`${schema}\\_restore\\_test\`.* TO '${user}'@'127.0.0.1';`,
     '',
   ].join('\n')
 
