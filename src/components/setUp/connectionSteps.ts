@@ -28,7 +28,7 @@ export function connectionSteps({ hasDeployment, hasKey, newest }: Known): Conne
   }
   const refused = (newest?.refusals ?? []).map(({ code, count, detail }) => `${count} refused, ${code}: ${detail}`)
   const streaming = newest
-    ? `${newest.frames} frames received, ${newest.acknowledged} on disk.${newest.endedAt === null ? '' : ' The connection is closed now.'}`
+    ? `${newest.frames} frames received, all up to number ${newest.acknowledged} on disk.${newest.endedAt === null ? '' : ' The connection is closed now.'}`
     : ''
   return [
     {
@@ -46,7 +46,7 @@ export function connectionSteps({ hasDeployment, hasKey, newest }: Known): Conne
       details: [],
     },
     step(0, 'It reaches this server', newest ? `From ${newest.remoteAddress}.` : '', 'Nothing has knocked here since the server started.'), // prettier-ignore
-    step(1, 'Its key is accepted', newest?.keyPrefix ? `Key ${newest.keyPrefix}….` : 'The key fits.', 'Waits for a connection.'), // prettier-ignore
+    step(1, 'Its key is accepted', newest?.keyPrefix ? `Key ${newest.keyPrefix}…` : 'The key fits.', 'Waits for a connection.'), // prettier-ignore
     step(2, 'Its hello fits', helloWords(newest), 'Waits for its hello.', newest?.differences ?? []),
     { ...step(3, 'Its readings are stored', streaming, 'Waits for its first frame.', refused), ...(wrongAt !== 3 && refused.length > 0 && { details: refused }) }, // prettier-ignore
   ]
