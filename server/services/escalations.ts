@@ -22,9 +22,15 @@ export async function escalateDue(parts: Parts): Promise<number> {
   await endOver(parts)
   const due = await select<{ alertId: number; step: number }>(
     parts.sequelize,
-    `SELECT alertId, step FROM escalations
-     WHERE endedAt IS NULL AND (sentAt IS NULL AND dueAt <= :now OR nextReminderAt <= :now)
-     ORDER BY dueAt, alertId, step LIMIT :most`,
+    // A time further ahead than it was ever put off was stored before the server's clock was set back.
+    `SELECT e.alertId, e.step FROM escalations e JOIN alerts a ON a.id = e.alertId
+       JOIN limitVersions v ON v.id = a.limitVersionId
+     WHERE e.endedAt IS NULL AND (
+       e.sentAt IS NULL AND (e.dueAt <= :now
+         OR e.dueAt > :now + INTERVAL JSON_VALUE(v.steps, CONCAT('$.steps[', e.step, '].afterSeconds')) SECOND)
+       OR e.nextReminderAt <= :now
+       OR e.nextReminderAt > :now + INTERVAL JSON_VALUE(v.steps, '$.remindEverySeconds') SECOND)
+     ORDER BY e.dueAt, e.alertId, e.step LIMIT :most`,
     { now: parts.clock.now(), most: mostAtOnce },
   )
   let written = 0

@@ -28,6 +28,18 @@ export const atRest: Track = {
 /** A longer gap proves nothing about the time in it, so that a delay begins anew: half the usual window. */
 export const longestBridgedGapMs = 600_000
 
+/** A clock that was set back left times behind that are still to come: they tell nothing, and a delay begins anew. */
+export function notAhead(track: Track, now: number): Track {
+  const known = (time: number | null): number | null => (time !== null && time > now ? null : time)
+  return {
+    ...track,
+    pendingSince: known(track.pendingSince),
+    lastKnownAt: known(track.lastKnownAt),
+    activeSince: track.activeSince === null ? null : Math.min(track.activeSince, now),
+    crossedAt: track.crossedAt === null ? null : Math.min(track.crossedAt, now),
+  }
+}
+
 type Delays = Pick<Condition, 'onDelaySeconds' | 'offDelaySeconds'>
 
 /** The track after a moment. Unknown neither raises nor clears, and time in which nothing was known counts for no delay. */

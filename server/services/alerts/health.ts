@@ -1,6 +1,7 @@
 /** Judges data-health limits: of the clock's minutes, not of windows, for silence has none. */
 import { judgeCondition } from '../../../shared/alerts/condition.ts'
 import type { HealthFigures } from '../../../shared/alerts/figures.ts'
+import { notAhead } from '../../../shared/alerts/follow.ts'
 import type { Parts } from '../../config/parts.ts'
 import { Station } from '../../models/index.ts'
 import { select } from '../../models/sql.ts'
@@ -113,7 +114,9 @@ export async function judgeHealth(parts: Parts, office: Office, outside: Outside
     for (const limit of limits) {
       const held = states.get(limit.limitId)
       const health = figures.get(limit.subjectId) ?? none
-      if (!held || (held.lastWindowEndsAt !== null && held.lastWindowEndsAt >= now)) continue
+      if (!held || held.lastWindowEndsAt === now) continue
+      // After the server's clock was set back the last moment lies ahead; what holds now is asked all the same.
+      if (held.lastWindowEndsAt !== null && held.lastWindowEndsAt > now) held.track = notAhead(held.track, now)
       const moment = { at: now, seen: { sea: null, health }, earlier: () => null, timeZone: office.timeZone }
       const wasActive = held.track.isActive
       const judgement = judgeCondition(limit.condition, moment)
