@@ -3,7 +3,7 @@ import { fileURLToPath } from 'node:url'
 import compression from 'compression'
 import cookieParser from 'cookie-parser'
 import express from 'express'
-import type { Express, RequestHandler } from 'express'
+import type { Express, Request, RequestHandler } from 'express'
 import type { Parts } from './config/parts.ts'
 import { authenticate } from './middleware/authenticate.ts'
 import { client } from './middleware/client.ts'
@@ -43,11 +43,15 @@ export function createApp(parts: Parts, readiness: Readiness = createReadiness()
   return app
 }
 
+/** Files go in as they are; the header that sameOrigin asks for says that it is one of our own pages. */
+const takesFile = (request: Request): boolean =>
+  /^\/stations\/\d+\/uploads$/.test(request.path) && request.is(['text/csv', 'text/plain', 'application/octet-stream']) !== false // prettier-ignore
+
 /** A form of another site can send text and forms, but no JSON without being asked first. */
 const jsonOnly: RequestHandler = (request, _response, next) => {
   const hasBody =
     request.headers['transfer-encoding'] !== undefined || Number(request.headers['content-length'] ?? 0) > 0
-  if (!hasBody || request.is('application/json')) return next()
+  if (!hasBody || request.is('application/json') || takesFile(request)) return next()
   next(
     new Refused({
       status: 415,

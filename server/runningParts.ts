@@ -12,6 +12,7 @@ import { startKeepNotices } from './jobs/keepNotices.ts'
 import { startKeepSeriesDays } from './jobs/keepSeriesDays.ts'
 import { startRecompute } from './jobs/recompute.ts'
 import { startRetention } from './jobs/retention.ts'
+import { startTakeInFiles } from './jobs/takeInFiles.ts'
 import { startSealAudits } from './jobs/sealAudits.ts'
 import { startLive } from './sockets/live.ts'
 import { startTelemetry } from './sockets/telemetry.ts'
@@ -44,6 +45,7 @@ export async function startRunningParts(parts: Parts, server: Server): Promise<S
     started.push(startKeepNotices(parts))
     started.push(await startCompactReadings(parts, telemetry.store))
     started.push(startDemonstrationPast(parts))
+    started.push(startTakeInFiles(parts))
   } catch (error) {
     await stop()
     throw error

@@ -4,6 +4,7 @@ import { sessionCookieName } from '../config/sessionCookie.ts'
 import { accountRoutes } from './accounts.ts'
 import { alertRoutes } from './alerts.ts'
 import { auditRoutes } from './audits.ts'
+import { auxiliaryRoutes } from './auxiliary.ts'
 import { capRoutes } from './cap.ts'
 import { clockOffsetRoutes } from './clockOffsets.ts'
 import { deploymentRoutes } from './deployments.ts'
@@ -31,6 +32,7 @@ import { stationKeyRoutes } from './stationKeys.ts'
 import { stationSetUpRoutes } from './stationSetUp.ts'
 import { stationRoutes } from './stations.ts'
 import { watchRulesRoutes } from './watchRules.ts'
+import { uploadRoutes } from './uploads.ts'
 
 const features: ((parts: Parts) => Route[])[] = [
   installationRoutes,
@@ -42,6 +44,8 @@ const features: ((parts: Parts) => Route[])[] = [
   stationSetUpRoutes,
   deploymentRoutes,
   sensorRoutes,
+  uploadRoutes,
+  auxiliaryRoutes,
   stationKeyRoutes,
   stationHealthRoutes,
   runRoutes,

@@ -22,6 +22,8 @@ export interface News {
   'station.changed': { stationId: number }
   /** Somebody tries to connect as a station, or how far it came changed. */
   'connection.changed': ConnectionAttempt
+  /** A file that was brought in is to be checked or stored. */
+  'upload.ordered': { uploadId: number }
   /** A key was revoked. */
   'stationKey.revoked': { stationId: number; keyId: number }
   'job.progressed': LongJobView

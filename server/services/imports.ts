@@ -14,13 +14,14 @@ import { packImport } from './readings/importedMinutes.ts'
 import type { Imported, ImportFault, ImportRow } from './readings/importedMinutes.ts'
 import { holdStation } from './readings/lanes.ts'
 import { durableUntil, noteDurable } from './readings/links.ts'
-import { loadDeployments, loadStationFacts } from './readings/station.ts'
+import { loadDeployments, loadSampleRates, loadStationFacts } from './readings/station.ts'
 import type { StationFacts } from './readings/station.ts'
 import { inTransaction } from './transaction.ts'
 
 const minuteMs = 60_000
 const futureSlackMs = 2_000
 
+export { listImports, readImport } from './imports/list.ts'
 export type { ImportFault, ImportRow }
 
 export interface ImportOrder {
@@ -33,6 +34,14 @@ export interface ImportOrder {
   fileName: string
   /** Null: the program itself. */
   personId: number | null
+  /** What was found wrong while the rows were read, filled as they are; with any of them nothing is stored. */
+  readFaults?: readonly ImportFault[]
+  /** Of the file; absent: of what the rows hold. */
+  fileHash?: Buffer
+  /** A time within the rows: by which settings they were taken; absent: by those of now. */
+  takenAt?: Date
+  /** Written in the transaction that stores. */
+  noteStored?: (outcome: ImportOutcome, transaction: Transaction) => Promise<void>
 }
 
 export interface ImportOutcome {
@@ -44,19 +53,63 @@ export interface ImportOutcome {
 }
 
 export async function importReadings(parts: Parts, order: ImportOrder): Promise<ImportOutcome> {
-  const station = await loadStationFacts(order.stationId, parts.clock.now())
+  const { station, imported, deploymentAt } = await packed(parts, order)
+  if (imported.faults.length > 0) return fail(parts, order, imported)
+  return holdStation(station.id, () => store(parts, order, station, imported, deploymentAt))
+}
+
+export interface ImportForecast {
+  counts: ImportOutcome['counts']
+  faults: ImportFault[]
+  /** ms since 1970 UTC; null for no rows. */
+  span: { from: number; to: number } | null
+}
+
+/** What storing would do: nothing is written. */
+export async function foretellImport(parts: Parts, order: ImportOrder): Promise<ImportForecast> {
+  const { station, imported, deploymentAt } = await packed(parts, order)
+  const span = spanOf(station, imported)
+  const none = { stored: 0, repeated: 0, conflicting: 0 }
+  const { rows, faults } = imported
+  if (faults.length > 0) return { counts: { rows, minutes: imported.minutes.length, ...none }, faults, span }
+  const making = { station, source: order.source, importId: 0, commitId: 0, deploymentAt }
+  const { counts, added } = await storeMinutes(imported.minutes, making)
+  return { counts: { rows, minutes: added.length, ...counts }, faults, span }
+}
+
+function spanOf({ sampleRate }: StationFacts, { minutes }: Imported): { from: number; to: number } | null {
+  const [first, last] = [minutes[0], minutes.at(-1)]
+  return first && last ? { from: first.startsAt, to: last.startsAt + (last.length / sampleRate) * 1000 } : null
+}
+
+async function packed(parts: Parts, order: ImportOrder) {
+  const station = await loadStationFacts(order.stationId, order.takenAt ?? parts.clock.now())
   if (!station) throw notFound('station', order.stationId)
-  const deployments = await loadDeployments(order.stationId)
+  const [deployments, rateAt] = await Promise.all([loadDeployments(order.stationId), loadSampleRates(order.stationId)])
   const imported = await packImport(order.rows, {
     sampleRate: station.sampleRate,
     letters: order.letters,
-    faultAt: (minute) => faultAt(minute, order.letters, deployments, parts.clock.now().getTime()),
+    faultAt: (minute) =>
+      faultAt(minute, order.letters, deployments, parts.clock.now().getTime()) ??
+      rateFault(rateAt(minute), station.sampleRate),
   })
-  if (imported.faults.length > 0) return fail(parts, order, imported)
-  return holdStation(station.id, () =>
-    store(parts, order, station, imported, (time) => deployments.at(time)?.id ?? null),
-  )
+  const readFaults = order.readFaults ?? []
+  // Of rows that could not be read nothing can be said as a whole.
+  const own = imported.faults.filter(({ row }) => row !== null || readFaults.length === 0)
+  const faults = [...readFaults, ...own].sort((a, b) => (a.row ?? 0) - (b.row ?? 0))
+  return {
+    station,
+    imported: { ...imported, faults: faults.slice(0, mostFaults) },
+    deploymentAt: (time: number) => deployments.at(time)?.id ?? null,
+  }
 }
+
+const mostFaults = 100
+
+const rateFault = (inForce: number | null, sampleRate: number): string | null =>
+  inForce === null || inForce === sampleRate
+    ? null
+    : `the station was set to ${inForce} Hz then, and to ${sampleRate} Hz where the file begins: cut the file there`
 
 type Deployments = Awaited<ReturnType<typeof loadDeployments>>
 
@@ -73,7 +126,7 @@ const rowOf = (parts: Parts, order: ImportOrder, { contentHash }: Imported) => (
   stationId: order.stationId,
   kind: order.source === 'import' ? 'readings' : 'demonstration',
   fileName: order.fileName.slice(0, 255),
-  fileHash: contentHash,
+  fileHash: order.fileHash ?? contentHash,
   personId: order.personId,
   createdAt: parts.clock.now(),
   finishedAt: parts.clock.now(),
@@ -107,11 +160,13 @@ async function store(
     const making = { station, source: order.source, importId: row.id, commitId, deploymentAt }
     const stored = await storeMinutes(imported.minutes, making, transaction)
     const counts = { rows: imported.rows, minutes: stored.added.length, ...stored.counts }
-    await row.update({ status: 'done', counts, finishedAt: parts.clock.now() }, { transaction })
+    await row.update({ status: 'done', counts: { ...counts, ...spanOf(station, imported) }, finishedAt: parts.clock.now() }, { transaction }) // prettier-ignore
     await noteDirtyMinutes(parts, station, stored.added, 'import', transaction)
+    const outcome = { importId: row.id, status: 'done' as const, counts, faults: [] }
+    await order.noteStored?.(outcome, transaction)
     const change = { personId: order.personId, action: 'import.store', entity: 'import', entityId: row.id }
     await recordAudit(parts, { ...change, after: { fileName: order.fileName, ...counts } }, transaction)
-    return { outcome: { importId: row.id, status: 'done' as const, counts, faults: [] }, added: stored.added }
+    return { outcome, added: stored.added }
   })
   announce(parts, station, imported, added)
   return outcome
@@ -141,7 +196,12 @@ function announce({ bus }: Parts, { id, sampleRate }: StationFacts, { minutes }:
 }
 
 /** Takes the parts of an import out again and has their windows computed anew. */
-export async function undoImport(parts: Parts, importId: number, personId: number | null): Promise<void> {
+export async function undoImport(
+  parts: Parts,
+  importId: number,
+  personId: number | null,
+  reason: string | null = null,
+): Promise<void> {
   const known = await Import.findByPk(importId)
   if (!known) throw notFound('import', importId)
   const station = await loadStationFacts(known.stationId, parts.clock.now())
@@ -161,11 +221,19 @@ export async function undoImport(parts: Parts, importId: number, personId: numbe
         transaction,
       )
       await execute(parts.sequelize, `DELETE FROM readingBlocks WHERE ${blocks}`, values, transaction)
+      await execute(parts.sequelize, `DELETE FROM auxiliaryReadings WHERE ${blocks}`, values, transaction)
       await noteDirtyMinutes(parts, station, minutes.map(({ startsAt }) => startsAt.getTime()), 'undo', transaction) // prettier-ignore
       await row.update({ status: 'undone', undoneAt: parts.clock.now() }, { transaction })
       await recordAudit(
         parts,
-        { personId, action: 'import.undo', entity: 'import', entityId: importId, before: row.counts },
+        {
+          personId,
+          action: 'import.undo',
+          entity: 'import',
+          entityId: importId,
+          before: row.counts,
+          after: { reason },
+        },
         transaction,
       )
     }),

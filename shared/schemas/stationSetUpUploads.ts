@@ -22,8 +22,23 @@ const time = z.iso.datetime()
 /** `readings`: the array's sensors. The others: one value a row. */
 export const uploadKind = z.enum(['readings', 'auxiliary'])
 
-/** To the unit that the sensor's kind is stored in: decibars (pressure) or metres (surface). */
-export const readingUnit = z.enum(['m', 'cm', 'mm', 'ft', 'dbar', 'bar', 'mbar', 'hPa', 'kPa', 'Pa', 'psi'])
+/** Turned into what is stored: decibars (pressure), metres (surface, levels), pascals (barometer), m/s and degrees (wind). */
+export const readingUnit = z.enum([
+  'm',
+  'cm',
+  'mm',
+  'ft',
+  'dbar',
+  'bar',
+  'mbar',
+  'hPa',
+  'kPa',
+  'Pa',
+  'psi',
+  'm/s',
+  'kn',
+  '°',
+])
 export type ReadingUnit = z.infer<typeof readingUnit>
 
 export const timeForm = z.enum(['iso', 'epochSeconds', 'epochMilliseconds'])

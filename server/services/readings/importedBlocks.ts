@@ -29,11 +29,11 @@ export interface BlockCounts {
   conflicting: number
 }
 
-/** Writes them and answers the counts of samples and the starts of the minutes that something was added to. */
+/** Writes them (without a transaction it only looks) and answers the counts of samples and the starts of the minutes that something was added to. */
 export async function storeMinutes(
   minutes: readonly ImportedMinute[],
   making: BlockMaking,
-  transaction: Transaction,
+  transaction?: Transaction,
 ): Promise<{ counts: BlockCounts; added: number[] }> {
   const counts: BlockCounts = { stored: 0, repeated: 0, conflicting: 0 }
   const added: number[] = []
@@ -42,16 +42,16 @@ export async function storeMinutes(
     const from = some[0]?.startsAt ?? 0
     const to = (some.at(-1)?.startsAt ?? 0) + minuteMs
     const stored = await loadParts(making.station.id, from, to, undefined, transaction)
-    const parts = await newestParts(making.station.id, from, to, transaction)
+    const parts = transaction ? await newestParts(making.station.id, from, to, transaction) : new Map<number, number>()
     const blocks: Block[] = []
     for (const minute of some) {
       const kept = remainderOf(minute, stored, counts)
       if (!kept) continue
       added.push(minute.startsAt)
       counts.stored += kept.present
-      blocks.push(blockOf(kept, minute, (parts.get(minute.startsAt) ?? -1) + 1, making))
+      if (transaction) blocks.push(blockOf(kept, minute, (parts.get(minute.startsAt) ?? -1) + 1, making))
     }
-    await insertBlocks(blocks, transaction)
+    if (transaction) await insertBlocks(blocks, transaction)
   }
   return { counts, added }
 }

@@ -12,6 +12,8 @@ export interface ImportRow {
   timeMs: number
   /** One a letter, metres or decibars; null and NaN are missing. */
   values: readonly (number | null)[]
+  /** Of the file, counted from 1; absent: the rows are counted. */
+  line?: number
 }
 
 export interface ImportFault {
@@ -56,6 +58,7 @@ export async function packImport(
   const hash = createHash('sha256')
   let open: { span: SampleSpan; next: number; last: number; present: number } | null = null
   let count = 0
+  let at = 0
   let single = 0
   let before = -Infinity
 
@@ -78,12 +81,13 @@ export async function packImport(
     return { span: emptySpan(sampleRate, first, letters, next - first), next, last: slot, present: 0 }
   }
 
-  function note(reason: string, row: number | null = count): void {
+  function note(reason: string, row: number | null = at): void {
     if (faults.length < mostFaults) faults.push({ row, reason })
   }
 
-  for await (const { timeMs, values } of rows) {
+  for await (const { timeMs, values, line } of rows) {
     count += 1
+    at = line ?? count
     const slot = nearestSlot(timeMs, sampleRate)
     const wrong = rowFault(slot, before, values, letters)
     if (wrong !== null) {

@@ -56,6 +56,12 @@ async function sensorsOf(deploymentId: number): Promise<StationSensor[]> {
   return places.map(({ sensorId, letter }) => ({ id: sensorId, letter, kind: kinds.get(sensorId) ?? 'pressure' }))
 }
 
+/** The sample rate in force at a time (ms since 1970 UTC), Hz; null where no version says. */
+export async function loadSampleRates(stationId: number): Promise<(timeMs: number) => number | null> {
+  const versions = await StationSettings.findAll({ where: { stationId }, order: newestFirst })
+  return (timeMs) => versions.find(({ validFrom }) => validFrom.getTime() <= timeMs)?.sampleRate ?? null
+}
+
 export interface Deployments {
   /** The deployment in force at a time; null before the first. */
   at(timeMs: number): { id: number; letters: string[] } | null
