@@ -8,8 +8,17 @@ import { systemTitle } from '../../../shared/waveSystemNames.ts'
 
 /** `Last good 14:10 UTC: swell 1.6 m, 12.2 s, 8.2 m/s, from 232° T, toward 052° T.` */
 export function lastGoodWords(lastGood: CurrentEstimate | null, nowMs: number, withSpeed = true): string {
-  const lead = lastGood?.systems[0]
-  if (!lastGood || !lead) return 'No good figure is known from before.'
+  return lastGood?.systems[0] ? `Last good ${wordsOf(lastGood, nowMs, withSpeed)}` : unknown
+}
+
+/** Of a direction that became ambiguous: `Held since 14:10 UTC: swell 1.6 m, from 232° T, toward 052° T.` */
+export const heldWords = (lastGood: CurrentEstimate | null, nowMs: number): string =>
+  lastGood?.systems[0] ? `Held since ${wordsOf(lastGood, nowMs, true)}` : unknown
+
+const unknown = 'No good figure is known from before.'
+
+function wordsOf(lastGood: CurrentEstimate, nowMs: number, withSpeed: boolean): string {
+  const [lead] = lastGood.systems
   const height = heightWords(lead.significantWaveHeight, heightPlaces(lead.significantWaveHeight))
   const name = systemTitle(lead, lastGood.systems).toLowerCase()
   const figures = [
@@ -17,5 +26,5 @@ export function lastGoodWords(lastGood: CurrentEstimate | null, nowMs: number, w
     ...(withSpeed ? [seconds(lead.peakPeriod), speedWords(lead.speed)] : []),
     bothSenses(lead.toward),
   ]
-  return `Last good ${momentUtc(Date.parse(lastGood.windowEndsAt), nowMs)} UTC: ${figures.join(', ')}.`
+  return `${momentUtc(Date.parse(lastGood.windowEndsAt), nowMs)} UTC: ${figures.join(', ')}.`
 }

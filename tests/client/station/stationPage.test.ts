@@ -15,7 +15,11 @@ const end = Date.parse('2026-11-12T14:30:00.000Z')
 const none = { template: '<div />' }
 let page: VueWrapper | null = null
 
-beforeEach(() => setActivePinia(createPinia()))
+beforeEach(() => {
+  setActivePinia(createPinia())
+  // The stores are filled by hand.
+  vi.stubGlobal('fetch', () => Promise.reject(new TypeError('no server')))
+})
 afterEach(() => {
   page?.unmount()
   page = null
