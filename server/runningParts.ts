@@ -11,6 +11,8 @@ import { startJudgeLimits } from './jobs/judgeLimits.ts'
 import { startKeepNotices } from './jobs/keepNotices.ts'
 import { startKeepSeriesDays } from './jobs/keepSeriesDays.ts'
 import { startRecompute } from './jobs/recompute.ts'
+import { startNoteDatabaseSize } from './jobs/noteDatabaseSize.ts'
+import { startNoteOverdueBulletins } from './jobs/noteOverdueBulletins.ts'
 import { startRetention } from './jobs/retention.ts'
 import { startTakeInFiles } from './jobs/takeInFiles.ts'
 import { startSealAudits } from './jobs/sealAudits.ts'
@@ -32,8 +34,10 @@ export async function startRunningParts(parts: Parts, server: Server): Promise<S
     started.push(await startRetention(parts))
     started.push(await startSealAudits(parts))
     started.push(await startForgetSessions(parts))
+    started.push(await startNoteDatabaseSize(parts))
     started.push(await startDeliverMail(parts))
     started.push(startEscalate(parts))
+    started.push(startNoteOverdueBulletins(parts))
     // First, for it knows how far each station's readings reach.
     const telemetry = await startTelemetry({ ...parts, upgrades })
     started.push(telemetry)

@@ -39,12 +39,14 @@ export async function startDeliverMail(parts: Parts, options: DeliverMailOptions
 
   async function deliver(): Promise<void> {
     const { portName, timeZone } = await settingInForce(parts, 'port')
+    const { emergencyLine } = await settingInForce(parts, 'contact')
+    const { name: senderName } = await settingInForce(parts, 'sender')
     await recoverLeases(parts)
     const isDemonstration = parts.environment.installationKind === 'demonstration'
     const { publicUrl } = parts.environment
     const histories = createHistories(parts)
     const around = async (letter: Leased): Promise<Surroundings> => ({
-      ...{ publicUrl, portName, timeZone, isDemonstration },
+      ...{ publicUrl, portName, timeZone, isDemonstration, emergencyLine, senderName },
       history: await histories.of(letter),
     })
     // In a flood the most serious go out while the others are still being queued.

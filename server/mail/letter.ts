@@ -36,6 +36,10 @@ export interface Surroundings {
   portName: string
   timeZone: string
   isDemonstration: boolean
+  /** Whom to call in an emergency; empty: nothing stands there. */
+  emergencyLine?: string
+  /** Before the sender's address; empty: as the configuration has it. */
+  senderName?: string
   /** The last hours of the alert's quantity; null: none to be shown. */
   history: (History & { unit: string; decimals: number }) | null
 }
@@ -71,10 +75,11 @@ function afterwardsOf({ receipt, next, isAcknowledged }: Letter, { timeZone }: S
   return [pageWords, receiptWords, ...(follows === '' ? [] : [`Without a receipt ${follows}.`])]
 }
 
-function footOf(letter: Letter, { timeZone }: Surroundings): string[] {
+function footOf(letter: Letter, { timeZone, emergencyLine }: Surroundings): string[] {
   const { personName, standsInFor, messageId, alertId, createdAt, receipt, mayBeCopy } = letter
   const alert = alertId === null ? '' : `Alert ${numbered(alertId)}, `
   return [
+    ...(emergencyLine ? [emergencyLine.replace(/[.!]?$/, '.')] : []),
     standsInFor === null
       ? `You receive this as ${personName}.`
       : `You receive this as ${personName}, deputy of ${standsInFor}, who cannot be reached now.`,

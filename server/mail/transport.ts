@@ -21,6 +21,8 @@ export interface TransportOptions {
 export interface Envelope {
   to: string
   messageIdHeader: string
+  /** Before the sender's address; empty: as the configuration has it. */
+  senderName?: string
   date: Date
   /** Asked when the server is ready for the e-mail itself; false: it is not sent. */
   beforeData(): Promise<boolean>
@@ -148,9 +150,9 @@ function talk(
   })
 }
 
-function compose(written: Written, { to, messageIdHeader, date }: Envelope, from: string): Promise<Buffer> {
+function compose(written: Written, { to, messageIdHeader, senderName, date }: Envelope, from: string): Promise<Buffer> {
   const composer = new MailComposer({
-    from,
+    from: senderName ? { name: senderName, address: addressIn(from) } : from,
     to,
     subject: written.subject,
     text: written.text,

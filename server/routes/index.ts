@@ -5,6 +5,7 @@ import { accountRoutes } from './accounts.ts'
 import { alertRoutes } from './alerts.ts'
 import { auditRoutes } from './audits.ts'
 import { auxiliaryRoutes } from './auxiliary.ts'
+import { bulletinRoutes } from './bulletins.ts'
 import { capRoutes } from './cap.ts'
 import { clockOffsetRoutes } from './clockOffsets.ts'
 import { deploymentRoutes } from './deployments.ts'
@@ -14,6 +15,7 @@ import { limitRoutes } from './limits.ts'
 import { listRoutes } from './lists.ts'
 import { messageRoutes } from './messages.ts'
 import { noticeRoutes } from './notices.ts'
+import { observationRoutes } from './observations.ts'
 import { withOpenApi } from './openApi.ts'
 import { ownAccountRoutes } from './ownAccount.ts'
 import { passphraseLinkRoutes } from './passphraseLinks.ts'
@@ -25,8 +27,10 @@ import { secondFactorRoutes } from './secondFactor.ts'
 import { runRoutes } from './runs.ts'
 import { sensorRoutes } from './sensors.ts'
 import { sessionRoutes } from './session.ts'
+import { settingVersionRoutes } from './settingVersions.ts'
 import { settingsRoutes } from './settings.ts'
 import { setUpRoutes } from './setUp.ts'
+import { systemRoutes } from './system.ts'
 import { stationHealthRoutes } from './stationHealth.ts'
 import { stationKeyRoutes } from './stationKeys.ts'
 import { stationSetUpRoutes } from './stationSetUp.ts'
@@ -61,9 +65,13 @@ const features: ((parts: Parts) => Route[])[] = [
   secondFactorRoutes,
   passphraseLinkRoutes,
   auditRoutes,
+  settingVersionRoutes,
+  systemRoutes,
   receiptRoutes,
+  bulletinRoutes,
   placeRoutes,
   noticeRoutes,
+  observationRoutes,
   watchRulesRoutes,
 ]
 

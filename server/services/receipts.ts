@@ -19,6 +19,9 @@ import { writeSystemLine } from './watchLog.ts'
 
 export { issueReceiptToken } from './receipts/issue.ts'
 
+/** Without what the office has set, which the door adds. */
+type Receipt = Omit<ReceiptView, 'emergencyLine'>
+
 interface Link {
   row: LinkToken
   person: Person
@@ -35,12 +38,12 @@ interface News {
 }
 
 /** Changes nothing. */
-export async function showReceipt(parts: Parts, token: string): Promise<ReceiptView> {
+export async function showReceipt(parts: Parts, token: string): Promise<Receipt> {
   return present(parts, await linkOf(parts, token))
 }
 
 /** Once; asked again it answers the same. */
-export async function confirmReceipt(parts: Parts, token: string): Promise<ReceiptView> {
+export async function confirmReceipt(parts: Parts, token: string): Promise<Receipt> {
   const alertIds = await inTransaction(parts.sequelize, async (transaction) => {
     const link = await linkOf(parts, token, transaction)
     if (link.row.usedAt) return []
@@ -151,7 +154,7 @@ async function writeDown(
   await recordAudit(parts, { ...change, personId: person.id, after: { receivedAt: now.toISOString() } }, transaction)
 }
 
-async function present(parts: Parts, { row, person, message, news }: Link): Promise<ReceiptView> {
+async function present(parts: Parts, { row, person, message, news }: Link): Promise<Receipt> {
   const [first, ...others] = news
   if (!first || !message.content) throw unknownLink()
   const ids = news.flatMap(({ alert }) => alert.acknowledgedById ?? [])

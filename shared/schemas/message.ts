@@ -19,6 +19,8 @@ export const messageKind = z.enum([
   'alone',
   /** A flag, closure or advisory: set, extended, withdrawn, about to expire, expired. */
   'notice',
+  /** A bulletin issued or cancelled, or its proof to oneself. */
+  'bulletin',
 ])
 export type MessageKind = z.infer<typeof messageKind>
 
@@ -116,6 +118,8 @@ export const receiptView = z.object({
   isDemonstration: z.boolean(),
   expiresAt: time,
   isExpired: z.boolean(),
+  /** Whom to call here in an emergency, as the office has set it; empty: nothing was set. */
+  emergencyLine: z.string(),
   confirmedAt: time.nullable(),
   content: messageContent,
   alert: receiptAlert,

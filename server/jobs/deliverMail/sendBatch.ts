@@ -37,10 +37,12 @@ type Sent = Outcome & { isServerDown?: boolean }
 async function sendOne(parts: Parts, letter: Leased, transport: Transport, around: Batch['around']): Promise<Sent> {
   const { logger, clock } = parts
   try {
-    const written = await writeLetter(letter, await around(letter))
+    const surroundings = await around(letter)
+    const written = await writeLetter(letter, surroundings)
     const result = await transport.send(written, {
       to: letter.address,
       messageIdHeader: letter.messageIdHeader,
+      senderName: surroundings.senderName ?? '',
       date: clock.now(),
       beforeData: () => handOver(parts, letter),
     })

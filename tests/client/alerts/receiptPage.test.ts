@@ -15,6 +15,7 @@ const receipt = (changes: Partial<ReceiptView> = {}): ReceiptView => ({
   isDemonstration: true,
   expiresAt: '2026-11-13T14:20:00.000Z',
   isExpired: false,
+  emergencyLine: 'In an emergency call the harbour watch, channel 12.',
   confirmedAt: null,
   content: {
     ...{ isExercise: false, isDemonstration: true, portName: 'Marrowick', priority: 'high' },
