@@ -17,6 +17,7 @@ ${scenarios.map(({ name, summary }) => `                        ${name.padEnd(wi
                       now with --write-past)
   --continue FILE     go on with the sea of a past written earlier (its manifest.json), from where it ended
   --stations CODES    some of ${demonstrationStations.map(({ code }) => code).join(',')} (default all)
+  --station-file FILE the station of a file instead of these, as GET /api/stations/ID/stationFile gives it
 
 The stream
   --url URL           telemetry address of the server

@@ -4,6 +4,7 @@ import { parseArgs } from 'node:util'
 import { z } from 'zod'
 import { pastManifest } from '../shared/demonstration/past.ts'
 import { demonstrationStations, type DemonstrationStation } from '../shared/demonstration/stations.ts'
+import { stationFile } from '../shared/schemas/stationFile.ts'
 import { scenarioNamed, scenarios } from './scenarios/index.ts'
 import type { Scenario } from './scenarios/scenario.ts'
 import { parseMoment, parseSpan } from './timeWords.ts'
@@ -58,6 +59,7 @@ const known = {
   anchor: { type: 'string' },
   continue: { type: 'string' },
   stations: { type: 'string' },
+  'station-file': { type: 'string' },
   url: { type: 'string' },
   keys: { type: 'string' },
   state: { type: 'string' },
@@ -82,7 +84,7 @@ export function readOptions(args: string[], now: number): Options {
     throw new UsageError(`"${positionals[0]}" is no option; see --help`)
   if (values.replay !== undefined) return replayOptions(values, positionals, now)
   const sea = seaChoice(values, now)
-  const stations = chosenStations(values.stations)
+  const stations = values['station-file'] === undefined ? chosenStations(values.stations) : stationOfFile(values)
   if (values['write-past'] !== undefined) {
     const until = Math.floor((now - (values.backfill ? parseSpan(values.backfill, 'backfill') : 0)) / 60_000) * 60_000
     return {
@@ -156,6 +158,16 @@ function readJson<T>(file: string, option: string, schema: z.ZodType<T>, otherwi
   const parsed = schema.safeParse(content)
   if (!parsed.success) throw new UsageError(`--${option}: ${file} is ${otherwise}`)
   return parsed.data
+}
+
+/** A station that a server set up, or that somebody wrote down. */
+function stationOfFile({ stations, 'station-file': file = '' }: Given): DemonstrationStation[] {
+  if (stations !== undefined) throw new UsageError('--stations and --station-file exclude each other')
+  const { sensors, ...station } = readJson(file, 'station-file', stationFile, 'no station: see the API, stationFile')
+  if (![1, 2, 4, 8, 16].includes(station.sampleRate)) {
+    throw new UsageError(`--station-file: a sea at ${station.sampleRate} Hz cannot be made: 1, 2, 4, 8 or 16 Hz can`)
+  }
+  return [{ ...station, sensors: sensors.map(({ id, positionSd: _, ...sensor }) => ({ letter: id, ...sensor })) }]
 }
 
 function chosenStations(codes: string | undefined): DemonstrationStation[] {

@@ -1,12 +1,14 @@
 import { z } from 'zod'
 import type { Request, Response } from 'express'
 import { withReason } from '../../shared/schemas/alert.ts'
+import { stationFile } from '../../shared/schemas/stationFile.ts'
 import { stationChange, stationDraft, stationRecord, stationSettingsOrder, stationSettingsRecord } from '../../shared/schemas/stationSetUp.ts' // prettier-ignore
 import type { StationRecord } from '../../shared/schemas/stationSetUp.ts'
 import type { Parts } from '../config/parts.ts'
 import { changeStation, createStation, listSettingsVersions, listStationRecords, orderSettings, readStationRecord, restoreStation, retireStation } from '../services/stationSetUp.ts' // prettier-ignore
 import type { StationEdit } from '../services/stationSetUp.ts'
 import type { Caller } from '../services/sessions.ts'
+import { readStationFile } from '../services/stations.ts'
 import { versionIn } from './ifMatch.ts'
 import { idInPath } from './parameters.ts'
 import { route } from './registry.ts'
@@ -59,6 +61,15 @@ export const stationSetUpRoutes = (parts: Parts): Route[] => [
     params: stationInPath,
     answer: stationRecord,
     handle: async ({ params, response }) => withTag(response, await readStationRecord(parts, params.stationId)),
+  }),
+  route({
+    method: 'get',
+    path: '/api/stations/:stationId/stationFile',
+    action: read,
+    summary: 'The station and its array in force as a file, for a simulator or for analysing a recording',
+    params: stationInPath,
+    answer: stationFile,
+    handle: ({ params }) => readStationFile(parts, params.stationId),
   }),
   route({
     method: 'post',

@@ -1,12 +1,13 @@
 /** Stations with their arrays and settings. */
 import { Op } from 'sequelize'
 import type { DeploymentView, StationView } from '../../shared/schemas/station.ts'
+import type { StationFile } from '../../shared/schemas/stationFile.ts'
 import { stationSettingsContent } from '../../shared/schemas/stationSettings.ts'
 import type { StationSettingsView } from '../../shared/schemas/stationSettings.ts'
 import type { Parts } from '../config/parts.ts'
 import { Deployment, Station, StationSettings } from '../models/index.ts'
 import { select } from '../models/sql.ts'
-import { notFound } from './problems.ts'
+import { notFound, Refused } from './problems.ts'
 
 /** What stands in a station's own tables; link and estimates belong to others. */
 export type StationFacts = Omit<StationView, 'isLead' | 'link' | 'estimate' | 'lastGood'>
@@ -83,6 +84,24 @@ async function presentDeployments({ sequelize }: Parts, deployments: Deployment[
     waterDepth,
     sensors: rows.filter(({ deploymentId }) => deploymentId === id).map(({ deploymentId: _, ...sensor }) => sensor),
   }))
+}
+
+/** As a file: the array in force now. Throws 409 for a station without one. */
+export async function readStationFile(parts: Parts, stationId: number): Promise<StationFile> {
+  const { code, shortName, name, latitude, longitude, sampleRate, staleAfterSeconds, landSectors, deployment } = await readStation(parts, stationId) // prettier-ignore
+  if (!deployment) {
+    const detail = 'No array is in force at this station: put a deployment in force first.'
+    throw new Refused({ status: 409, code: 'station.notDeployed', title: 'No array', detail })
+  }
+  return {
+    ...{ code, shortName, name, latitude, longitude, sampleRate, staleAfterSeconds, landSectors },
+    waterDepth: deployment.waterDepth,
+    sensors: deployment.sensors.map(({ letter, positionSd, ...sensor }) => ({
+      ...sensor,
+      id: letter,
+      ...(positionSd > 0 && { positionSd }),
+    })),
+  }
 }
 
 /** The surveys of a station, newest first; one that another replaced is not among them. */

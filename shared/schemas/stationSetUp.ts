@@ -4,6 +4,7 @@
  *
  *   GET  /api/stationRecords                      all stations, retired ones too                 -> stationRecord[]
  *   GET  /api/stations/:stationId/record          one                                            -> stationRecord
+ *   GET  /api/stations/:stationId/stationFile     the array in force as a file (stationFile.ts); 409 without one -> stationFile
  *   POST /api/stations                            stationDraft                                   -> 201 stationRecord
  *   PUT  /api/stations/:stationId                 stationChange, If-Match "version"              -> stationRecord
  *   POST /api/stations/:stationId/retire          { reason }, If-Match                           -> stationRecord

@@ -70,6 +70,8 @@ describe('the command line', () => {
     { args: ['--scenario', 'calm'], sentence: 'there is no "calm"' },
     { args: ['--seed', 'x'], sentence: '--seed: "x" is no whole number' },
     { args: ['--stations', 'OL,XX'], sentence: '--stations: there is no "XX"' },
+    { args: ['--station-file', '/nowhere/station.json'], sentence: 'cannot be read' },
+    { args: ['--station-file', 'x', '--stations', 'OL'], sentence: 'exclude each other' },
     { args: ['--backfill', '25'], sentence: '--backfill: "25" is no span of time' },
     { args: ['--from', 'yesterday'], sentence: '--from: "yesterday" is no moment' },
     { args: ['--from', '2026-11-13T00:00:00Z'], sentence: 'lies in the future' },
