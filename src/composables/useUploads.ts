@@ -10,6 +10,8 @@ export function useUploads(stationId: number, kind: UploadKind) {
   const store = useStationSetUpUploads()
   const jobs = useJobs()
   const reading = useAttempt()
+  /** Apart from what is done with files that are here: one may be on its way meanwhile. */
+  const bringing = useAttempt()
   const acting = useAttempt()
   /** Share of the file that has left this computer; null: nothing is on its way. */
   const sentShare = ref<number | null>(null)
@@ -29,10 +31,10 @@ export function useUploads(stationId: number, kind: UploadKind) {
     const { signal } = stop
     sentShare.value = 0
     sending.value = file.name
-    const done = await acting.attempt(() =>
+    const done = await bringing.attempt(() =>
       store.send(stationId, kind, file, (share) => (sentShare.value = share), signal),
     )
-    if (!done && signal.aborted) acting.fault.value = `${file.name} was stopped on its way; nothing of it is kept.`
+    if (!done && signal.aborted) bringing.fault.value = `${file.name} was stopped on its way; nothing of it is kept.`
     sentShare.value = null
   }
   const halt = (): void => stop?.abort()
@@ -68,7 +70,7 @@ export function useUploads(stationId: number, kind: UploadKind) {
   })
 
   return {
-    ...{ reading, acting, sentShare, sending, uploads, imports, jobOf, isAtWork },
+    ...{ reading, bringing, acting, sentShare, sending, uploads, imports, jobOf, isAtWork },
     ...{ open, bring, halt, check, keep, discard, cancel, undo },
   }
 }
