@@ -30,6 +30,7 @@ const together = {
   alerts: 'limits',
   limits: 'alerts',
   notices: 'messages',
+  observations: 'places',
   people: 'messages|sessions|secondFactor',
   sessions: 'secondFactor',
   uploads: 'longJobs',

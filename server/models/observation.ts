@@ -1,6 +1,6 @@
 import { DataTypes, Model } from 'sequelize'
 import type { CreationOptional, InferAttributes, InferCreationAttributes, Sequelize } from 'sequelize'
-import type { ObservationKind } from '../../shared/schemas/placeObservation.ts'
+import type { ObservationKind } from '../../shared/schemas/placeLocalFit.ts'
 
 /** What somebody saw at a place. Yes is 1, no is 0; heights are metres. */
 export class Observation extends Model<InferAttributes<Observation>, InferCreationAttributes<Observation>> {

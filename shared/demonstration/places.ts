@@ -10,7 +10,7 @@ import type { Metres } from './coast.ts'
 
 const invented = 'invented for the demonstration'
 const surveyed = (value: number, sd: number | null, source = invented) => ({ value, sd, source })
-const tide = { nominalLevel: surveyed(0, 0.8, 'mean level, invented for the demonstration') }
+const usual = { nominalLevel: surveyed(0, 0.8, 'mean level, invented for the demonstration'), localFits: [] }
 const substitute = { relativeSd: 0.15, headingSd: 8 }
 
 /** Distance along and level of the bed, m. */
@@ -50,7 +50,7 @@ export const demonstrationPlaces: DemonstrationPlace[] = [
     ...{ code: 'EN', shortName: 'Entrance', name: 'Marrowick Entrance', team: 'harbour', at: [1180, 1820] },
     noticeLists: ['Harbour duty'],
     settings: (idOf) => ({
-      ...{ kind: 'entrance', substitute, ...tide, leadQuantity: 'crossSea', tideStationId: idOf('FW') },
+      ...{ kind: 'entrance', substitute, ...usual, leadQuantity: 'crossSea', tideStationId: idOf('FW') },
       stationOrder: [
         asMeasured(idOf('FW'), path([0, -11.6], [450, -10.4], [900, -9]), { from: 218, to: 270 }),
         asMeasured(idOf('OL'), path([0, -14.2], [700, -12.6], [1300, -10.8], [1850, -9]), { from: 218, to: 270 }),
@@ -66,7 +66,7 @@ export const demonstrationPlaces: DemonstrationPlace[] = [
     ...{ code: 'LA', shortName: 'Long Arm', name: 'Long Arm walk', team: 'harbour', at: [1610, 1620] },
     noticeLists: ['Harbour duty', 'Breakwater'],
     settings: (idOf) => ({
-      ...{ kind: 'breakwater', substitute, ...tide, leadQuantity: 'overtopping', tideStationId: idOf('FW') },
+      ...{ kind: 'breakwater', substitute, ...usual, leadQuantity: 'overtopping', tideStationId: idOf('FW') },
       stationOrder: [asMeasured(idOf('FW'), [], open), asMeasured(idOf('OL'), [], open)],
       ...{ form: 'rubbleSlope', crestLevel: surveyed(3.4, 0.05), seawardSlope: surveyed(1 / 1.5, 0.03) },
       ...{ roughness: surveyed(0.45, 0.03), toeBedLevel: surveyed(-7.2, 0.3), seawardNormal: 221 },
@@ -77,7 +77,7 @@ export const demonstrationPlaces: DemonstrationPlace[] = [
     ...{ code: 'B36', shortName: 'Berths 3–6', name: 'Berths 3–6', team: 'harbour', at: [1540, 2070] },
     noticeLists: ['Harbour duty'],
     settings: (idOf) => ({
-      ...{ kind: 'berth', substitute, ...tide, leadQuantity: 'longSwell', tideStationId: idOf('FW') },
+      ...{ kind: 'berth', substitute, ...usual, leadQuantity: 'longSwell', tideStationId: idOf('FW') },
       stationOrder: [throughMouth(idOf('FW'), 1), throughMouth(idOf('OL'), 0.85)],
       basin: { length: 300, width: 140, bedLevel: surveyed(-6, 0.2), mouth: 'between' },
       meanings: [
@@ -90,7 +90,7 @@ export const demonstrationPlaces: DemonstrationPlace[] = [
     ...{ code: 'PS', shortName: 'Pennow Sands', name: 'Pennow Sands', team: 'beach safety', at: [2525, 1205] },
     noticeLists: ['Beach patrol', 'Harbour duty'],
     settings: (idOf) => ({
-      ...{ kind: 'beach', substitute, ...tide, leadQuantity: 'breakerHeight', tideStationId: idOf('FW') },
+      ...{ kind: 'beach', substitute, ...usual, leadQuantity: 'breakerHeight', tideStationId: idOf('FW') },
       stationOrder: [
         overContours(idOf('PB'), 218, path([0, -7.4], [500, -5], [950, -2.5])),
         overContours(idOf('FW'), 218, path([0, -11.6], [700, -8], [1400, -5], [1850, -2.5])),
@@ -103,7 +103,7 @@ export const demonstrationPlaces: DemonstrationPlace[] = [
     ...{ code: 'OB', shortName: 'Oldcask Bay', name: 'Oldcask Bay', team: 'beach safety', at: [185, 2570] },
     noticeLists: ['Beach patrol'],
     settings: (idOf) => ({
-      ...{ kind: 'beach', substitute, ...tide, leadQuantity: 'breakerHeight', tideStationId: idOf('FW') },
+      ...{ kind: 'beach', substitute, ...usual, leadQuantity: 'breakerHeight', tideStationId: idOf('FW') },
       stationOrder: [overContours(idOf('OL'), 200, []), overContours(idOf('FW'), 200, [])],
       ...{ shoreNormal: 200, foreshoreSlope: surveyed(0.04, 0.01), nearshoreSlope: surveyed(0.015, 0.004) },
       ...{ sediment: 'sand', patrol, ripReasons },

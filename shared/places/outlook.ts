@@ -18,6 +18,7 @@ import type { KindOutlook } from './entrance.ts'
 import { chooseFeed, refusalOf } from './feed.ts'
 import type { Feed, FeedStation } from './feed.ts'
 import type { Grounds } from './flags.ts'
+import { withLocalFits } from './localFits.ts'
 import { seaHere, widened, withHeightErrors } from './seaHere.ts'
 
 export interface OutlookQuestion {
@@ -56,12 +57,14 @@ export function outlookOf({ at, settings, stations, tide }: OutlookQuestion): Ou
     const content = { ...nothingKnown(tide, arrivals), reason: `${feed.station.name} has no height.` }
     return { content, feed }
   }
-  const { systems, sea, ...kind } = computed
+  const { systems, sea, ...computedKind } = computed
+  const fitted = withLocalFits(computedKind.figures, settings)
+  const kind = { ...computedKind, figures: fitted.figures }
   const lead = kind.figures.find(({ quantity }) => quantity === settings.leadQuantity)
   return {
     content: {
       ...kind,
-      ...{ reason: null, substituteWords, tide, arrivals },
+      ...{ reason: null, substituteWords, tide, arrivals, chances: fitted.chances },
       qualityFlag: lead?.qualityFlag ?? 4,
       sea: sea && { ...sea, systems },
     },
@@ -74,7 +77,7 @@ const wideningWords = ({ kind, substitute: { relativeSd, headingSd } }: PlaceSet
 
 const nothingKnown = (tide: TideNow, arrivals: OutlookContent['arrivals']): Omit<OutlookContent, 'reason'> => ({
   ...{ qualityFlag: 9, substituteWords: null, tide, sea: null, arrivals },
-  ...{ figures: [], courses: [], rip: null, basin: [], remarks: [] },
+  ...{ figures: [], courses: [], rip: null, chances: [], basin: [], remarks: [] },
 })
 
 type Computed = KindOutlook & {

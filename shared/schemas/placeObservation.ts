@@ -4,28 +4,22 @@
  * GET  /api/places/:placeId/observations?before=  places.read           -> { observations: observationView[], next, counts }
  * POST /api/places/:placeId/observations          observations.change   observationDraft -> 201 observationView
  * POST /api/observations/:observationId/withdraw  observations.change   { reason } -> observationView (kept, left out of fits)
- * GET  /api/places/:placeId/localFits             places.read           -> { fits: localFitView[] } one for each kind of observation
+ * GET  /api/places/:placeId/localFits             places.read           -> { fits: localFitView[] } one for each kind of observation of the place's form
  * POST /api/places/:placeId/localFits             places.change         localFitAdoption, If-Match -> placeView (a new settings version)
  * Partners log at places of their team (403 `observation.notYourTeam`).
  */
 import { z } from 'zod'
 import { personName } from './limit.ts'
-import { placeQuantityKey } from './placeQuantity.ts'
+import { observationKind } from './placeLocalFit.ts'
+import type { ObservationKind } from './placeLocalFit.ts'
 import type { PlaceKind, PlaceQuantityKey } from './placeQuantity.ts'
+
+export type { ObservationKind } from './placeLocalFit.ts'
 
 const time = z.iso.datetime()
 
-/** Heights and the like are numbers in SI; sightings are yes or no. */
-export const observationKind = z.enum([
-  'breakerHeight',
-  'runUp',
-  'crossSea',
-  'longSwell',
-  'ripSeen',
-  'overtoppingSeen',
-  'surgeTrouble',
-])
-export type ObservationKind = z.infer<typeof observationKind>
+/** Heights are metres; sightings are yes or no. */
+export const isSighting = (kind: ObservationKind): boolean => /^(ripSeen|overtoppingSeen|surgeTrouble)$/.test(kind)
 
 export interface ObservationField {
   kind: ObservationKind
@@ -107,12 +101,12 @@ export const observationDraft = z
     note: z.string().trim().max(500),
   })
   .superRefine(({ kind, value }, context) => {
-    const isSighting = kind === 'ripSeen' || kind === 'overtoppingSeen' || kind === 'surgeTrouble'
-    if (isSighting !== (typeof value === 'boolean')) {
+    const isYesOrNo = isSighting(kind)
+    if (isYesOrNo !== (typeof value === 'boolean')) {
       context.addIssue({
         code: 'custom',
         path: ['value'],
-        message: isSighting ? 'must be yes or no' : 'must be metres',
+        message: isYesOrNo ? 'must be yes or no' : 'must be metres',
       })
     }
   })
@@ -138,6 +132,4 @@ export const observationList = z.object({
   next: z.number().int().nullable(),
   counts: z.array(z.object({ kind: observationKind, count: z.number().int(), withPrediction: z.number().int() })),
 })
-
-/** Which quantity an observation's fit changes. */
-export const fittedQuantity = placeQuantityKey
+export type ObservationList = z.infer<typeof observationList>

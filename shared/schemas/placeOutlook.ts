@@ -8,6 +8,7 @@
 import { z } from 'zod'
 import { figure } from '../hazards/figure.ts'
 import { qualityFlag } from './estimate.ts'
+import { observationKind } from './placeLocalFit.ts'
 import { placeQuantityKey } from './placeQuantity.ts'
 
 const time = z.iso.datetime()
@@ -126,6 +127,16 @@ export const outlookContent = z.object({
   courses: z.array(courseOutlook),
   arrivals: z.array(arrival.omit({ stationName: true })),
   rip: ripCaution.omit({ caution: true }).nullable(),
+  /** How often it was logged here at such figures, by an adopted local fit: 0 to 1; null with the reason outside what was observed. */
+  chances: z.array(
+    z.object({
+      observed: observationKind,
+      label: z.string(),
+      chance: z.number().nullable(),
+      words: z.string(),
+      count: z.number().int(),
+    }),
+  ),
   /** The basin's own periods, longest first. */
   basin: z.array(z.object({ kind: z.enum(['closed', 'open']), mode: z.number().int(), period: figure })),
   /** Sentences that belong beside the figures, such as that any overtopping means no access. */

@@ -4,6 +4,7 @@
  */
 import { z } from 'zod'
 import { timeSpan } from './limit.ts'
+import { adoptedFit } from './placeLocalFit.ts'
 import { placeQuantityKey, quantitiesOfKind } from './placeQuantity.ts'
 
 const bearing = z.number().min(0).lt(360)
@@ -95,6 +96,14 @@ const common = {
   /** Still water above datum where no level or tide is known. */
   nominalLevel: level,
   leadQuantity: placeQuantityKey,
+  /** Coefficients of the place's own, adopted from logged observations; one for each kind of observation at most. */
+  localFits: z
+    .array(adoptedFit)
+    .max(7)
+    .refine((fits) => new Set(fits.map(({ observed }) => observed)).size === fits.length, {
+      message: 'must have each kind of observation once',
+    })
+    .default([]),
 }
 
 /** Bed at the place. */
