@@ -49,6 +49,9 @@ export type Action =
   | 'profile.change'
   | 'messages.read'
   | 'deliveries.change'
+  | 'bulletins.read'
+  | 'bulletins.change'
+  | 'publicBulletins.read'
   | 'receipts.read'
   | 'receipts.confirm'
   | 'places.read'
@@ -122,6 +125,10 @@ const rows: Record<Action, readonly Role[] | typeof anybody> = {
   'profile.change': everyone,
   'messages.read': ['admin', 'operator'],
   'deliveries.change': ['operator'],
+  'bulletins.read': ['admin', 'operator'],
+  'bulletins.change': ['operator'],
+  // While the office has switched it on; without anybody's name.
+  'publicBulletins.read': anybody,
   // The token in the link says who.
   'receipts.read': anybody,
   'receipts.confirm': anybody,
@@ -166,5 +173,6 @@ export function actionOfRoom(room: string): Action | null {
   if (room === 'places' || /^place:\d+$/.test(room)) return 'places.read'
   if (room === 'limits') return 'limits.read'
   if (room === 'messages') return 'messages.read'
+  if (room === 'watch') return 'log.read'
   return null
 }

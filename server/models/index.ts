@@ -7,6 +7,7 @@ import { defineAudit } from './audit.ts'
 import { defineAuditCheck } from './auditCheck.ts'
 import { defineAuxiliaryReading } from './auxiliaryReading.ts'
 import { defineBackupRun } from './backupRun.ts'
+import { defineBulletin } from './bulletin.ts'
 import { defineClockOffset } from './clockOffset.ts'
 import { defineConflict } from './conflict.ts'
 import { defineDatabaseSize } from './databaseSize.ts'
@@ -59,6 +60,7 @@ export { Audit } from './audit.ts'
 export { AuditCheck } from './auditCheck.ts'
 export { AuxiliaryReading } from './auxiliaryReading.ts'
 export { BackupRun } from './backupRun.ts'
+export { Bulletin } from './bulletin.ts'
 export { ClockOffset } from './clockOffset.ts'
 export { Conflict } from './conflict.ts'
 export { DatabaseSize } from './databaseSize.ts'
@@ -112,6 +114,7 @@ const definitions = [
   defineAuditCheck,
   defineAuxiliaryReading,
   defineBackupRun,
+  defineBulletin,
   defineClockOffset,
   defineConflict,
   defineDatabaseSize,

@@ -35,6 +35,8 @@ export interface News {
   'place.changed': { placeId: number }
   'alert.changed': { alertId: number }
   'limit.changed': { limitId: number }
+  /** A bulletin was drafted, changed, issued, cancelled or thrown away, or its next issue is overdue. */
+  'bulletin.changed': { bulletinId: number }
   /** An e-mail was written, or became what it is now for somebody. */
   'message.changed': { messageId: number; alertId: number | null }
 }

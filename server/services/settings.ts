@@ -57,6 +57,12 @@ const shapes = {
   beachFlags: flagSet,
   /** How long before its end the watch and its lists are told of a notice about to expire. */
   notices: z.strictObject({ warnMinutes: z.number().int().min(5).max(1440) }),
+  bulletins: z.strictObject({
+    /** A second pair of eyes before a bulletin goes out or, alone, a written reason. */
+    asksSecondPerson: z.boolean(),
+    /** A page without sign-in shows them to everybody. */
+    isPublic: z.boolean(),
+  }),
   /** Months kept besides the current one; null keeps all. */
   retention: z.strictObject({
     readingBlocks: monthsKept,
@@ -83,6 +89,7 @@ const initial: Settings = {
   placeCautions: usualPlaceCautions,
   beachFlags: usualFlagSet,
   notices: { warnMinutes: 30 },
+  bulletins: { asksSecondPerson: true, isPublic: false },
   retention: { readingBlocks: 25, stationHealthHours: 25, estimates: null, estimateDetails: 25 },
 }
 

@@ -2,16 +2,18 @@
  * Bulletins: what the sea was measured to do, in words, for many. A draft is edited; an issued one is frozen with its figures and is never
  * altered: it is replaced by the next of its chain, or cancelled. SI units; directions toward in degrees true; times ISO 8601 UTC.
  *
- * GET    /api/bulletins?before=&limit=          bulletins.read    -> { bulletins: bulletinView[], draft: bulletinView[] } newest first
- * GET    /api/bulletins/:id                     bulletins.read    -> bulletinView
- * POST   /api/bulletins                         bulletins.change  bulletinDraft -> 201 bulletinView
- * PUT    /api/bulletins/:id                     bulletins.change  bulletinDraft, If-Match -> bulletinView (drafts alone)
- * DELETE /api/bulletins/:id                     bulletins.change  If-Match -> 204 (drafts alone)
- * GET    /api/bulletins/figures                 bulletins.read    -> { figures: bulletinFigure[] } as they are now
- * POST   /api/bulletins/:id/issue               bulletins.change  bulletinIssue, If-Match -> bulletinView
- * POST   /api/bulletins/:id/cancel              bulletins.change  { reason }, If-Match -> bulletinView
- * POST   /api/bulletins/:id/proof               bulletins.change  -> 202, the e-mail to oneself
- * GET    /api/bulletins/public                  publicBulletin.read (anybody, while the office has switched it on) -> { bulletins: publicBulletin[] }
+ * GET    /api/bulletins?before=            bulletins.read    -> { drafts: bulletinView[], bulletins: bulletinView[], next } newest first
+ * GET    /api/bulletins/:bulletinId         bulletins.read    -> bulletinView
+ * GET    /api/bulletinFigures               bulletins.read    -> { figures: bulletinFigure[] } as they are now
+ * POST   /api/bulletins                     bulletins.change  bulletinDraft -> 201 bulletinView, figures frozen
+ * PUT    /api/bulletins/:bulletinId         bulletins.change  bulletinEdit, If-Match -> bulletinView (drafts alone)
+ * DELETE /api/bulletins/:bulletinId         bulletins.change  If-Match -> 204 (drafts alone)
+ * POST   /api/bulletins/:bulletinId/issue   bulletins.change  bulletinIssue, If-Match -> bulletinView
+ * POST   /api/bulletins/:bulletinId/cancel  bulletins.change  { reason }, If-Match -> bulletinView
+ * POST   /api/bulletins/:bulletinId/proof   bulletins.change  -> 204, the e-mail to oneself
+ * GET    /api/publicBulletins               publicBulletins.read (anybody, while the office has switched it on; else 404)
+ *                                           -> { portName, bulletins: publicBulletin[] }
+ * Live: room `watch`, kind `bulletin`, body bulletinView; a draft thrown away: kind `bulletinGone`, body { id }.
  */
 import { z } from 'zod'
 import { consentFields } from './consent.ts'
@@ -105,8 +107,13 @@ export const bulletinDraft = z.strictObject({
   chosen: z.array(z.string().regex(/^(station|place):[1-9]\d{0,8}$/)).max(40),
   /** The issued one that this replaces; null begins a chain. */
   replacesId: z.number().int().positive().nullable(),
+  /** Marked everywhere as an exercise: no sea has done this. */
+  isExercise: z.boolean().default(false),
 })
 export type BulletinDraft = z.infer<typeof bulletinDraft>
+
+/** `freezeAgain`: takes the figures as they are now. */
+export const bulletinEdit = z.strictObject({ draft: bulletinDraft, freezeAgain: z.boolean() })
 
 export const bulletinIssue = z.strictObject({ ...consentFields })
 

@@ -4,7 +4,7 @@ import { z } from 'zod'
 /** Rooms: `stations`, `station:ID`, `traces:ID`, `system`, `connections`, `alerts`, `limits`, `messages`, `places`, `place:ID`; watch joins with its feature. */
 export const roomName = z
   .string()
-  .regex(/^(stations|system|connections|alerts|limits|messages|places|(station|traces|place):[1-9][0-9]{0,8})$/)
+  .regex(/^(stations|system|connections|alerts|limits|messages|watch|places|(station|traces|place):[1-9][0-9]{0,8})$/)
 
 export const liveClientMessage = z.discriminatedUnion('type', [
   z.strictObject({ type: z.literal('subscribe'), rooms: z.array(roomName).min(1).max(100) }),
@@ -52,6 +52,10 @@ export const liveEventKinds = {
   alert: 'alert',
   /** room `limits`; body: limitView */
   limit: 'limit',
+  /** room `watch`; body: bulletinView */
+  bulletin: 'bulletin',
+  /** room `watch`; body: { id } of a draft thrown away */
+  bulletinGone: 'bulletinGone',
   /** room `messages`; body: messageView */
   message: 'message',
   /** rooms `places` and `place:ID`; body: placeView */

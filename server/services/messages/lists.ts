@@ -2,6 +2,7 @@
 import type { Transaction } from 'sequelize'
 import type { Priority } from '../../../shared/schemas/limit.ts'
 import type { Parts } from '../../config/parts.ts'
+import { inTransaction } from '../transaction.ts'
 import { membersOf, reachablePeople } from './people.ts'
 import { chooseRecipients } from './recipients.ts'
 import { writeMessage } from './write.ts'
@@ -15,16 +16,30 @@ export interface ListOrder {
   timeZone: string
 }
 
+async function recipientsOf({ clock }: Pick<Parts, 'clock'>, order: ListOrder, transaction: Transaction) {
+  const now = clock.now()
+  const [members, people] = await Promise.all([
+    membersOf(order.listIds, transaction),
+    reachablePeople(now, transaction),
+  ])
+  return chooseRecipients({ members, people, priority: order.priority, at: now.getTime(), timeZone: order.timeZone })
+}
+
+/** How many people an e-mail to these lists would go to now. */
+export const countReached = (parts: Pick<Parts, 'clock' | 'sequelize'>, order: ListOrder): Promise<number> =>
+  inTransaction(parts.sequelize, async (transaction) => {
+    const { recipients } = await recipientsOf(parts, order, transaction)
+    return recipients.length
+  })
+
 /** Answers the message, or null where nobody is to get it, and who could not be reached. */
 export async function writeToLists(
   parts: Pick<Parts, 'clock' | 'environment'>,
   message: NewMessage,
-  { listIds, priority, timeZone }: ListOrder,
+  order: ListOrder,
   transaction: Transaction,
 ): Promise<{ messageId: number | null; count: number; unreached: string[] }> {
-  const now = parts.clock.now()
-  const [members, people] = await Promise.all([membersOf(listIds, transaction), reachablePeople(now, transaction)])
-  const { recipients, unreached } = chooseRecipients({ members, people, priority, at: now.getTime(), timeZone })
+  const { recipients, unreached } = await recipientsOf(parts, order, transaction)
   if (recipients.length === 0) return { messageId: null, count: 0, unreached }
   const { id } = await writeMessage(parts, message, transaction, recipients)
   return { messageId: id, count: recipients.length, unreached }

@@ -8,6 +8,7 @@ import { Delivery, Message } from '../../models/index.ts'
 export interface NewMessage {
   kind: MessageKind
   alertId?: number | null
+  bulletinId?: number | null
   step?: number | null
   subject: string
   text: string
@@ -30,6 +31,7 @@ export async function writeMessage(
     {
       kind: message.kind,
       alertId: message.alertId ?? null,
+      bulletinId: message.bulletinId ?? null,
       step: message.step ?? null,
       subject: message.subject.slice(0, longestSubject),
       text: message.text,

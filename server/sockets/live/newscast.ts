@@ -1,15 +1,18 @@
 /** Turns the news of the process into events of rooms. Bodies are what REST gives, made by the same functions. */
 import { currentEstimate, seriesPoint, stationView, tracesChunk } from '../../../shared/schemas/station.ts'
 import { alertView } from '../../../shared/schemas/alert.ts'
+import { bulletinView } from '../../../shared/schemas/bulletin.ts'
 import { limitView } from '../../../shared/schemas/limit.ts'
 import { placeView } from '../../../shared/schemas/place.ts'
 import { messageView } from '../../../shared/schemas/message.ts'
 import { connectionAttempt } from '../../../shared/schemas/stationSetUpLink.ts'
 import { liveEventKinds as kinds } from '../../../shared/wire/live.ts'
 import type { Parts } from '../../config/parts.ts'
+import { bulletinOfficeOf } from '../../presenters/bulletin.ts'
 import { presentPlace } from '../../presenters/place.ts'
 import { presentStation } from '../../presenters/station.ts'
 import { readAlert } from '../../services/alerts.ts'
+import { findBulletin } from '../../services/bulletins.ts'
 import { currentEstimateOf } from '../../services/estimates.ts'
 import { readLimit } from '../../services/limits.ts'
 import { readMessageLine } from '../../services/messages.ts'
@@ -101,6 +104,13 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
     })
   }
 
+  const tellBulletin = (bulletinId: number): void =>
+    tell('watch', async () => {
+      const view = await findBulletin(parts, await bulletinOfficeOf(parts), bulletinId)
+      if (view) hub.publish('watch', kinds.bulletin, bulletinView.parse(view), bulletinId)
+      else hub.publish('watch', kinds.bulletinGone, { id: bulletinId }, bulletinId)
+    })
+
   const tellMessage = (messageId: number): void =>
     tell('messages', async () => {
       const line = await readMessageLine(messageId)
@@ -120,6 +130,7 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
       // Its counts of e-mails.
       if (alertId !== null) tellAlert(alertId)
     }),
+    bus.subscribe('bulletin.changed', ({ bulletinId }) => tellBulletin(bulletinId)),
     bus.subscribe('traces.arrived', (chunk) => {
       const room = `traces:${chunk.stationId}`
       if (hub.isHeard(room)) hub.publish(room, kinds.traces, tracesChunk.parse(chunk))

@@ -107,7 +107,7 @@ describe('a draft', () => {
   it('says of each empty field what is wanted before it can be issued', () => {
     const empty = {
       ...{ marker: 'information' as const, audience: '', headline: '', meaning: '', listIds: [], chosen: [] },
-      ...{ validFrom: null, validUntil: null, nextIssueAt: null, replacesId: null },
+      ...{ validFrom: null, validUntil: null, nextIssueAt: null, replacesId: null, isExercise: false },
     }
     expect(draftFaults(empty, 0).map(({ field }) => field)).toEqual([
       ...['headline', 'audience', 'meaning', 'chosen', 'listIds', 'validFrom', 'validUntil'],
