@@ -3,7 +3,7 @@ import { Op } from 'sequelize'
 import type { z } from 'zod'
 import type { healthHour } from '../../shared/schemas/station.ts'
 import type { Parts } from '../config/parts.ts'
-import { Deployment, DeploymentSensor, Station, StationHealthHour } from '../models/index.ts'
+import { Deployment, DeploymentSensor, Station, StationHealthHour, StationSettings } from '../models/index.ts'
 import { invalidInput, notFound } from './problems.ts'
 
 export type HealthHour = z.infer<typeof healthHour>
@@ -29,10 +29,11 @@ export async function healthHours(
   const now = clock.now().getTime()
   const counted = await countedHours(stationId, span)
   const deployedAt = await deployments(stationId)
+  const rateAt = await sampleRates(station)
   const from = Math.ceil(Math.max(span.from.getTime(), new Date(first).getTime()) / hourMs) * hourMs
   const hours: HealthHour[] = []
   for (let hour = from; hour < Math.min(span.to.getTime(), now); hour += hourMs) {
-    const due = Math.round(station.sampleRate * (Math.min(hourMs, now - hour) / 1000))
+    const due = Math.round(rateAt(hour) * (Math.min(hourMs, now - hour) / 1000))
     const rows = counted.get(hour) ?? []
     const sensors = new Map(deployedAt(hour + hourMs - 1).map(({ sensorId, letter }) => [sensorId, letter]))
     for (const { sensorId } of rows) if (!sensors.has(sensorId)) sensors.set(sensorId, String(sensorId))
@@ -59,6 +60,12 @@ async function countedHours(stationId: number, { from, to }: { from: Date; to: D
     byHour.set(hour, [...(byHour.get(hour) ?? []), row])
   }
   return byHour
+}
+
+/** The sample rate in force at a time, Hz. */
+async function sampleRates({ id, sampleRate }: Station): Promise<(timeMs: number) => number> {
+  const versions = await StationSettings.findAll({ where: { stationId: id }, order: [['validFrom', 'DESC'], ['id', 'DESC']] }) // prettier-ignore
+  return (timeMs) => versions.find(({ validFrom }) => validFrom.getTime() <= timeMs)?.sampleRate ?? sampleRate
 }
 
 /** The sensors of the deployment in force at a time, in its order. */

@@ -42,9 +42,11 @@ export async function takeTurn(parts: Parts, estimators: Estimators, turn: Turn)
 
   const readings = await readWindow(timeline.id, estimates.readingsFrom(windowEndsAt, settings), windowEndsAt, {
     letters: deployment.sensors.map(({ letter }) => letter),
+    sampleRate: settings.sampleRate ?? undefined,
   })
   const outcome = { ...unseen, inputCommitId: readings.newestCommitId }
-  const isEmpty = !hasSamples(readings, settings.content.windowSeconds)
+  const change = readings.leftOut !== null && readings.leftOut.until > windowStartsAt ? readings.leftOut : null
+  const isEmpty = change === null && !hasSamples(readings, settings.content.windowSeconds)
   if (isEmpty && (isNext || !(await isEstimated(parts, outcome)))) return passOver(parts, outcome)
   if (!isNext && turn.origin !== 'recompute' && (await isKnown(parts, outcome))) return passOver(parts, outcome)
 
@@ -54,7 +56,11 @@ export async function takeTurn(parts: Parts, estimators: Estimators, turn: Turn)
   const hopMs = settings.content.hopSeconds * 1000
   const past = await estimates.pastFigures(parts, timeline.id, windowEndsAt, hopMs)
   const task = { window, windowEndsAt, clockOffset, known: turn.known, past }
-  const answer = isEmpty ? nothingThere(task) : await compute(parts, estimators, turn, task)
+  const answer = change
+    ? overRateChange(task, change, readings.sampleRate)
+    : isEmpty
+      ? nothingThere(task)
+      : await compute(parts, estimators, turn, task)
   const making = {
     stationId: timeline.id,
     windowStartsAt,
@@ -131,6 +137,17 @@ function notComputed(task: EstimateTask, failure: EstimationFailed): EstimateAns
     flag: 2,
     detail: `The computation failed twice (${failure.kind}: ${whatFailed})`,
   })
+}
+
+/** What is saved of a window in which the station changed its sample rate: half of it is no whole record. */
+function overRateChange(
+  task: EstimateTask,
+  before: NonNullable<StoredWindow['leftOut']>,
+  sampleRate: number,
+): EstimateAnswer {
+  const until = new Date(before.until).toISOString()
+  const detail = `Until ${until} the readings came at ${before.sampleRate} Hz, then at ${sampleRate} Hz: no window over the change is computed` // prettier-ignore
+  return withoutEstimate(task, 'too-little-data', { test: 'gap', flag: 9, detail })
 }
 
 /** What is saved of a window that was estimated and has no readings any more. */

@@ -13,6 +13,8 @@ interface Version {
 
 export interface SettingsVersion extends Version {
   id: number
+  /** Hz; absent: as the readings are. */
+  sampleRate?: number | null
   content: StationSettingsContent
 }
 
@@ -91,6 +93,7 @@ export async function readTimelines(sequelize: Sequelize): Promise<StationTimeli
         .map((row) => ({
           id: row.id,
           validFrom: row.validFrom.getTime(),
+          sampleRate: row.sampleRate,
           content: stationSettingsContent.parse(row.content),
         })),
       deployments: own.map((row) => ({

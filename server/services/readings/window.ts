@@ -1,7 +1,7 @@
 /** Stored readings of a span of time, joined from hot frames and packed minutes. */
 import type { Transaction } from 'sequelize'
 import { firstSlotFrom, timeOfSlot } from '../../../shared/readings/slots.ts'
-import { countPresent, emptySpan, fillFrom, seriesFromStored } from '../../../shared/readings/span.ts'
+import { countPresent, emptySpan, fillFrom, lengthOf, seriesFromStored } from '../../../shared/readings/span.ts'
 import type { SampleSpan } from '../../../shared/readings/span.ts'
 import { select } from '../../models/sql.ts'
 import { database } from './database.ts'
@@ -38,6 +38,8 @@ export interface StoredWindow {
   sources: ReadingSource[]
   /** Median over the parts of arrived less sent, s; null when none came over the link. */
   clockOffsetSeconds: number | null
+  /** Readings at another rate that are not among these: their rate, Hz, and the end of the last, ms; null for none. */
+  leftOut: { sampleRate: number; until: number } | null
 }
 
 interface PartRow {
@@ -129,7 +131,18 @@ export async function readWindow(
     newestCommitId: parts.length === 0 ? null : Math.max(...parts.map(({ lastCommitId }) => lastCommitId)),
     sources: [...new Set(parts.map(({ source }) => source))],
     clockOffsetSeconds: medianOffset(parts),
+    leftOut: leftOutOf(parts, window.sampleRate),
   }
+}
+
+function leftOutOf(parts: readonly StoredPart[], sampleRate: number): StoredWindow['leftOut'] {
+  let last: StoredWindow['leftOut'] = null
+  for (const { span } of parts) {
+    if (span.sampleRate === sampleRate || countPresent(span) === 0) continue
+    const until = timeOfSlot(span.firstSlot + lengthOf(span), span.sampleRate)
+    if (!last || until > last.until) last = { sampleRate: span.sampleRate, until }
+  }
+  return last
 }
 
 function medianOffset(parts: readonly StoredPart[]): number | null {
