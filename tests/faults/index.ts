@@ -6,6 +6,7 @@ import { writeFile } from 'node:fs/promises'
 import { parseArgs } from 'node:util'
 import type { FaultReport } from '../../server/setup/testReports.ts'
 import { databaseAbsentAtStart, databaseFrozen, serverAskedToEnd } from './cuts.ts'
+import { galeInFasterTime } from './gale.ts'
 import { carryOut, planKills } from './kills.ts'
 import { mailServerAwayThenRefusing } from './mailCuts.ts'
 import { killsBetweenAlertAndEmail } from './mailKills.ts'
@@ -71,6 +72,8 @@ async function main(): Promise<void> {
     checks.push(...(await killsBetweenAlertAndEmail(seed, say)))
     console.log('\nmail server away, then refusing')
     checks.push(...(await mailServerAwayThenRefusing(say)))
+    console.log('\na gale in faster time')
+    checks.push(...(await galeInFasterTime(seed, say)))
   }
   for (const { name, passed, detail } of checks)
     console.log(passed ? `  passed  ${name}` : `  FAILED  ${name}: ${detail}`)
