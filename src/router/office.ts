@@ -10,4 +10,12 @@ export const officeRoutes: RouteRecordRaw[] = [
     component: () => import('../pages/PeoplePage.vue'),
     meta: meta('People'),
   },
+  { path: 'audit', name: 'audit', component: () => import('../pages/AuditPage.vue'), meta: meta('Audit') },
+  {
+    path: 'settings',
+    name: 'officeSettings',
+    component: () => import('../pages/OfficeSettingsPage.vue'),
+    meta: meta('Settings'),
+  },
+  { path: 'system', name: 'system', component: () => import('../pages/SystemPage.vue'), meta: meta('System') },
 ]

@@ -11,9 +11,33 @@ export interface SetUpEntry {
 
 export const setUpEntries: readonly SetUpEntry[] = [
   {
+    title: 'Places',
+    says: 'entrance, breakwater, berths, beaches: their numbers, which stations feed them, whose they are',
+    to: { name: 'setUpPlaces' },
+    action: 'places.change',
+  },
+  {
     title: 'People',
     says: 'accounts, roles, invitations, second factors, where somebody is signed in',
     to: { name: 'people' },
     action: 'accounts.read',
+  },
+  {
+    title: 'Settings',
+    says: 'port, emergency contact, cautions, sender, second factor, retention; versions and the way back',
+    to: { name: 'officeSettings' },
+    action: 'settingVersions.read',
+  },
+  {
+    title: 'Audit',
+    says: 'who changed what and when, and whether the record is whole',
+    to: { name: 'audit' },
+    action: 'audits.read',
+  },
+  {
+    title: 'System',
+    says: 'versions, database, jobs, e-mails, disk, backups',
+    to: { name: 'system' },
+    action: 'system.read',
   },
 ]
