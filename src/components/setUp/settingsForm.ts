@@ -5,8 +5,10 @@ import type { StationSettingsContent } from '../../../shared/schemas/stationSett
 import { defaultEstimateSettings } from '../../../shared/waves/window.ts'
 import { numberIn } from '../limits/limitForm.ts'
 import { faultsOf } from './formFaults.ts'
+import { qualityChanges, qualityFormOf, qualityOf } from './qualityForm.ts'
+import type { QualityForm } from './qualityForm.ts'
 
-export type EstimateKey = keyof StationSettingsContent['estimate']
+export type EstimateKey = Exclude<keyof StationSettingsContent['estimate'], 'quality'>
 
 export interface SectorForm {
   from: string
@@ -26,6 +28,9 @@ export interface SettingsForm {
   periodFrom: string
   periodTo: string
   estimate: Record<EstimateKey, string>
+  /** Own thresholds of the quality tests; otherwise the usual ones. */
+  hasQuality: boolean
+  quality: QualityForm
 }
 
 /** Label, unit and help of every threshold, in their order; `per`: how the figure is typed. */
@@ -72,6 +77,8 @@ export function settingsFormOf({ sampleRate, content }: StationSettingsDraft): S
     openSea: { from: typed(from), to: typed(to) },
     ...{ periodFrom: typed(periodFrom), periodTo: typed(periodTo) },
     estimate: estimateForm(content.estimate),
+    hasQuality: content.estimate.quality !== undefined,
+    quality: qualityFormOf(content.estimate.quality),
   }
 }
 
@@ -80,7 +87,7 @@ export const newSettingsForm = (): SettingsForm =>
     sampleRate: 4,
     content: {
       ...{ windowSeconds: 1200, hopSeconds: 60, graceSeconds: 10, landSectors: [] },
-      estimate: defaultEstimateSettings,
+      estimate: { ...defaultEstimateSettings, quality: undefined },
     },
   })
 
@@ -91,6 +98,7 @@ const sector = ({ from, to }: SectorForm): [number, number] => [numberIn(from), 
 
 /** Faults by the names of the contract, such as `content.windowSeconds`. */
 export function settingsOf(form: SettingsForm): SettingsFormResult {
+  const quality = qualityOf(form.quality)
   const parsed = stationSettingsDraft.safeParse({
     sampleRate: numberIn(form.sampleRate),
     content: {
@@ -100,13 +108,18 @@ export function settingsOf(form: SettingsForm): SettingsFormResult {
       landSectors: form.land.map(sector),
       ...(form.hasOpenSea && { openSeaSector: sector(form.openSea) }),
       periodRange: [numberIn(form.periodFrom), numberIn(form.periodTo)],
-      estimate: Object.fromEntries(
-        thresholds.map(({ key, per }) => [key, Math.round(numberIn(form.estimate[key]) * per * 1e9) / 1e9]),
-      ),
+      estimate: {
+        ...Object.fromEntries(
+          thresholds.map(({ key, per }) => [key, Math.round(numberIn(form.estimate[key]) * per * 1e9) / 1e9]),
+        ),
+        ...(form.hasQuality && { quality: quality.quality ?? undefined }),
+      },
     },
   })
   const faults = parsed.success ? {} : faultsOf(parsed.error, perUnit)
   ownFaults(form, faults)
+  if (form.hasQuality)
+    for (const [key, words] of Object.entries(quality.faults)) faults[`content.estimate.quality.${key}`] = words
   if (parsed.success && Object.keys(faults).length === 0) return { settings: parsed.data, faults: null }
   return { settings: null, faults }
 }
@@ -147,6 +160,7 @@ export function settingsChanges(before: StationSettingsDraft, after: StationSett
   note('Open sea', old.hasOpenSea ? sectorsWords([old.openSea]) : 'all but land', now.hasOpenSea ? sectorsWords([now.openSea]) : 'all but land') // prettier-ignore
   note('Periods', `${old.periodFrom} to ${old.periodTo}`, `${now.periodFrom} to ${now.periodTo}`, 's')
   for (const { key, label, unit } of thresholds) note(label, old.estimate[key], now.estimate[key], unit)
+  changes.push(...qualityChanges(before.content.estimate.quality, after.content.estimate.quality))
   return changes
 }
 
