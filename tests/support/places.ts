@@ -5,36 +5,12 @@ import type { Station } from '../../server/models/index.ts'
 import { addPlace, saveOutlooks } from '../../server/services/places.ts'
 import { inTransaction } from '../../server/services/transaction.ts'
 import { demonstrationPlaces } from '../../shared/demonstration/places.ts'
-import type { UnresolvedReason, WaveSystem } from '../../shared/schemas/estimate.ts'
+import type { UnresolvedReason } from '../../shared/schemas/estimate.ts'
 import type { PlaceDraft } from '../../shared/schemas/place.ts'
 import { makeStation } from './factories.ts'
 import type { TestParts } from './parts.ts'
-
-export interface SystemWanted {
-  height: number
-  period: number
-  from: number
-  spread?: number
-  name?: 'swell' | 'wind sea'
-}
-
-export const waveSystem = (wanted: SystemWanted, key = 1): WaveSystem => ({
-  key,
-  name: wanted.name ?? 'swell',
-  ...{ significantWaveHeight: wanted.height, significantWaveHeightSd: 0.05 * wanted.height, peakPeriod: wanted.period },
-  ...{ from: wanted.from, toward: (wanted.from + 180) % 360, headingSd: 3, directionalSpread: wanted.spread ?? 13 },
-  ...{
-    measuredSpeed: 10,
-    speed: 10,
-    speedSd: 0.3,
-    linearSpeed: 10,
-    speedRatio: 1,
-    slownessEast: 0,
-    slownessNorth: 0.1,
-  },
-  slownessCovariance: { eastEast: 1e-6, eastNorth: 0, northNorth: 1e-6 },
-  band: { from: 0.8 / wanted.period, to: 1.2 / wanted.period },
-})
+import { waveSystem } from './waveSystem.ts'
+import type { SystemWanted } from './waveSystem.ts'
 
 export interface SeaWanted {
   systems?: SystemWanted[]
