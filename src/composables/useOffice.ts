@@ -2,6 +2,7 @@ import { onBeforeUnmount, watch } from 'vue'
 import { useAlerts } from '../stores/alerts.ts'
 import { useJobs } from '../stores/jobs.ts'
 import { useLive } from '../stores/live.ts'
+import { usePlaces } from '../stores/places.ts'
 import { useSession } from '../stores/session.ts'
 import { useSettings } from '../stores/settings.ts'
 import { useStations } from '../stores/stations.ts'
@@ -14,6 +15,7 @@ export function useOffice() {
   const session = useSession()
   const settings = useSettings()
   const stations = useStations()
+  const places = usePlaces()
   const jobs = useJobs()
   const alerts = useAlerts()
   let again: ReturnType<typeof setTimeout> | undefined
@@ -21,6 +23,7 @@ export function useOffice() {
   function open(): void {
     live.connect()
     stations.watchAll()
+    places.watchAll()
     jobs.watchAll()
     alerts.watchAll()
     void readSettings()
@@ -39,6 +42,7 @@ export function useOffice() {
   function close(): void {
     clearTimeout(again)
     stations.leave()
+    places.leave()
     jobs.leave()
     alerts.leave()
     live.disconnect()

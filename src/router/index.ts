@@ -6,6 +6,7 @@ import { useSession } from '../stores/session.ts'
 import { useStations } from '../stores/stations.ts'
 import { officeRoutes } from './office.ts'
 import { pages } from './pages.ts'
+import { placeRoutes } from './places.ts'
 import { setUpRoutes } from './setUp.ts'
 
 const routes: RouteRecordRaw[] = [
@@ -110,6 +111,7 @@ const routes: RouteRecordRaw[] = [
         component: () => import('../pages/MySettingsPage.vue'),
         meta: { title: 'My settings', page: 'mySettings' },
       },
+      ...placeRoutes,
       ...officeRoutes,
       ...setUpRoutes,
       {
