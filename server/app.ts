@@ -10,6 +10,7 @@ import { client } from './middleware/client.ts'
 import { errorHandler } from './middleware/errorHandler.ts'
 import { requestLog } from './middleware/requestLog.ts'
 import { sameOrigin } from './middleware/sameOrigin.ts'
+import { slowBodies } from './middleware/slowBodies.ts'
 import { securityHeaders } from './middleware/securityHeaders.ts'
 import { whenStarted } from './middleware/whenStarted.ts'
 import { health } from './routes/health.ts'
@@ -29,6 +30,7 @@ export function createApp(parts: Parts, readiness: Readiness = createReadiness()
   app.set('trust proxy', environment.trustProxy)
   app.set('query parser', 'simple')
   app.use(requestLog(logger))
+  app.use(slowBodies({ isFile: takesFile }))
   app.use(securityHeaders(environment))
   app.use(health(parts, readiness))
   app.use(compression())
@@ -45,7 +47,7 @@ export function createApp(parts: Parts, readiness: Readiness = createReadiness()
 
 /** Files go in as they are; the header that sameOrigin asks for says that it is one of our own pages. */
 const takesFile = (request: Request): boolean =>
-  /^\/stations\/\d+\/uploads$/.test(request.path) && request.is(['text/csv', 'text/plain', 'application/octet-stream']) !== false // prettier-ignore
+  /^(\/api)?\/stations\/\d+\/uploads$/.test(request.path) && request.is(['text/csv', 'text/plain', 'application/octet-stream']) !== false // prettier-ignore
 
 /** A form of another site can send text and forms, but no JSON without being asked first. */
 const jsonOnly: RequestHandler = (request, _response, next) => {

@@ -7,7 +7,8 @@ const patienceMilliseconds = 10_000
 /** Slow senders of headers and bodies are not waited for without end. */
 function setTimeouts(server: Server): void {
   server.headersTimeout = 15_000
-  server.requestTimeout = 60_000
+  // Bodies have deadlines of their own (`slowBodies`): a large file may take longer than any other request.
+  server.requestTimeout = 3_600_000
   server.keepAliveTimeout = 5_000
 }
 

@@ -1,5 +1,8 @@
 /** Files of readings from the page's request to stored minutes, and back out again. */
-import { mkdtemp, rm } from 'node:fs/promises'
+import { once } from 'node:events'
+import { mkdtemp, readdir, rm } from 'node:fs/promises'
+import { request } from 'node:http'
+import type { AddressInfo } from 'node:net'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import type { Express } from 'express'
@@ -7,16 +10,17 @@ import { afterAll, beforeAll, beforeEach, describe, expect, test } from 'vitest'
 import { createApp } from '../../server/app.ts'
 import { startTakeInFiles } from '../../server/jobs/takeInFiles.ts'
 import type { TakeInFiles } from '../../server/jobs/takeInFiles.ts'
-import { Audit, AuxiliaryReading, ReadingBlock } from '../../server/models/index.ts'
+import { Audit, AuxiliaryReading, LongJob, ReadingBlock, Upload } from '../../server/models/index.ts'
 import { readWindow } from '../../server/services/readings.ts'
 import { beginLinks } from '../../server/services/readings/links.ts'
 import type { UploadLayout, UploadView } from '../../shared/schemas/stationSetUpUploads.ts'
 import { signedIn } from '../support/browser.ts'
 import type { Browser } from '../support/browser.ts'
-import { makePerson, makeStation } from '../support/factories.ts'
+import { makePerson, makeStation, usualPassword } from '../support/factories.ts'
 import type { StationMade } from '../support/factories.ts'
 import { testParts } from '../support/parts.ts'
 import type { TestParts } from '../support/parts.ts'
+import { until } from '../support/until.ts'
 
 const noon = new Date('2026-12-01T12:00:00Z')
 let parts: TestParts
@@ -128,6 +132,38 @@ describe('a file of readings', () => {
     const after = (await browser.get(`/api/uploads/${received.id}`)).body
     expect(after.state === 'cancelled' ? await blocks() : 0).toBe(0)
     expect(['cancelled', 'stored']).toContain(after.state)
+  })
+
+  test('whose work a stop cut off is taken up again when its lease has run out, and stored once', async () => {
+    const received = await upload(lines().join('\n'))
+    await Upload.update({ state: 'storing', layout: received.layout }, { where: { id: received.id } })
+    const leaseUntil = new Date(noon.getTime() - 1000)
+    const times = { createdAt: noon, startedAt: noon, updatedAt: noon, leaseUntil }
+    await LongJob.create({ kind: 'takeInFile', title: 'Left', status: 'running', parameters: { uploadId: received.id, act: 'store' }, ...times }) // prettier-ignore
+    await job.wake()
+    expect((await browser.get(`/api/uploads/${received.id}`)).body).toMatchObject({ state: 'stored' })
+    expect(await blocks()).toBe(3)
+  })
+
+  test('that breaks off on its way in leaves nothing behind', async () => {
+    const before = (await readdir(join(folder, 'uploads'))).length
+    const server = app.listen(0, '127.0.0.1')
+    await once(server, 'listening')
+    const { port } = server.address() as AddressInfo
+    const admin = await makePerson(parts.clock, { role: 'admin' })
+    const signIn = await fetch(`http://127.0.0.1:${port}/api/session`, { method: 'POST', headers: { 'X-Offing': '1', 'Content-Type': 'application/json' }, body: JSON.stringify({ email: admin.email, password: usualPassword }) }) // prettier-ignore
+    const cookie = signIn.headers.getSetCookie().map((one) => one.split(';')[0]).join('; ') // prettier-ignore
+    const path = `/api/stations/${made.station.id}/uploads?kind=readings&fileName=a.csv`
+    const headers = { 'X-Offing': '1', 'Content-Type': 'text/csv', 'Content-Length': '100000', Cookie: cookie }
+    const sending = request({ port, path, method: 'POST', headers })
+    sending.on('error', () => undefined)
+    sending.write(lines(100).join('\n'))
+    await until('the file begins to come in', async () => (await readdir(join(folder, 'uploads'))).length > before, 10_000) // prettier-ignore
+    sending.destroy()
+    await until('it is gone', async () => (await readdir(join(folder, 'uploads'))).length === before, 10_000)
+    server.closeAllConnections()
+    await new Promise((resolve) => server.close(resolve))
+    expect((await browser.get(`/api/stations/${made.station.id}/uploads`)).body).toEqual([])
   })
 
   test('is thrown away, and is gone', async () => {

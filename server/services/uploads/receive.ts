@@ -45,7 +45,7 @@ export async function receiveFile(parts: Pick<Parts, 'environment'>, source: Rea
     return { storedAs, bytes, fileHash: hash.digest() }
   } catch (error) {
     await rm(path, { force: true })
-    throw error
+    throw isDiskFull(error) ? diskFull() : error
   }
 }
 
@@ -62,6 +62,17 @@ function refuseForeign(chunk: Buffer): void {
   if (first === 0x1f && second === 0x8b) throw foreign('The file is compressed; unpack it first.')
   if (chunk.subarray(0, 4096).includes(0)) throw foreign('The file is no text; save it as CSV in UTF-8.')
 }
+
+const isDiskFull = (error: unknown): boolean =>
+  error instanceof Error && 'code' in error && (error.code === 'ENOSPC' || error.code === 'EDQUOT')
+
+const diskFull = (): Refused =>
+  new Refused({
+    status: 507,
+    code: 'upload.diskFull',
+    title: 'The disk is full',
+    detail: 'Nothing of the file was kept. Make room on the server, then bring it in again.',
+  })
 
 const tooLarge = (): Refused =>
   new Refused({
