@@ -5,6 +5,7 @@
 import { schedule } from 'node-cron'
 import type { Parts, RunningPart } from '../config/parts.ts'
 import { readTimelines } from '../services/estimates.ts'
+import { packPlaceDays, rebuildPlaceDay } from '../services/places.ts'
 import { dayMs, dayOf, daysLacking, firstUnpackedDay, notePacked, rebuildSeriesDay } from '../services/series.ts'
 
 /** Estimates of a day may come a little after it: it closes then. */
@@ -20,6 +21,7 @@ export interface KeepSeriesDays extends RunningPart {
 export function startKeepSeriesDays(parts: Parts, { isUnscheduled = false } = {}): KeepSeriesDays {
   const { bus, clock, logger, sequelize } = parts
   const touched = new Map<string, { stationId: number; day: string }>()
+  const touchedPlaces = new Map<string, { placeId: number; day: string }>()
   let running: Promise<void> | null = null
 
   /** The first day that is not closed yet. */
@@ -41,6 +43,11 @@ export function startKeepSeriesDays(parts: Parts, { isUnscheduled = false } = {}
         touched.delete(key)
         await rebuildSeriesDay(parts, stationId, day)
       }
+      await packPlaceDays(parts, openDay())
+      for (const [key, { placeId, day }] of [...touchedPlaces]) {
+        touchedPlaces.delete(key)
+        await rebuildPlaceDay(parts, placeId, day)
+      }
       for (const { id } of await readTimelines(sequelize)) {
         for (const day of await daysLacking(parts, id, repackedATurn)) await rebuildSeriesDay(parts, id, day)
       }
@@ -51,10 +58,16 @@ export function startKeepSeriesDays(parts: Parts, { isUnscheduled = false } = {}
 
   const wake = (): Promise<void> => (running ??= packAll().finally(() => (running = null)))
 
-  const unsubscribe = bus.subscribe('estimate.saved', ({ stationId, windowEndsAt }) => {
-    const day = dayOf(windowEndsAt)
-    if (day < openDay()) touched.set(`${stationId}/${day}`, { stationId, day })
-  })
+  const subscriptions = [
+    bus.subscribe('estimate.saved', ({ stationId, windowEndsAt }) => {
+      const day = dayOf(windowEndsAt)
+      if (day < openDay()) touched.set(`${stationId}/${day}`, { stationId, day })
+    }),
+    bus.subscribe('outlook.saved', ({ placeId, windowEndsAt }) => {
+      const day = dayOf(windowEndsAt)
+      if (day < openDay()) touchedPlaces.set(`${placeId}/${day}`, { placeId, day })
+    }),
+  ]
   const task = isUnscheduled
     ? null
     : schedule('40 7,22,37,52 * * * *', () => void wake(), { timezone: 'UTC', name: 'keepSeriesDays' })
@@ -64,7 +77,7 @@ export function startKeepSeriesDays(parts: Parts, { isUnscheduled = false } = {}
   return {
     wake,
     async stop() {
-      unsubscribe()
+      for (const unsubscribe of subscriptions) unsubscribe()
       await task?.destroy()
       await running
     },

@@ -1,6 +1,7 @@
 /** Places: what they are, what the sea does there, kept with each estimate. */
 export { addPlace, changePlace, changePlaceSettings, createPlace, restorePlace, retirePlace } from './places/change.ts'
 export type { PlaceOrder } from './places/change.ts'
+export { packPlaceDays, rebuildPlaceDay } from './places/days.ts'
 export { listPlaces, listPlaceSettings, readPlace } from './places/read.ts'
 export type { PlaceFacts } from './places/read.ts'
 export { saveOutlooks } from './places/save.ts'

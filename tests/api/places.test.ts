@@ -2,8 +2,10 @@ import { beforeAll, describe, expect, test } from 'vitest'
 import type { Express } from 'express'
 import { createApp } from '../../server/app.ts'
 import { startComputeEstimates } from '../../server/jobs/computeEstimates.ts'
+import { startKeepSeriesDays } from '../../server/jobs/keepSeriesDays.ts'
 import { startJudgeLimits } from '../../server/jobs/judgeLimits.ts'
-import { Alert, Audit, Message, Outlook, PlaceSettings } from '../../server/models/index.ts'
+import { Alert, Audit, Message, Outlook, PlaceSettings, SeriesDay } from '../../server/models/index.ts'
+import { unpackDay } from '../../server/models/seriesDayPayload.ts'
 import { outlookView, placeSeriesView } from '../../shared/schemas/placeOutlook.ts'
 import { placeView } from '../../shared/schemas/place.ts'
 import type { PlaceView } from '../../shared/schemas/place.ts'
@@ -230,6 +232,29 @@ describe('a limit at a place', () => {
     const draft = { subjectKind: 'place', subjectId: entrance, content, reason: 'To be tried' }
     const { body } = await operator.post('/api/limits').send(draft).expect(422)
     expect(body.errors).toMatchObject([{ path: 'content.condition.comparisons.0.quantity' }])
+  })
+})
+
+describe('a closed day of a place', () => {
+  test('is packed with its ± and flags, and a draft is tried on it', async () => {
+    parts.clock.set('2026-12-02T00:30:00Z')
+    const job = startKeepSeriesDays(parts, { isUnscheduled: true })
+    await job.wake()
+    await job.stop()
+    const where = { subjectKind: 'place', subjectId: entrance, day: '2026-12-01' }
+    const packed = await SeriesDay.findAll({ where, order: ['quantity'] })
+    expect(packed.map(({ quantity }) => quantity)).toEqual(['alongSea', 'alongSeaSd', 'crossSea', 'crossSeaSd', 'placeHeight', 'placeHeightSd']) // prettier-ignore
+    const { values, flags } = unpackDay(packed[2].payload)
+    const stepSeconds = packed[2].stepSeconds
+    expect(values[(12 * 3600 + 61 * 60) / stepSeconds]).toBeGreaterThan(1)
+    expect([flags[(12 * 3600 + 61 * 60) / stepSeconds], flags[(12 * 3600 + 64 * 60) / stepSeconds]]).toEqual([1, 9])
+    const condition = {
+      ...{ comparisons: [{ kind: 'above', quantity: 'crossSea', raise: 1, clear: 0.85, riseOverSeconds: null }] },
+      ...{ when: null, onDelaySeconds: 60, offDelaySeconds: 60, clearSigmas: 1, worstQuality: 3, latches: false },
+    }
+    const question = { subjectKind: 'place', subjectId: entrance, condition, days: 7 }
+    const { body } = await operator.post('/api/backTests').send(question).expect(200)
+    expect(body.draft).toMatchObject({ count: 1, raise: 1, episodes: [{ raisedAt: at(62).toISOString() }] })
   })
 })
 
