@@ -53,7 +53,7 @@ export const auxiliaryView = z.object({
   newest: auxiliaryReadingView.nullable(),
   /** How far ahead a tide table reaches. */
   reachesUntil: time.nullable(),
-  /** A window uses a value at most so far from its end, s. */
+  /** A window uses a single value at most so far from its middle, s; between two it draws a line. */
   reachSeconds: z.number(),
   /** Is there one that the window ending now would use? */
   isUsed: z.boolean(),

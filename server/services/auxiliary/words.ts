@@ -9,7 +9,7 @@ export const unitOf: Record<AuxiliaryKind, string> = {
   windFrom: '° T',
 }
 
-/** A window takes a value at most so far from its end,, s; of wind, counts as being of now. */
+/** A window takes a single value at most so far from its middle, s; wind counts as being of now for so long. */
 export const reachSeconds: Record<AuxiliaryKind, number> = {
   waterLevel: 1_800,
   tide: 1_800,

@@ -14,9 +14,11 @@ export async function assembleWindow(
   stationId: number,
   question: Omit<WindowQuestion, 'tideLevel' | 'airPressure'>,
 ) {
+  // A window's mean is that of its middle, and so is the level that stands in for it.
+  const middle = question.windowEndsAt - question.settings.content.windowSeconds * 500
   const [tideLevel, airPressure] = await Promise.all([
-    tideLevelAt(parts, stationId, question.windowEndsAt),
-    airPressureAt(parts, stationId, question.windowEndsAt),
+    tideLevelAt(parts, stationId, middle),
+    airPressureAt(parts, stationId, middle),
   ])
   return arrayWindowOf({ ...question, tideLevel, airPressure })
 }

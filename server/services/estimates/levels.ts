@@ -3,32 +3,45 @@ import type { Parts } from '../../config/parts.ts'
 import { select } from '../../models/sql.ts'
 
 type Needs = Pick<Parts, 'sequelize'>
+type Kind = 'waterLevel' | 'tide' | 'barometer'
 
-/** Older or newer readings than this say nothing about a window, ms. */
-const tideReachMs = 30 * 60_000
-const airReachMs = 3 * 3_600_000
+/**
+ * How far off a single value still says something, and between how distant neighbours a line is drawn, ms: tide tables come by the
+ * hour, and over an hour the tide bends little.
+ */
+const reach: Record<Kind, { alone: number; between: number }> = {
+  waterLevel: { alone: 30 * 60_000, between: 30 * 60_000 },
+  tide: { alone: 30 * 60_000, between: 75 * 60_000 },
+  barometer: { alone: 3 * 3_600_000, between: 3 * 3_600_000 },
+}
 
-async function nearest(
-  { sequelize }: Needs,
-  stationId: number,
-  kinds: string[],
-  at: number,
-  reachMs: number,
-): Promise<number | null> {
-  const [row] = await select<{ value: number }>(
+interface Reading {
+  takenAt: Date
+  value: number
+}
+
+/** Neighbours before and after a time (ms since 1970 UTC), on a line between them; the nearer one alone; null for neither. */
+async function valueAt({ sequelize }: Needs, stationId: number, kind: Kind, at: number): Promise<number | null> {
+  const { alone, between } = reach[kind]
+  const neighbour = (side: string) => `
+    (SELECT takenAt, value FROM auxiliaryReadings
+     WHERE stationId = :stationId AND kind = :kind AND qualityFlag IN (1, 2, 3) AND ${side} LIMIT 1)`
+  const rows = await select<Reading>(
     sequelize,
-    `SELECT value FROM auxiliaryReadings
-     WHERE stationId = :stationId AND kind IN (:kinds) AND takenAt BETWEEN :from AND :to AND qualityFlag IN (1, 2, 3)
-     ORDER BY FIELD(kind, :kinds), ABS(TIMESTAMPDIFF(SECOND, takenAt, :at)) LIMIT 1`,
-    { stationId, kinds, at: new Date(at), from: new Date(at - reachMs), to: new Date(at + reachMs) },
+    `${neighbour('takenAt BETWEEN :from AND :at ORDER BY takenAt DESC')}
+     UNION ALL ${neighbour('takenAt > :at AND takenAt <= :to ORDER BY takenAt')}`,
+    { stationId, kind, at: new Date(at), from: new Date(at - between), to: new Date(at + between) },
   )
-  return row?.value ?? null
+  const [first, last] = rows.map(({ takenAt, value }) => ({ apart: new Date(takenAt).getTime() - at, value }))
+  if (!first) return null
+  if (last) return first.value + ((last.value - first.value) * -first.apart) / (last.apart - first.apart)
+  return Math.abs(first.apart) <= alone ? first.value : null
 }
 
 /** A measured level goes before a tide table's. Metres above datum; null where neither is there. */
-export const tideLevelAt = (parts: Needs, stationId: number, at: number): Promise<number | null> =>
-  nearest(parts, stationId, ['waterLevel', 'tide'], at, tideReachMs)
+export const tideLevelAt = async (parts: Needs, stationId: number, at: number): Promise<number | null> =>
+  (await valueAt(parts, stationId, 'waterLevel', at)) ?? valueAt(parts, stationId, 'tide', at)
 
 /** Pascals. */
 export const airPressureAt = (parts: Needs, stationId: number, at: number): Promise<number | null> =>
-  nearest(parts, stationId, ['barometer'], at, airReachMs)
+  valueAt(parts, stationId, 'barometer', at)
