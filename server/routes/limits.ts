@@ -79,7 +79,7 @@ export const limitRoutes = (parts: Parts): Route[] => [
     method: 'post',
     path: '/api/limits',
     action: 'limits.change',
-    summary: "Set a limit; a station's first wave limit brings one on stale data with it",
+    summary: "Set a limit; the first wave limit that needs a station brings one on stale data with it",
     body: limitDraft,
     answer: limitView,
     status: 201,

@@ -1,6 +1,7 @@
 /** Limits at places: what they may be set on, how they are tried over the past, and what is shown of them. */
 import { describe, expect, it } from 'vitest'
-import { Outlook, Place, SeriesDay } from '../../server/models/index.ts'
+import { Outlook, Place, PlaceSettings, SeriesDay } from '../../server/models/index.ts'
+import { demonstrationPlaces } from '../../shared/demonstration/places.ts'
 import type { PlaceKind } from '../../shared/schemas/placeQuantity.ts'
 import { at, judgedStation, plainCondition } from '../support/judgedStation.ts'
 
@@ -46,13 +47,40 @@ describe('a limit at a place', () => {
     expect(station.quantities).not.toContain('crossSea')
   })
 
-  it('is set, named and described by its place, and brings no limit on stale data with it', async () => {
+  it('is set, named and described by its place', async () => {
     const place = await makePlace('entrance')
     const before = (await held.desk.get('/api/limits').expect(200)).body.length
     const { body } = await held.desk.post('/api/limits').send(draftAt(place)).expect(201)
     expect(body).toMatchObject({ title: `Cross-sea, ${place.name}`, subject: { kind: 'place', code: place.code } })
     expect(body.words).toContain('Cross-sea above 1.00 m for 10 min. Clears below 0.85 m')
     expect((await held.desk.get('/api/limits').expect(200)).body).toHaveLength(before + 1)
+  })
+
+  it('brings limits on stale data of the stations behind the place, where they have none', async () => {
+    const place = await makePlace('entrance')
+    // Fed first by Fairway, here the test's station; the substitutes are no stations of this database.
+    const idOf = (code: string): number => (code === 'FW' ? held.station.id : 900_000 + code.charCodeAt(0))
+    const all = demonstrationPlaces.map(({ settings }) => settings(idOf))
+    const content = all.find(({ kind }) => kind === 'entrance')
+    if (!content) throw new Error('the demonstration has no entrance')
+    const version = {
+      placeId: place.id,
+      validFrom: at(-60),
+      content,
+      authorId: null,
+      reason: 'test',
+      createdAt: at(-60),
+    }
+    await PlaceSettings.create(version)
+    const staleOnes = async () =>
+      (await held.desk.get('/api/limits').expect(200)).body.filter(
+        ({ limitClass, subject }: { limitClass: string; subject: { kind: string; id: number } }) =>
+          limitClass === 'dataHealth' && subject.kind === 'station' && subject.id === held.station.id,
+      )
+    await held.desk.post('/api/limits').send(draftAt(place)).expect(201)
+    expect(await staleOnes()).toMatchObject([{ title: `Data stale, ${held.station.name}` }])
+    await held.desk.post('/api/limits').send(draftAt(place)).expect(201)
+    expect(await staleOnes()).toHaveLength(1)
   })
 
   it("is refused on what is not told of its kind, on a station's quantity, and at a place out of service", async () => {

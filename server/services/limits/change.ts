@@ -18,6 +18,7 @@ import { changedMeanwhile, invalidInput, notFound, Refused } from '../problems.t
 import { writeSystemLine } from '../watchLog.ts'
 import { classOf } from './check.ts'
 import { presentLimits } from './present.ts'
+import { stationsBehind } from './subjects.ts'
 import { limitsInForce } from './rows.ts'
 
 export interface LimitOrder {
@@ -107,18 +108,18 @@ export async function addLimit(desk: Desk, draft: NewLimit, personId: number | n
   return limit.id
 }
 
-/** Missing data raises no wave alert: it raises this one, which comes with a station's first wave limit. */
-async function addStaleLimit(desk: Desk, draft: NewLimit, personId: number): Promise<void> {
+/** Missing data raises no wave alert: it raises this one, which comes with the first wave limit that needs a station. */
+async function addStaleLimits(desk: Desk, draft: NewLimit, personId: number): Promise<void> {
   const { transaction } = desk
-  const { subjectId } = draft
-  if (draft.subjectKind !== 'station' || subjectId === null) return
-  const where = { subjectKind: 'station', subjectId, limitClass: 'dataHealth', retiredAt: null }
-  if (await Limit.findOne({ where, transaction })) return
-  const station = await Station.findByPk(subjectId, { transaction })
-  if (!station) return
-  const content = staleContent(station.staleAfterSeconds, draft.content.recipients)
-  const reason = 'Comes with the first limit of a station'
-  await addLimit(desk, { subjectKind: 'station', subjectId, content, reason, consent: noConsent }, personId)
+  for (const subjectId of await stationsBehind(draft, transaction)) {
+    const where = { subjectKind: 'station', subjectId, limitClass: 'dataHealth', retiredAt: null }
+    const known = await Limit.findOne({ where, transaction })
+    const station = known ? null : await Station.findByPk(subjectId, { transaction })
+    if (!station || station.retiredAt !== null) continue
+    const content = staleContent(station.staleAfterSeconds, draft.content.recipients)
+    const reason = 'Comes with the first limit that needs the station'
+    await addLimit(desk, { subjectKind: 'station', subjectId, content, reason, consent: noConsent }, personId)
+  }
 }
 
 /** No usable figure for the station's stale limit; clears with the first one. */
@@ -149,7 +150,7 @@ export const createLimit = (parts: Parts, office: Office, draft: NewLimit, perso
   atDesk(parts, office, async (desk) => {
     const id = await addLimit(desk, draft, personId)
     if (quantityOf(draft.content.condition.comparisons[0].quantity).limitClass === 'wave') {
-      await addStaleLimit(desk, draft, personId)
+      await addStaleLimits(desk, draft, personId)
     }
     return id
   })
