@@ -1,7 +1,8 @@
 /**
  * Measures what the program does in earnest; the figures go to the screen. `npm run bench`, or `npm run bench -- --accuracy [seas
  * an array] [first seed]` for the errors of the estimator; `--large-file [megabytes]` for a file of readings in a small heap, with
- * `node --max-old-space-size=128 --import tsx tests/bench/index.ts`.
+ * `node --max-old-space-size=128 --import tsx tests/bench/index.ts`; `--load [stations] [minutes]` for ingest, estimates and viewers
+ * together, sent by a process of their own.
  */
 import { benchAccuracy } from './accuracy.ts'
 import { benchAcknowledgement } from './acknowledgement.ts'
@@ -9,6 +10,7 @@ import { benchAlertMail } from './alertMail.ts'
 import { benchAlerts } from './alerts.ts'
 import type { Figure } from './benchParts.ts'
 import { benchLargeFile } from './largeFile.ts'
+import { benchLoad } from './load.ts'
 import { benchStorage } from './storage.ts'
 
 const words = process.argv.slice(2)
@@ -23,6 +25,8 @@ if (words[0] === '--accuracy') {
   benchAccuracy(Number(words[1] ?? 200), Number(words[2] ?? 300_001), (line) => process.stdout.write(`${line}\n`))
 } else if (words[0] === '--large-file') {
   tell(await benchLargeFile(Number(words[1] ?? 200)))
+} else if (words[0] === '--load') {
+  await benchLoad(Number(words[1] ?? 200), Number(words[2] ?? 10), (line) => process.stdout.write(`${line}\n`))
 } else {
   tell([
     ...(await benchStorage()),
