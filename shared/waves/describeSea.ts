@@ -8,6 +8,7 @@ import { selectGroups } from './bandMatrices.ts'
 import { bulkLimitsTest, bulkTestNames } from './bulkTests.ts'
 import { phaseSpeed } from './dispersion.ts'
 import { refuse } from './blankResult.ts'
+import type { HeadingTurn } from './headingTurn.ts'
 import type { PreparedArray } from './preparedArray.ts'
 import { defaultQualityLimits } from './qualityLimits.ts'
 import { median } from './robust.ts'
@@ -26,10 +27,14 @@ export interface SeaDoubts {
   ambiguous: boolean
   /** Share of the energy that plane waves with spread leave unexplained, when it is too large; else null. */
   unexplained: number | null
+  /** For each train, how its heading turns with frequency; null or absent where it does not. */
+  turns: readonly (HeadingTurn | null)[]
 }
 
 /** Name of the test that fails when the vector had to be taken from the lags. */
 export const coherenceTest = 'coherence model'
+/** Name of the test that is suspect when seas that cannot be told apart are given as one. */
+export const mixedSeasTest = 'mixed seas'
 
 /** Ratio of measured to linear speed that a current, spread or depth of usual size explains. */
 const usualRatio = { from: 0.85, to: 1.2 }
@@ -84,6 +89,7 @@ export function describeSea(
     closureTest(leading.lags, ids.length),
     ...seaTests(result, systems[0]),
     ...(explained ? [] : [unexplainedTest(doubts)]),
+    ...order.flatMap((n, place) => mixedSeas(doubts.turns[n] ?? null, place + 1)),
   ]
   const other = doubts.runnerUp
   const described: EstimateResult = {
@@ -160,6 +166,13 @@ function unexplainedTest({ unexplained }: SeaDoubts): QualityTest {
 const isSurfZone = ({ significantWaveHeight, waterDepth }: EstimateResult): boolean =>
   (significantWaveHeight ?? 0) > breakingShare * waterDepth
 
+function mixedSeas(turn: HeadingTurn | null, place: number): QualityTest[] {
+  if (!turn) return []
+  const degrees = (turn.range * 180) / Math.PI
+  const detail = `system ${place}: its heading turns by ${degrees.toFixed(0)}° with frequency; mixed seas too near to be told apart are given as one`
+  return [{ test: mixedSeasTest, flag: 3, value: degrees, limit: null, detail }]
+}
+
 function seaTests(result: EstimateResult, leading: WaveSystem): QualityTest[] {
   const ratio = leading.speedRatio
   const share = (result.significantWaveHeight ?? 0) / result.waterDepth
@@ -183,7 +196,14 @@ function seaTests(result: EstimateResult, leading: WaveSystem): QualityTest[] {
 
 /** Suspect (3) when a sensor was left out, a geometry fault was found or a test of the sea is suspect; else good. */
 function overallFlag(result: EstimateResult): QualityFlag {
-  const geometry = ['lag closure', 'dispersion ratio', 'height over depth', 'sensor phases', coherenceTest]
+  const geometry = [
+    'lag closure',
+    'dispersion ratio',
+    'height over depth',
+    'sensor phases',
+    coherenceTest,
+    mixedSeasTest,
+  ]
   const doubtful = result.tests.some(
     (test) =>
       (geometry.includes(test.test) && test.flag !== 1) || (bulkTestNames.includes(test.test) && test.flag === 3),

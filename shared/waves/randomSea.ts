@@ -3,6 +3,7 @@ import type { ArraySpectra } from './arraySpectra.ts'
 import { noiseDensity } from './bandMatrices.ts'
 import type { ArrayFrame } from './arrayGeometry.ts'
 import { sandwichCovariance } from './fitCovariance.ts'
+import { headingTurn } from './headingTurn.ts'
 import { noiseIndex } from './seaModel.ts'
 import { greatestUnexplained, unexplainedShare } from './sensorFaults.ts'
 import { systemVector } from './systemVector.ts'
@@ -30,6 +31,7 @@ export function findRandomSea(
   if (!found) return null
   const wide = sandwichCovariance(found.fit)
   const energies = trainEnergies(spectra, found)
+  const turns = found.peaks.map((_, j) => headingTurn(found.fit, j))
   const trains = found.peaks.map((peak, j): TrainVector => {
     const exact = systemVector(found.fit, found.fit.covariance, j, peak.peak)
     const scattered = systemVector(found.fit, wide, j, peak.peak)
@@ -38,7 +40,8 @@ export function findRandomSea(
       direction: exact.direction,
       speed: exact.speed,
       measuredSpeed: exact.speed,
-      directionVariance: Math.max(exact.directionVariance, scattered.directionVariance),
+      // A heading that turns with frequency is no one heading: how far it turns is part of its error.
+      directionVariance: Math.max(exact.directionVariance, scattered.directionVariance) + (turns[j]?.range ?? 0) ** 2,
       logSpeedVariance: Math.max(exact.logSpeedVariance, scattered.logSpeedVariance),
       cross: wider.cross,
       spread: exact.spread,
@@ -58,7 +61,7 @@ export function findRandomSea(
     found,
     trains,
     gain: found.fit.evaluation.dataValue - unrelatedLikelihood(found.fit.model.bands),
-    doubts: { lagResidualRms: null, runnerUp, ambiguous, unexplained },
+    doubts: { lagResidualRms: null, runnerUp, ambiguous, unexplained, turns },
   }
 }
 

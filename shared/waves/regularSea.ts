@@ -78,6 +78,7 @@ export function findRegularSea(window: ArrayWindow, prepared: PreparedArray, spe
       runnerUp: null,
       ambiguous: wave.runnerUp > ambiguousFrom,
       unexplained: null,
+      turns: [],
     },
   }
 }

@@ -205,10 +205,14 @@ function likelihoodOn(joint: FittedTogether, other: FittedTogether): number {
   return value
 }
 
-/** Peak of one train's own density, once the fit has told the trains apart. */
+/**
+ * Peak of one train's own density, once the fit has told the trains apart, at the frequencies about it where the train is the larger
+ * part: beside them it holds what the fit could not tell apart.
+ */
 function ownPeak(fit: SeaFit, system: number): PeakFit {
-  const { bands } = fit.model
-  const own = fit.state.logDensity.slice(system * bands.groups, (system + 1) * bands.groups).map(Math.exp)
+  const { bands, systems } = fit.model
+  const densityOf = (j: number, g: number) => Math.exp(fit.state.logDensity[j * bands.groups + g])
+  const own = Float64Array.from({ length: bands.groups }, (_, g) => densityOf(system, g))
   let above = 0
   let below = 0
   for (let g = 0; g < bands.groups; g++) {
@@ -216,10 +220,26 @@ function ownPeak(fit: SeaFit, system: number): PeakFit {
     above += weight * bands.frequency[g]
     below += weight
   }
+  const near = above / below
+  const rules = (g: number) => {
+    let all = 0
+    for (let j = 0; j < systems; j++) all += densityOf(j, g)
+    return own[g] > 0.5 * all
+  }
+  const middle = Math.min(bands.groups - 1, firstGroup(bands, near))
+  let from = middle
+  let to = middle
+  while (from > 0 && rules(from - 1)) from--
+  while (to + 1 < bands.groups && rules(to + 1)) to++
   const noise = noiseDensity(bands)
   const density = noise.map((n, g) => n + own[g])
-  return fitPeak(bands.frequency, density, bands.averages, noise, above / below)
+  const wide = to - from >= fewestOwnGroups
+  const range = wide ? { from: bands.frequency[from], to: bands.frequency[to] } : undefined
+  return fitPeak(bands.frequency, density, bands.averages, noise, near, range)
 }
+
+/** Groups needed to fit a peak to them alone. */
+const fewestOwnGroups = 5
 
 interface Start {
   /** Direction, current, ln depth, ln spread. */
