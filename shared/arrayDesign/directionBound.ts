@@ -39,72 +39,100 @@ export function coherencesOf(
   return lines.map(({ waveNumber }) => meanCoherence(sensors, waveNumber, toward, spread, longestBaseline))
 }
 
-/** Indices of all sensors but one. */
-export const allBut = (count: number, left: number | null): number[] =>
-  Array.from({ length: count }, (_, n) => n).filter((n) => n !== left)
-
 /**
- * For the sensors named by their indices; record length in s. Null where the array cannot tell direction and speed: fewer than
- * three sensors, or all on a line.
+ * Of the whole array, then of the array without each of its sensors in turn; record length in s. Null where an array cannot tell
+ * direction and speed: fewer than three sensors, or all on a line.
  */
-export function directionBound(
+export function directionBounds(
   coherences: readonly MeanCoherence[],
   lines: readonly SeaLine[],
-  kept: readonly number[],
   seconds: number,
-): DirectionVariance | null {
-  if (kept.length < 3) return null
-  const hasSpread = coherences[0]?.bySpread !== null
-  const count = hasSpread ? 3 : 2
-  const information = Array.from({ length: count }, () => new Float64Array(count))
+): (DirectionVariance | null)[] {
+  const size = lines[0]?.noise.length ?? 0
+  const count = coherences[0]?.bySpread === null ? 2 : 3
+  const sums = Array.from({ length: size + 1 }, () => Array.from({ length: count }, () => new Float64Array(count)))
   for (const [n, line] of lines.entries()) {
-    const own = informationOf(coherences[n], line, kept)
-    if (!own) return null
-    for (let a = 0; a < count; a++) {
-      for (let b = 0; b < count; b++) information[a][b] += seconds * line.width * own[a][b]
-    }
+    const traces = tracesOf(coherences[n], line, size)
+    if (!traces) return sums.map(() => null)
+    traces.forEach((trace, which) => addInformation(sums[which], trace, seconds * line.width))
   }
-  return invert(information)
+  return sums.map((information, which) => (size - (which > 0 ? 1 : 0) < 3 ? null : invert(information)))
 }
 
-/** Of one frequency and per second and hertz, with the density taken out as unknown (Schur's complement). */
-function informationOf(coherence: MeanCoherence, line: SeaLine, kept: readonly number[]): number[][] | null {
-  const size = kept.length
-  const sea = chosen(coherence.value, kept)
-  const whole = { real: sea.real.map((v) => v * line.density), imag: sea.imag.map((v) => v * line.density) }
-  for (let i = 0; i < size; i++) whole.real[i * size + i] += line.noise[kept[i]]
+/** Adds one frequency's information, with the density taken out as unknown (Schur's complement). */
+function addInformation(sum: Float64Array[], traces: readonly Float64Array[], weight: number): void {
+  for (let a = 0; a < sum.length; a++) {
+    for (let b = 0; b < sum.length; b++) {
+      const own = traces[a + 1][b + 1] - (traces[a + 1][0] * traces[0][b + 1]) / traces[0][0]
+      sum[a][b] += weight * own
+    }
+  }
+}
+
+/**
+ * tr(R⁻¹ A R⁻¹ B) for the density's change and the others', of the whole array and without each sensor. Without sensor i the inverse
+ * is P - p p'/p_ii with p the i-th column of P = R⁻¹, so each comes from the whole one in the square of the number of sensors.
+ */
+function tracesOf(coherence: MeanCoherence, line: SeaLine, size: number): Float64Array[][] | null {
+  const { value, byDirection, bySlowness, bySpread } = coherence
+  const whole = { real: value.real.map((v) => v * line.density), imag: value.imag.map((v) => v * line.density) }
+  for (let i = 0; i < size; i++) whole.real[i * size + i] += line.noise[i]
   const inverse = { real: new Float64Array(size * size), imag: new Float64Array(size * size) }
   const work = new Float64Array(4 * size * size)
   if (Number.isNaN(invertHermitian(size, whole.real, whole.imag, inverse.real, inverse.imag, work))) return null
-  const { byDirection, bySlowness, bySpread } = coherence
-  const changes = [byDirection, bySlowness, ...(bySpread ? [bySpread] : [])]
-  const products = [product(inverse, sea, size)]
-  for (const change of changes) products.push(product(inverse, chosen(change, kept), size, line.density))
-  const traces = products.map((a) => products.map((b) => traceOfProduct(a, b, size)))
-  return changes.map((_, a) =>
-    changes.map((_, b) => traces[a + 1][b + 1] - (traces[a + 1][0] * traces[0][b + 1]) / traces[0][0]),
-  )
+  const changes = [value, byDirection, bySlowness, ...(bySpread ? [bySpread] : [])]
+  const scales = changes.map((_, n) => (n === 0 ? 1 : line.density))
+  const products = changes.map((change, n) => product(inverse, change, size, scales[n]))
+  const ofAll = products.map((a) => Float64Array.from(products, (b) => traceOfProduct(a, b, size)))
+  const without = Array.from({ length: size }, (_, i) => {
+    const p = columnOf(inverse, i, size)
+    const pivot = inverse.real[i * size + i]
+    const turned = changes.map((change, n) => timesVector(change, p, size, scales[n]))
+    const lengths = turned.map((y) => inner(p, y))
+    const carried = turned.map((y) => timesVector(inverse, y, size, 1))
+    return turned.map(
+      (y, a) =>
+      Float64Array.from(turned, (_, b) => ofAll[a][b] - (2 * inner(y, carried[b])) / pivot + (lengths[a] * lengths[b]) / pivot ** 2), // prettier-ignore
+    )
+  })
+  return [ofAll, ...without]
 }
 
-function chosen({ real, imag }: SquareMatrix, kept: readonly number[]): SquareMatrix {
-  const size = kept.length
-  const all = Math.round(Math.sqrt(real.length))
-  if (size === all) return { real, imag }
-  const out = { real: new Float64Array(size * size), imag: new Float64Array(size * size) }
+function columnOf({ real, imag }: SquareMatrix, column: number, size: number): SquareMatrix {
+  return {
+    real: Float64Array.from({ length: size }, (_, row) => real[row * size + column]),
+    imag: Float64Array.from({ length: size }, (_, row) => imag[row * size + column]),
+  }
+}
+
+function timesVector(a: SquareMatrix, x: SquareMatrix, size: number, factor: number): SquareMatrix {
+  const out = { real: new Float64Array(size), imag: new Float64Array(size) }
   for (let i = 0; i < size; i++) {
-    for (let j = 0; j < size; j++) {
-      out.real[i * size + j] = real[kept[i] * all + kept[j]]
-      out.imag[i * size + j] = imag[kept[i] * all + kept[j]]
+    let [real, imag] = [0, 0]
+    for (let k = 0; k < size; k++) {
+      const at = i * size + k
+      real += a.real[at] * x.real[k] - a.imag[at] * x.imag[k]
+      imag += a.real[at] * x.imag[k] + a.imag[at] * x.real[k]
     }
+    out.real[i] = factor * real
+    out.imag[i] = factor * imag
   }
   return out
 }
 
-function product(a: SquareMatrix, b: SquareMatrix, size: number, factor = 1): SquareMatrix {
+/** Real part of x' y with x conjugated. */
+function inner(x: SquareMatrix, y: SquareMatrix): number {
+  let sum = 0
+  for (let n = 0; n < x.real.length; n++) sum += x.real[n] * y.real[n] + x.imag[n] * y.imag[n]
+  return sum
+}
+
+function product(a: SquareMatrix, b: SquareMatrix, size: number, factor: number): SquareMatrix {
   const out = { real: new Float64Array(size * size), imag: new Float64Array(size * size) }
   for (let i = 0; i < size; i++) {
     for (let k = 0; k < size; k++) {
-      const [ar, ai] = [a.real[i * size + k] * factor, a.imag[i * size + k] * factor]
+      const ar = a.real[i * size + k] * factor
+      const ai = a.imag[i * size + k] * factor
       for (let j = 0; j < size; j++) {
         out.real[i * size + j] += ar * b.real[k * size + j] - ai * b.imag[k * size + j]
         out.imag[i * size + j] += ar * b.imag[k * size + j] + ai * b.real[k * size + j]

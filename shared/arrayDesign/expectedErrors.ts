@@ -4,7 +4,7 @@ import type { DesignCheck, DesignQuestion } from '../schemas/stationSetUpDesign.
 import { phaseSpeed, pressureResponse, waveNumber } from '../waves/dispersion.ts'
 import { jonswapShape } from '../waves/jonswap.ts'
 import { arrayFrame, leastAxisRatio } from '../waves/arrayGeometry.ts'
-import { allBut, coherencesOf, directionBound } from './directionBound.ts'
+import { coherencesOf, directionBounds } from './directionBound.ts'
 import type { SeaLine } from './directionBound.ts'
 import { baselines } from './falsePeaks.ts'
 import { systematicErrors } from './systematicErrors.ts'
@@ -22,7 +22,8 @@ export type ErrorCurve = DesignCheck['curves'][number]
 /** Of the peak: where a train's energy lies that a reading uses. */
 const bandFrom = 0.75
 const bandTo = 1.8
-const lineCount = 20
+/** Fewer for a large array, so that a dragged sensor is followed. */
+const linesOf = (sensors: number): number => (sensors > 12 ? 8 : 20)
 const gamma = 3.3
 const stepDegrees = 10
 const degree = Math.PI / 180
@@ -33,6 +34,7 @@ export const curveDirections = Array.from({ length: 360 / stepDegrees }, (_, n) 
 /** A JONSWAP train (γ 3.3) scaled to the height, with each sensor's noise as it stands against the surface. */
 export function seaLines(sensors: readonly DesignSensor[], { sea, waterDepth, gravity }: DesignQuestion): SeaLine[] {
   const peak = 1 / sea.peakPeriod
+  const lineCount = linesOf(sensors.length)
   const width = ((bandTo - bandFrom) * peak) / lineCount
   const wholeShape = shapeIntegral(peak)
   const floor = (2 * sea.noiseSd ** 2) / sea.sampleRate
@@ -73,12 +75,13 @@ export function expectedErrors(sensors: readonly DesignSensor[], question: Desig
   for (let n = 0; n < curveDirections.length / 2; n++) {
     const toward = radiansFromEast(curveDirections[n] + 180)
     const coherences = coherencesOf(sensors, lines, toward, sea.directionalSpread * degree, longest)
+    const bounds = directionBounds(coherences, lines, windowSeconds)
     left.forEach((one, place) => {
-      if (reasons[place] !== null) return
-      const kept = allBut(sensors.length, one)
-      const bound = directionBound(coherences, lines, kept, windowSeconds)
-      const systematic = systematicErrors(kept.map((index) => sensors[index]), toward, speed) // prettier-ignore
-      if (!bound || !systematic) return
+      const bound = bounds[place]
+      if (reasons[place] !== null || !bound) return
+      const kept = sensors.filter((_, index) => index !== one)
+      const systematic = systematicErrors(kept, toward, speed)
+      if (!systematic) return
       for (const index of [n, n + curveDirections.length / 2]) {
         curves[place].headingSd[index] = Math.sqrt(bound.direction + systematic.direction) / degree
         curves[place].speedSd[index] = Math.sqrt(bound.logSpeed + systematic.logSpeed)

@@ -1,7 +1,7 @@
 /** Expected errors against closed forms and against a bound worked out apart from the program. */
 import { describe, expect, test } from 'vitest'
 import { checkDesign } from '../../../shared/arrayDesign/checkDesign.ts'
-import { allBut, coherencesOf, directionBound } from '../../../shared/arrayDesign/directionBound.ts'
+import { coherencesOf, directionBounds } from '../../../shared/arrayDesign/directionBound.ts'
 import type { SeaLine } from '../../../shared/arrayDesign/directionBound.ts'
 import { baselines } from '../../../shared/arrayDesign/falsePeaks.ts'
 import { clockSkewAllowed, systematicErrors } from '../../../shared/arrayDesign/systematicErrors.ts'
@@ -26,8 +26,11 @@ const lineAt = (frequency: number, width: number, count: number, ratio: number, 
   waveNumber: 2 * Math.PI * frequency * slowness,
 })
 
+const boundsOf = (sensors: GridPosition[], lines: SeaLine[], toward: number, seconds: number, spread = 0) =>
+  directionBounds(coherencesOf(sensors, lines, toward, spread, baselines(sensors).longest), lines, seconds)
+
 const longCrested = (sensors: GridPosition[], lines: SeaLine[], toward: number, seconds: number) =>
-  directionBound(coherencesOf(sensors, lines, toward, 0, baselines(sensors).longest), lines, allBut(sensors.length, null), seconds) // prettier-ignore
+  boundsOf(sensors, lines, toward, seconds)[0]
 
 describe('the bound of a long-crested train', () => {
   const array = at([0, 0], [12, 0], [3, 14], [-9, 7])
@@ -96,10 +99,21 @@ test('the bound of a short-crested train is that of derivatives by differences, 
     return { width: 0.07 / 60, density: density(frequency), noise: [0.002, 0.002, 0.002, 0.002], waveNumber: linearWaveNumber(2 * Math.PI * frequency, 9) } // prettier-ignore
   })
   const [toward, spread] = [(20 * Math.PI) / 180, (22 * Math.PI) / 180]
-  const coherences = coherencesOf(positions, lines, toward, spread, baselines(positions).longest)
-  const bound = directionBound(coherences, lines, [0, 1, 2, 3], 1200)
+  const [bound] = boundsOf(positions, lines, toward, 1200, spread)
   expect((Math.sqrt(bound?.direction ?? 0) * 180) / Math.PI / wanted.heading).toBeCloseTo(1, 2)
   expect(Math.sqrt(bound?.logSpeed ?? 0) / wanted.logSpeed).toBeCloseTo(1, 2)
+})
+
+test.each([0, 0.4])('without a sensor the bound is that of the smaller array, spread %d', (spread) => {
+  const five = at([0, 0], [12, 0], [3, 14], [-9, 7], [-6, -11])
+  const [, ...without] = boundsOf(five, flatSea(5, 0.08, 0.12, 5, 1 / 8), 0.4, 1200, spread)
+  five.forEach((_, left) => {
+    const four = five.filter((_, n) => n !== left)
+    const [alone] = boundsOf(four, flatSea(4, 0.08, 0.12, 5, 1 / 8), 0.4, 1200, spread)
+    for (const field of ['direction', 'logSpeed', 'cross'] as const) {
+      expect((without[left]?.[field] ?? NaN) / (alone?.[field] ?? 1)).toBeCloseTo(1, 6)
+    }
+  })
 })
 
 /** c = 7.5 m/s over a baseline of 20 m: along the wave c dt/b of the speed, across it c dt/b rad of the heading. */
