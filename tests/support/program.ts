@@ -81,7 +81,7 @@ const isReady = async (url: string): Promise<boolean> => {
 }
 
 /** Resolves when the server says it can work. */
-export const untilReady = (url: string): Promise<void> => until('the server is ready', () => isReady(url), 30_000)
+export const untilReady = (url: string): Promise<void> => until('the server is ready', () => isReady(url), 90_000)
 
 export interface ProgramOptions {
   /** Run after the database is seeded and before anything is streamed. */
