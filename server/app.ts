@@ -47,7 +47,8 @@ export function createApp(parts: Parts, readiness: Readiness = createReadiness()
 
 /** Files go in as they are; the header that sameOrigin asks for says that it is one of our own pages. */
 const takesFile = (request: Request): boolean =>
-  /^(\/api)?\/stations\/\d+\/uploads$/.test(request.path) && request.is(['text/csv', 'text/plain', 'application/octet-stream']) !== false // prettier-ignore
+  /^(\/api)?\/(stations\/\d+\/uploads|log\/\d+\/attachments)$/.test(request.path) &&
+  request.is(['text/csv', 'text/plain', 'application/octet-stream']) !== false
 
 /** A form of another site can send text and forms, but no JSON without being asked first. */
 const jsonOnly: RequestHandler = (request, _response, next) => {

@@ -49,6 +49,9 @@ export type Action =
   | 'profile.change'
   | 'messages.read'
   | 'deliveries.change'
+  | 'log.change'
+  | 'watches.read'
+  | 'watches.change'
   | 'bulletins.read'
   | 'bulletins.change'
   | 'publicBulletins.read'
@@ -125,6 +128,10 @@ const rows: Record<Action, readonly Role[] | typeof anybody> = {
   'profile.change': everyone,
   'messages.read': ['admin', 'operator'],
   'deliveries.change': ['operator'],
+  'log.change': ['operator'],
+  // Who is on watch shows everywhere, to those who sign in.
+  'watches.read': everyone,
+  'watches.change': ['operator'],
   'bulletins.read': ['admin', 'operator'],
   'bulletins.change': ['operator'],
   // While the office has switched it on; without anybody's name.

@@ -3,6 +3,7 @@ import type { Sequelize } from 'sequelize'
 import { defineAbsence } from './absence.ts'
 import { defineAlert } from './alert.ts'
 import { defineAlertEvent } from './alertEvent.ts'
+import { defineAttachment } from './attachment.ts'
 import { defineAudit } from './audit.ts'
 import { defineAuditCheck } from './auditCheck.ts'
 import { defineAuxiliaryReading } from './auxiliaryReading.ts'
@@ -21,6 +22,7 @@ import { defineEscalation } from './escalation.ts'
 import { defineEstimate } from './estimate.ts'
 import { defineEstimateDetail } from './estimateDetail.ts'
 import { defineFrame } from './frame.ts'
+import { defineHandOver } from './handOver.ts'
 import { defineImport } from './import.ts'
 import { defineInstallation } from './installation.ts'
 import { defineLimit } from './limit.ts'
@@ -51,11 +53,13 @@ import { defineStationKey } from './stationKey.ts'
 import { defineStationSettings } from './stationSettings.ts'
 import { defineStream } from './stream.ts'
 import { defineUpload } from './upload.ts'
+import { defineWatch } from './watch.ts'
 import { defineWatermark } from './watermark.ts'
 
 export { Absence } from './absence.ts'
 export { Alert } from './alert.ts'
 export { AlertEvent } from './alertEvent.ts'
+export { Attachment } from './attachment.ts'
 export { Audit } from './audit.ts'
 export { AuditCheck } from './auditCheck.ts'
 export { AuxiliaryReading } from './auxiliaryReading.ts'
@@ -74,6 +78,7 @@ export { Escalation } from './escalation.ts'
 export { Estimate } from './estimate.ts'
 export { EstimateDetail } from './estimateDetail.ts'
 export { Frame } from './frame.ts'
+export { HandOver } from './handOver.ts'
 export { Import } from './import.ts'
 export { Installation } from './installation.ts'
 export { Limit } from './limit.ts'
@@ -104,12 +109,14 @@ export { StationKey } from './stationKey.ts'
 export { StationSettings } from './stationSettings.ts'
 export { Stream } from './stream.ts'
 export { Upload } from './upload.ts'
+export { Watch } from './watch.ts'
 export { Watermark } from './watermark.ts'
 
 const definitions = [
   defineAbsence,
   defineAlert,
   defineAlertEvent,
+  defineAttachment,
   defineAudit,
   defineAuditCheck,
   defineAuxiliaryReading,
@@ -128,6 +135,7 @@ const definitions = [
   defineEstimate,
   defineEstimateDetail,
   defineFrame,
+  defineHandOver,
   defineImport,
   defineInstallation,
   defineLimit,
@@ -158,6 +166,7 @@ const definitions = [
   defineStationSettings,
   defineStream,
   defineUpload,
+  defineWatch,
   defineWatermark,
 ]
 

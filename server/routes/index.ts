@@ -13,6 +13,7 @@ import { installationRoutes } from './installation.ts'
 import { jobRoutes } from './jobs.ts'
 import { limitRoutes } from './limits.ts'
 import { listRoutes } from './lists.ts'
+import { logRoutes } from './log.ts'
 import { messageRoutes } from './messages.ts'
 import { noticeRoutes } from './notices.ts'
 import { observationRoutes } from './observations.ts'
@@ -37,6 +38,7 @@ import { stationSetUpRoutes } from './stationSetUp.ts'
 import { stationRoutes } from './stations.ts'
 import { watchRulesRoutes } from './watchRules.ts'
 import { uploadRoutes } from './uploads.ts'
+import { watchRoutes } from './watches.ts'
 
 const features: ((parts: Parts) => Route[])[] = [
   installationRoutes,
@@ -69,6 +71,8 @@ const features: ((parts: Parts) => Route[])[] = [
   systemRoutes,
   receiptRoutes,
   bulletinRoutes,
+  logRoutes,
+  watchRoutes,
   placeRoutes,
   noticeRoutes,
   observationRoutes,

@@ -96,6 +96,8 @@ export function route<
       response,
     }
     const result = await withDeadline(declared.handle(asked), declared.deadlineMilliseconds ?? usualDeadline)
+    // A file was sent by its handler.
+    if (response.writableEnded) return
     response.status(status)
     if (!response.get('Cache-Control')) response.set('Cache-Control', 'no-store')
     if (media) response.type(media).send(String(result))

@@ -35,6 +35,10 @@ export interface News {
   'place.changed': { placeId: number }
   'alert.changed': { alertId: number }
   'limit.changed': { limitId: number }
+  /** Lines were written by people, or something was added to them. */
+  'log.written': { entryIds: number[] }
+  /** A watch began or ended, notes were written. */
+  'watch.changed': Record<string, never>
   /** A bulletin was drafted, changed, issued, cancelled or thrown away, or its next issue is overdue. */
   'bulletin.changed': { bulletinId: number }
   /** An e-mail was written, or became what it is now for somebody. */

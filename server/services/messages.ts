@@ -47,6 +47,18 @@ async function notOutAmong(sequelize: Parts['sequelize'], now: Date): Promise<nu
   return rows.map(({ messageId }) => messageId)
 }
 
+/** How many e-mails the mail server has not taken, and since when. */
+export async function messagesNotOut({
+  sequelize,
+  clock,
+}: Pick<Parts, 'sequelize' | 'clock'>): Promise<{ count: number; since: string | null }> {
+  const sql = `SELECT COUNT(DISTINCT d.messageId) AS count, MIN(d.createdAt) AS since FROM deliveries d WHERE ${notOutSql}`
+  const [row] = await select<{ count: number; since: Date | null }>(sequelize, sql, {
+    notOutSince: notOutSince(clock.now()),
+  })
+  return { count: Number(row?.count ?? 0), since: row?.since?.toISOString() ?? null }
+}
+
 /** As the list shows it. */
 export async function readMessageLine(messageId: number): Promise<MessageView | null> {
   const row = await Message.findByPk(messageId)

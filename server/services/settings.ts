@@ -9,6 +9,7 @@ import type { PublicSettings } from '../../shared/schemas/coast.ts'
 import { placeCautions } from '../../shared/schemas/placeCautions.ts'
 import { flagSet } from '../../shared/schemas/placeNotice.ts'
 import { dailyEmail, watchRules } from '../../shared/schemas/watchRules.ts'
+import { rota } from '../../shared/schemas/watch.ts'
 import type { Parts } from '../config/parts.ts'
 import { SettingVersion } from '../models/index.ts'
 import { recordAudit } from './audit.ts'
@@ -57,6 +58,8 @@ const shapes = {
   beachFlags: flagSet,
   /** How long before its end the watch and its lists are told of a notice about to expire. */
   notices: z.strictObject({ warnMinutes: z.number().int().min(5).max(1440) }),
+  /** Watches by the port's clock; empty: they are free. */
+  rota: z.strictObject({ watches: rota }),
   bulletins: z.strictObject({
     /** A second pair of eyes before a bulletin goes out or, alone, a written reason. */
     asksSecondPerson: z.boolean(),
@@ -89,6 +92,7 @@ const initial: Settings = {
   placeCautions: usualPlaceCautions,
   beachFlags: usualFlagSet,
   notices: { warnMinutes: 30 },
+  rota: { watches: [] },
   bulletins: { asksSecondPerson: true, isPublic: false },
   retention: { readingBlocks: 25, stationHealthHours: 25, estimates: null, estimateDetails: 25 },
 }

@@ -9,6 +9,8 @@ export interface SystemLine {
   /** One sentence for people. */
   text: string
   figures?: unknown
+  /** Who signed for it; without one the program itself says it. */
+  personId?: number
   /** Resources it speaks of, such as `{ stationId: 3 }`. */
   links?: Record<string, number | string>
 }
@@ -25,7 +27,7 @@ export async function writeSystemLine(
     {
       at: clock.now(),
       kind: line.kind,
-      personId: null,
+      personId: line.personId ?? null,
       text: line.text.slice(0, longestText),
       figures: line.figures ?? null,
       links: line.links ?? null,

@@ -1,6 +1,6 @@
 /** What a bulletin takes of a station, frozen at a moment. */
 import { livePicture } from '../livePicture.ts'
-import type { BulletinFigure } from '../schemas/bulletin.ts'
+import type { MissingFigure, StationFigure } from '../schemas/bulletin.ts'
 import type { StationView } from '../schemas/station.ts'
 import { clockUtc } from '../times.ts'
 import { unresolvedWords } from '../unresolvedWords.ts'
@@ -32,8 +32,8 @@ const missingWords = (station: StationView, nowMs: number): string => {
 }
 
 /** `nowMs`: server time, ms since 1970 UTC. A station out of use, stale or without a vector is missing, with the reason in words. */
-export function freezeStation(station: StationView, nowMs: number): BulletinFigure {
-  const missing = (reason: string): BulletinFigure => ({
+export function freezeStation(station: StationView, nowMs: number): StationFigure | MissingFigure {
+  const missing = (reason: string): MissingFigure => ({
     ...{ kind: 'missing', subject: 'station', subjectId: station.id, name: station.name, reason },
   })
   if (station.state !== 'active') return missing(station.state === 'retired' ? 'retired' : 'under maintenance')

@@ -52,6 +52,10 @@ export const liveEventKinds = {
   alert: 'alert',
   /** room `limits`; body: limitView */
   limit: 'limit',
+  /** room `watch`; body: logEntryView, also when something was added to it */
+  logEntry: 'logEntry',
+  /** room `stations`: it shows everywhere; body: watchNow */
+  watch: 'watch',
   /** room `watch`; body: bulletinView */
   bulletin: 'bulletin',
   /** room `watch`; body: { id } of a draft thrown away */

@@ -1,6 +1,7 @@
 /** Turns the news of the process into events of rooms. Bodies are what REST gives, made by the same functions. */
 import { currentEstimate, seriesPoint, stationView, tracesChunk } from '../../../shared/schemas/station.ts'
 import { alertView } from '../../../shared/schemas/alert.ts'
+import { watchNow } from '../../../shared/schemas/watch.ts'
 import { bulletinView } from '../../../shared/schemas/bulletin.ts'
 import { limitView } from '../../../shared/schemas/limit.ts'
 import { placeView } from '../../../shared/schemas/place.ts'
@@ -10,6 +11,7 @@ import { liveEventKinds as kinds } from '../../../shared/wire/live.ts'
 import type { Parts } from '../../config/parts.ts'
 import { bulletinOfficeOf } from '../../presenters/bulletin.ts'
 import { presentPlace } from '../../presenters/place.ts'
+import { presentWatchNow } from '../../presenters/watch.ts'
 import { presentStation } from '../../presenters/station.ts'
 import { readAlert } from '../../services/alerts.ts'
 import { findBulletin } from '../../services/bulletins.ts'
@@ -18,7 +20,19 @@ import { readLimit } from '../../services/limits.ts'
 import { readMessageLine } from '../../services/messages.ts'
 import { readPoint } from '../../services/series.ts'
 import { listStations } from '../../services/stations.ts'
+import { createLogTail } from './logTail.ts'
 import type { Hub } from '../hub.ts'
+
+/** News whose transactions may have written lines of the log. */
+const linesFollow = [
+  'alert.changed',
+  'limit.changed',
+  'message.changed',
+  'place.changed',
+  'station.changed',
+  'bulletin.changed',
+  'watch.changed',
+] as const
 
 /** Readings come every second; what they change of a station is told this often. */
 const stationEveryMs = 5_000
@@ -104,6 +118,13 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
     })
   }
 
+  const logTail = createLogTail(hub)
+  const followLog = (): void => inTurn('log', ['watch'], () => logTail.follow())
+  const tellWatch = (): void =>
+    inTurn('watch', ['stations'], async () =>
+      hub.publish('stations', kinds.watch, watchNow.parse(await presentWatchNow(parts)), 'watch'),
+    )
+
   const tellBulletin = (bulletinId: number): void =>
     tell('watch', async () => {
       const view = await findBulletin(parts, await bulletinOfficeOf(parts), bulletinId)
@@ -131,6 +152,10 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
       if (alertId !== null) tellAlert(alertId)
     }),
     bus.subscribe('bulletin.changed', ({ bulletinId }) => tellBulletin(bulletinId)),
+    bus.subscribe('watch.changed', tellWatch),
+    bus.subscribe('log.written', ({ entryIds }) => inTurn('log', ['watch'], () => logTail.tellAgain(entryIds))),
+    // What writes lines of the log.
+    ...linesFollow.map((topic) => bus.subscribe(topic, followLog)),
     bus.subscribe('traces.arrived', (chunk) => {
       const room = `traces:${chunk.stationId}`
       if (hub.isHeard(room)) hub.publish(room, kinds.traces, tracesChunk.parse(chunk))
