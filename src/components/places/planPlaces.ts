@@ -25,7 +25,11 @@ function figureOnPlan(place: PlaceView, nowMs: number): string {
   const limit = limitOf(place, key)
   if (limit?.state === 'shelved') return `${wordsOf(key, figure.value)}, ${limit.isActive ? 'above, ' : ''}shelved`
   const doubt = qualityFlag === 1 ? '' : ', Suspect'
-  if (figure.likely) return `${numberOf(key, figure.value)}, ${uncertaintyOf(key, figure)} ${unitOf(key)}${doubt}`
+  if (figure.likely)
+    return doubt
+      ? `${wordsOf(key, figure.value)}, ${uncertaintyOf(key, figure).replace('likely ', '')}${doubt}`
+      : `${numberOf(key, figure.value)}, ${uncertaintyOf(key, figure)} ${unitOf(key)}`
+  if (doubt) return `${wordsOf(key, figure.value)} ${uncertaintyOf(key, figure)}${doubt}`
   const name = placeQuantityOf(key).name.replace(/,.*$/, '').toLowerCase()
-  return `${name} ${wordsOf(key, figure.value)} ${uncertaintyOf(key, figure)}${doubt}`
+  return `${name} ${wordsOf(key, figure.value)} ${uncertaintyOf(key, figure)}`
 }

@@ -28,8 +28,12 @@ export interface PlacedLabel {
 
 /** Nearer than this a point of the coast's plan is the place itself, drawing units. */
 const samePlace = 9
-const letter = 6.7
+const letter = 6
+const rowStep = 36
 const markWidth = 26
+
+const overlaps = (a: Box, b: Box): boolean =>
+  a.x < b.x + b.width && b.x < a.x + a.width && a.y < b.y + b.height && b.y < a.y + a.height
 
 /** A label stands where the plan of the coast wants it, else beside the place; inside the drawing in any case. */
 export function placeOnPlan(
@@ -38,6 +42,8 @@ export function placeOnPlan(
   frame: PlanFrame,
   { width, height }: { width: number; height: number },
 ): PlacedLabel[] {
+  const boxes: Box[] = []
+  const isFree = (box: Box): boolean => boxes.every((other) => !overlaps(box, other))
   return places.map((place) => {
     const at = frame.project(place.longitude, place.latitude)
     const known = layout?.places.find((one) => Math.hypot(one.at[0] - at[0], one.at[1] - at[1]) < samePlace)
@@ -45,7 +51,12 @@ export function placeOnPlan(
     const textWidth = Math.max(place.name.length * 7.2, place.words.length * letter)
     const indent = place.hasMark ? markWidth + 4 : 4
     const x = Math.max(4, Math.min(wantedX, width - 6 - indent - textWidth))
-    const y = Math.max(18, Math.min(wantedY, height - 22))
+    const boxAt = (top: number): Box => ({ x, y: top - 16, width: indent + textWidth, height: 34 })
+    const inside = (top: number): number => Math.max(18, Math.min(top, height - 22))
+    // Where another label stands already it moves down, then up.
+    const tops = [0, 1, -1, 2, -2].map((step) => inside(wantedY + step * rowStep))
+    const y = tops.find((top) => isFree(boxAt(top))) ?? tops[0]
+    boxes.push(boxAt(y))
     const end: Point = [x, y - 4]
     return {
       id: place.id,
@@ -53,7 +64,7 @@ export function placeOnPlan(
       leader: polyline([at, [x - 6, y - 4], end]),
       mark: [x + 4, y - 15],
       text: [x + indent, y - 2],
-      box: { x, y: y - 16, width: indent + textWidth, height: 34 },
+      box: boxAt(y),
     }
   })
 }
