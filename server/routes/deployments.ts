@@ -19,6 +19,8 @@ const change = 'stationSetUp.change'
 const stationInPath = z.object({ stationId: idInPath })
 const draftInPath = z.object({ stationId: idInPath, draftId: idInPath })
 const station = '/api/stations/:stationId'
+/** A large array takes its time on a busy machine. */
+const checkDeadline = 20_000
 
 function withTag(response: Response, draft: DeploymentDraftView): DeploymentDraftView {
   response.set('ETag', `"${draft.version}"`)
@@ -106,6 +108,7 @@ export const deploymentRoutes = (parts: Parts): Route[] => [
     summary: 'What the array of a draft can read, and what speaks against it',
     params: draftInPath,
     answer: designCheck,
+    deadlineMilliseconds: checkDeadline,
     handle: ({ params }) => checkDraft(parts, params.stationId, params.draftId),
   }),
   route({
@@ -117,6 +120,7 @@ export const deploymentRoutes = (parts: Parts): Route[] => [
     body: deploymentOrder,
     answer: deploymentRecord,
     status: 201,
+    deadlineMilliseconds: checkDeadline,
     handle: ({ params, body, caller, request }) => putInForce(parts, editOf(params, request, caller), body),
   }),
   route({

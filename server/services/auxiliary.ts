@@ -10,7 +10,7 @@ import { AuxiliaryReading, Import, Station } from '../models/index.ts'
 import { flagOf } from './auxiliary/judge.ts'
 import { lostWithout, reachSeconds, unitOf, usedFor } from './auxiliary/words.ts'
 import { recordAudit } from './audit.ts'
-import { invalidInput, notFound } from './problems.ts'
+import { invalidInput, notFound, Refused } from './problems.ts'
 import { inTransaction } from './transaction.ts'
 
 export type AuxiliaryOutcome = z.infer<typeof auxiliaryOutcome>
@@ -89,7 +89,8 @@ export interface AuxiliaryOrder {
 
 /** All of a batch or nothing of it. A later value for the same time takes the place of the earlier one. */
 export async function takeAuxiliary(parts: Parts, order: AuxiliaryOrder): Promise<AuxiliaryOutcome> {
-  await requireStation(order.stationId)
+  const station = await requireStation(order.stationId)
+  if (order.source === 'push' && station.retiredAt) throw isRetired()
   refuseFuture(parts.clock.now(), order.readings)
   const outcome = await inTransaction(parts.sequelize, async (transaction) => {
     const { outcome, replaced } = await storeAll(order, null, transaction)
@@ -209,6 +210,16 @@ function refuseFuture(now: Date, readings: readonly AuxiliaryReadingGiven[]): vo
   if (faults.length > 0) throw invalidInput(faults.slice(0, 50))
 }
 
-async function requireStation(stationId: number): Promise<void> {
-  if (!(await Station.findByPk(stationId))) throw notFound('station', stationId)
+async function requireStation(stationId: number): Promise<Station> {
+  const station = await Station.findByPk(stationId)
+  if (!station) throw notFound('station', stationId)
+  return station
 }
+
+const isRetired = (): Refused =>
+  new Refused({
+    status: 409,
+    code: 'station.retired',
+    title: 'The station is retired',
+    detail: 'Nothing more is taken from it.',
+  })

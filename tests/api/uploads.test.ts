@@ -282,6 +282,9 @@ describe('values beside the array', () => {
     await push(await keyOf(made.station.id)).expect(200)
     expect((await push(await keyOf(other.station.id)).expect(401)).body.code).toBe('stationKey.refused')
     await push('nonsense').expect(401)
+    const own = await keyOf(made.station.id)
+    await browser.post(`/api/stations/${made.station.id}/retire`).set('If-Match', '"1"').send({ reason: 'Over' }).expect(200) // prettier-ignore
+    expect((await push(own).expect(409)).body.code).toBe('station.retired')
     expect(await AuxiliaryReading.count({ where: { stationId: made.station.id, source: 'push' } })).toBe(1)
   })
 

@@ -166,9 +166,10 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
       if (clock.monotonic() - (toldAt.get(stationId) ?? -Infinity) >= stationEveryMs) tellStation(stationId)
     }),
     bus.subscribe('estimate.saved', ({ stationId, windowEndsAt }) => tellEstimate(stationId, windowEndsAt)),
-    bus.subscribe('connection.changed', (attempt) =>
-      hub.publish('connections', kinds.connection, connectionAttempt.parse(attempt), attempt.id),
-    ),
+    bus.subscribe('connection.changed', (attempt) => {
+      if (!hub.isHeard('connections')) return
+      hub.publish('connections', kinds.connection, connectionAttempt.parse(attempt), attempt.id)
+    }),
     bus.subscribe('job.progressed', (job) => hub.publish('system', kinds.job, job, job.id)),
   ]
 
