@@ -26,6 +26,7 @@ export const knownTests: readonly KnownTest[] = [
   known('flat line', 'Flat line', 'water level 8', 'samples'),
   known('attenuated signal', 'Attenuated signal', 'water level 10', 'm'),
   known('neighbour level', 'Neighbour, level', 'water level 11', 'm'),
+  known('level drift', 'Level drift against the others', 'array', 'm'),
   known('segment shift', 'Segment shift', 'waves 12', 'm'),
   known('acceleration', 'Acceleration', 'waves 13', 'g'),
   known('percent good', 'Percent good', 'waves', 'share'),

@@ -1,7 +1,8 @@
 import { z } from 'zod'
 import { confirmedOffset, offsetConfirmation } from '../../shared/schemas/clockOffset.ts'
+import { qualityTest } from '../../shared/schemas/estimate.ts'
 import type { Parts } from '../config/parts.ts'
-import { confirmClockOffset, listClockOffsets } from '../services/estimates.ts'
+import { confirmClockOffset, listClockOffsets, readLevelDrift } from '../services/estimates.ts'
 import { idInPath } from './parameters.ts'
 import { route } from './registry.ts'
 import type { Route } from './registry.ts'
@@ -18,6 +19,15 @@ export const clockOffsetRoutes = (parts: Parts): Route[] => [
     params: stationInPath,
     answer: z.array(confirmedOffset),
     handle: ({ params }) => listClockOffsets(parts, params.stationId),
+  }),
+  route({
+    method: 'get',
+    path: '/api/stations/:stationId/levelDrift',
+    action: 'stations.read',
+    summary: 'Drift of each sensor’s level against the others over a week, as tests',
+    params: stationInPath,
+    answer: z.array(qualityTest),
+    handle: ({ params }) => readLevelDrift(parts, params.stationId),
   }),
   route({
     method: 'post',

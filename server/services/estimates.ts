@@ -6,6 +6,7 @@ export type { DeploymentVersion, SettingsVersion, StationTimeline } from './esti
 export { assembleWindow, readingsFrom } from './estimates/assemble.ts'
 export { chanceEstimates, commitSeenBy } from './estimates/again.ts'
 export type { StoredEstimate } from './estimates/again.ts'
+export { readLevelDrift } from './estimates/levelDrift.ts'
 export { pastFigures } from './estimates/past.ts'
 export { confirmClockOffset, listClockOffsets } from './estimates/clockOffsets.ts'
 export { beginMark, countLate, firstReadingAt, newestLate, noteLate } from './estimates/late.ts'

@@ -1,6 +1,8 @@
 import { z } from 'zod'
 import { confirmedOffset } from '../../shared/schemas/clockOffset.ts'
 import type { ConfirmedOffset, OffsetConfirmation } from '../../shared/schemas/clockOffset.ts'
+import { qualityTest } from '../../shared/schemas/estimate.ts'
+import type { QualityTest } from '../../shared/schemas/estimate.ts'
 import { longJobView } from '../../shared/schemas/longJob.ts'
 import type { LongJobView } from '../../shared/schemas/longJob.ts'
 import { runChoices, runComparison, runView } from '../../shared/schemas/run.ts'
@@ -22,5 +24,8 @@ export const cancelJob = (jobId: number): Promise<LongJobView> =>
 
 export const readClockOffsets = (stationId: number): Promise<ConfirmedOffset[]> =>
   request('GET', `${of(stationId)}/clockOffsets`, z.array(confirmedOffset))
+/** One test a sensor, over a week. */
+export const readLevelDrift = (stationId: number): Promise<QualityTest[]> =>
+  request('GET', `${of(stationId)}/levelDrift`, z.array(qualityTest))
 export const confirmClockOffset = (stationId: number, order: OffsetConfirmation): Promise<ConfirmedOffset> =>
   request('POST', `${of(stationId)}/clockOffsets`, confirmedOffset, order)

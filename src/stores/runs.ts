@@ -2,6 +2,7 @@
 import { defineStore } from 'pinia'
 import { shallowReactive } from 'vue'
 import type { ConfirmedOffset, OffsetConfirmation } from '../../shared/schemas/clockOffset.ts'
+import type { QualityTest } from '../../shared/schemas/estimate.ts'
 import type { RunChoices, RunComparison, RunOrder, RunView } from '../../shared/schemas/run.ts'
 import * as api from '../api/runs.ts'
 import { useJobs } from './jobs.ts'
@@ -10,6 +11,7 @@ export const useRuns = defineStore('runs', () => {
   const jobs = useJobs()
   const runsHeld = shallowReactive(new Map<number, RunView[]>())
   const comparisons = shallowReactive(new Map<number, RunComparison>())
+  const driftsHeld = shallowReactive(new Map<number, QualityTest[]>())
   const offsetsHeld = shallowReactive(new Map<number, ConfirmedOffset[]>())
 
   /** Newest first; state and progress as the newest news of the job has them. */
@@ -21,6 +23,9 @@ export const useRuns = defineStore('runs', () => {
   const comparison = (runId: number): RunComparison | null => comparisons.get(runId) ?? null
   const offsets = (stationId: number): ConfirmedOffset[] => offsetsHeld.get(stationId) ?? []
 
+  /** Drift of each sensor's level against the others over a week. */
+  const drifts = (stationId: number): QualityTest[] => driftsHeld.get(stationId) ?? []
+
   async function fetchRuns(stationId: number): Promise<void> {
     runsHeld.set(stationId, await api.readRuns(stationId))
   }
@@ -29,6 +34,9 @@ export const useRuns = defineStore('runs', () => {
   }
   async function fetchOffsets(stationId: number): Promise<void> {
     offsetsHeld.set(stationId, await api.readClockOffsets(stationId))
+  }
+  async function fetchDrifts(stationId: number): Promise<void> {
+    driftsHeld.set(stationId, await api.readLevelDrift(stationId))
   }
   const fetchChoices = (stationId: number): Promise<RunChoices> => api.readRunChoices(stationId)
 
@@ -52,6 +60,8 @@ export const useRuns = defineStore('runs', () => {
     runs,
     comparison,
     offsets,
+    drifts,
+    fetchDrifts,
     fetchRuns,
     fetchComparison,
     fetchOffsets,

@@ -98,3 +98,30 @@ describe('a clock offset that an estimate found', () => {
     expect(await ClockOffset.count({ where: { sensorId: e.made.sensors[1]!.sensorId } })).toBe(1)
   })
 })
+
+describe('the drift of levels', () => {
+  it('is told from the windows that were kept, an hour apart, of the deployment in force alone', async () => {
+    const { id: stationId } = e.made.station
+    const hours = 48
+    await storeSea(e.made, { from: at(-1), to: at(0), commitId: 1 })
+    e.parts.clock.set(at(0))
+    await (await e.start(instantEstimators())).wake()
+    const [row] = await e.rows()
+    const detail = await EstimateDetail.findOne({ where: { stationId, runId: 0 }, raw: true })
+    const result = JSON.parse(inflateRawSync(detail!.payload).toString())
+    for (let n = 1; n <= hours; n += 1) {
+      const windowEndsAt = at(-60 * (hours - n))
+      const sensors = result.sensors.map((sensor: { id: string }, index: number) => ({
+        ...sensor,
+        waterDepth: 12 + Math.sin(n) + (index === 2 ? (0.4 * n) / hours : 0),
+      }))
+      const key = { stationId, windowEndsAt, runId: 0, revision: 1 }
+      await Estimate.upsert({ ...row!, ...key })
+      await EstimateDetail.upsert({ ...key, payload: deflateRawSync(JSON.stringify({ ...result, sensors })) })
+    }
+    const { body } = await partner.get(`/api/stations/${stationId}/levelDrift`).expect(200)
+    expect(body.map(({ flag }: { flag: number }) => flag)).toEqual([1, 1, 3, 1, 1])
+    expect(body[2]).toMatchObject({ limit: 0.1, value: expect.closeTo(0.3, 1) })
+    await partner.get('/api/stations/999999/levelDrift').expect(404)
+  })
+})

@@ -25,7 +25,7 @@ let mounted: VueWrapper | null = null
 beforeEach(() => {
   setActivePinia(createPinia())
   server = new FakeServer().install()
-  server.on('/api/stations/1/clockOffsets', { body: [] })
+  server.on('/api/stations/1/clockOffsets', { body: [] }).on('/api/stations/1/levelDrift', { body: [] })
   useServerClock().nowMs = end + 60_000
 })
 afterEach(() => {
@@ -177,6 +177,21 @@ describe('a clock offset that was found', () => {
       { letter: 'OL-3', windowEndsAt: estimate().windowEndsAt, revision: estimate().revision, reason: 'the logger lost its time server' }, // prettier-ignore
     ])
     expect(section.text()).toContain('OL-3 clock put right by −0.31 s')
+  })
+
+  it('stands beside a level that drifts against the others, told with its limit', async () => {
+    const drift = {
+      test: 'level drift',
+      value: 0.14,
+      limit: 0.1,
+      detail: 'OL-2: level moved by 0.140 m against the others',
+    }
+    const held = { ...drift, flag: 1 as const, value: 0.01, detail: 'OL-1: level moved by 0.010 m against the others' }
+    server.on('/api/stations/1/levelDrift', { body: [held, { ...drift, flag: 3 }] })
+    const section = show(SensorsSection, { stationId: 1, sensors })
+    await flushPromises()
+    expect(section.text()).toContain('OL-2: level moved by 0.140 m against the others, limit 0.10 m')
+    expect(section.text()).not.toContain('OL-1: level moved')
   })
 
   it('offers nothing to confirm to anybody else', () => {
