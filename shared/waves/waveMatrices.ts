@@ -32,11 +32,19 @@ export const waveMatrices = (sensors: number): WaveMatrices => ({
   byTilt: complexMatrix(sensors),
 })
 
-const maxSensors = 64
-const steerReal = new Float64Array(maxSensors)
-const steerImag = new Float64Array(maxSensors)
-const along = new Float64Array(maxSensors)
-const across = new Float64Array(maxSensors)
+/** Steering of every sensor at every node, node by node; kept between calls. */
+let steerReal = new Float64Array(0)
+let steerImag = new Float64Array(0)
+let along = new Float64Array(0)
+let across = new Float64Array(0)
+
+function makeRoom(size: number): void {
+  if (steerReal.length >= size) return
+  steerReal = new Float64Array(2 * size)
+  steerImag = new Float64Array(2 * size)
+  along = new Float64Array(2 * size)
+  across = new Float64Array(2 * size)
+}
 
 /**
  * Fills `out`. `x`, `y` in m, `direction` in radians of travel in the frame of x and y. The wave number at an offset δ is
@@ -53,56 +61,69 @@ export function fillWaveMatrices(
 ): void {
   const m = x.length
   const { gamma, byDirection, byWaveNumber, byLogSpread, byTilt } = out
-  for (const matrix of [gamma, byDirection, byWaveNumber, byLogSpread, byTilt]) {
-    matrix.real.fill(0)
-    matrix.imag.fill(0)
-  }
+  const { count, cos, sin, weight, weightByLogSpread } = nodes
+  makeRoom(count * m)
   const cosDirection = Math.cos(direction)
   const sinDirection = Math.sin(direction)
-  for (let node = 0; node < nodes.count; node++) {
-    const c = cosDirection * nodes.cos[node] - sinDirection * nodes.sin[node]
-    const s = sinDirection * nodes.cos[node] + cosDirection * nodes.sin[node]
-    const kHere = k + tilt * nodes.sin[node]
-    const sine = nodes.sin[node]
-    const weight = nodes.weight[node]
-    const weightByLogSpread = nodes.weightByLogSpread[node]
+  for (let node = 0; node < count; node++) {
+    const c = cosDirection * cos[node] - sinDirection * sin[node]
+    const s = sinDirection * cos[node] + cosDirection * sin[node]
+    const kHere = k + tilt * sin[node]
     for (let i = 0; i < m; i++) {
-      along[i] = x[i] * c + y[i] * s
-      across[i] = y[i] * c - x[i] * s
-      steerReal[i] = Math.cos(kHere * along[i])
-      steerImag[i] = -Math.sin(kHere * along[i])
-    }
-    for (let i = 1; i < m; i++) {
-      const ir = steerReal[i]
-      const ii = steerImag[i]
-      for (let j = 0; j < i; j++) {
-        const er = ir * steerReal[j] + ii * steerImag[j]
-        const ei = ii * steerReal[j] - ir * steerImag[j]
-        const at = i * m + j
-        gamma.real[at] += weight * er
-        gamma.imag[at] += weight * ei
-        const turn = weight * kHere * (across[i] - across[j])
-        byDirection.real[at] += turn * ei
-        byDirection.imag[at] -= turn * er
-        const stretch = weight * (along[i] - along[j])
-        byWaveNumber.real[at] += stretch * ei
-        byWaveNumber.imag[at] -= stretch * er
-        byTilt.real[at] += sine * stretch * ei
-        byTilt.imag[at] -= sine * stretch * er
-        byLogSpread.real[at] += weightByLogSpread * er
-        byLogSpread.imag[at] += weightByLogSpread * ei
-      }
+      const at = node * m + i
+      along[at] = x[i] * c + y[i] * s
+      across[at] = y[i] * c - x[i] * s
+      steerReal[at] = Math.cos(kHere * along[at])
+      steerImag[at] = -Math.sin(kHere * along[at])
     }
   }
+  // Pair by pair, so that the sums over the nodes stay in registers.
   for (let i = 0; i < m; i++) {
-    gamma.real[i * m + i] = 1
+    setPair(gamma, m, i, i, 1, 0)
+    for (const matrix of [byDirection, byWaveNumber, byLogSpread, byTilt]) setPair(matrix, m, i, i, 0, 0)
     for (let j = 0; j < i; j++) {
-      const at = i * m + j
-      const mirrored = j * m + i
-      for (const matrix of [gamma, byDirection, byWaveNumber, byLogSpread, byTilt]) {
-        matrix.real[mirrored] = matrix.real[at]
-        matrix.imag[mirrored] = -matrix.imag[at]
+      let gammaReal = 0
+      let gammaImag = 0
+      let directionReal = 0
+      let directionImag = 0
+      let numberReal = 0
+      let numberImag = 0
+      let tiltReal = 0
+      let tiltImag = 0
+      let spreadReal = 0
+      let spreadImag = 0
+      for (let node = 0; node < count; node++) {
+        const one = node * m + i
+        const other = node * m + j
+        const er = steerReal[one] * steerReal[other] + steerImag[one] * steerImag[other]
+        const ei = steerImag[one] * steerReal[other] - steerReal[one] * steerImag[other]
+        const own = weight[node]
+        gammaReal += own * er
+        gammaImag += own * ei
+        const turn = own * (k + tilt * sin[node]) * (across[one] - across[other])
+        directionReal += turn * ei
+        directionImag -= turn * er
+        const stretch = own * (along[one] - along[other])
+        numberReal += stretch * ei
+        numberImag -= stretch * er
+        tiltReal += sin[node] * stretch * ei
+        tiltImag -= sin[node] * stretch * er
+        spreadReal += weightByLogSpread[node] * er
+        spreadImag += weightByLogSpread[node] * ei
       }
+      setPair(gamma, m, i, j, gammaReal, gammaImag)
+      setPair(byDirection, m, i, j, directionReal, directionImag)
+      setPair(byWaveNumber, m, i, j, numberReal, numberImag)
+      setPair(byTilt, m, i, j, tiltReal, tiltImag)
+      setPair(byLogSpread, m, i, j, spreadReal, spreadImag)
     }
   }
+}
+
+/** Element ij and its conjugate ji. */
+function setPair(matrix: ComplexMatrix, m: number, i: number, j: number, real: number, imag: number): void {
+  matrix.real[i * m + j] = real
+  matrix.real[j * m + i] = real
+  matrix.imag[i * m + j] = imag
+  matrix.imag[j * m + i] = -imag
 }
