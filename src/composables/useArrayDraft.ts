@@ -1,4 +1,5 @@
 import { computed, ref, shallowRef } from 'vue'
+import type { Ref } from 'vue'
 import { placeSensors } from '../../shared/arrayDesign/placeSensors.ts'
 import { deploymentDraftView } from '../../shared/schemas/stationSetUpDeployments.ts'
 import type {
@@ -12,10 +13,10 @@ import { useAttempt } from './useAttempt.ts'
 import { useSaving } from './useSaving.ts'
 
 /**
- * The draft of a station's next deployment at the server: found or begun, saved with its version, put in force. What
- * is being typed belongs to the page.
+ * The draft of a station's next deployment at the server, or of the correction of a past one: found or begun, saved
+ * with its version, put in force. What is being typed belongs to the page.
  */
-export function useArrayDraft(stationId: number) {
+export function useArrayDraft(stationId: number, correctsId: Readonly<Ref<number | null>>) {
   const records = useStationSetUp()
   const deployments = useStationSetUpDeployments()
   const reading = useAttempt()
@@ -27,19 +28,30 @@ export function useArrayDraft(stationId: number) {
   const record = computed(() => records.byId(stationId))
   const versions = computed(() => deployments.of(stationId))
   const inForce = computed(() => deployments.inForce(stationId))
-  const number = computed(() => draft.value?.number ?? Math.max(0, ...versions.value.map((one) => one.number)) + 1)
+  /** What is corrected, or what is in force: the next one begins as its copy. */
+  const ground = computed(() =>
+    correctsId.value === null ? inForce.value : (versions.value.find((one) => one.id === correctsId.value) ?? null),
+  )
+  const next = computed(() => Math.max(0, ...versions.value.map((one) => one.number)) + 1)
+  const number = computed(() =>
+    correctsId.value === null ? (draft.value?.number ?? next.value) : (ground.value?.number ?? 0),
+  )
 
   const open = (): Promise<boolean> =>
     reading.attempt(async () => {
       await Promise.all([records.open(stationId), deployments.read(stationId)])
-      draft.value = deployments.draftOf(stationId)
+      draft.value = deployments.draftOf(stationId, correctsId.value)
       isReady.value = true
     })
 
   async function keep(content: DeploymentDraftContent): Promise<DeploymentDraftView> {
     draft.value = draft.value
       ? await deployments.save(draft.value, content)
-      : await deployments.begin(stationId, { basedOnId: inForce.value?.id ?? null, correctsId: null, content })
+      : await deployments.begin(stationId, {
+          basedOnId: ground.value?.id ?? null,
+          correctsId: correctsId.value,
+          content,
+        })
     return draft.value
   }
   const save = (content: DeploymentDraftContent): Promise<boolean> => saving.save(() => keep(content))
@@ -67,7 +79,7 @@ export function useArrayDraft(stationId: number) {
     placeSensors(record.value ?? { latitude: 0, longitude: 0 }, content.sensors)
 
   return {
-    ...{ reading, saving, isReady, draft, record, versions, inForce, number },
+    ...{ reading, saving, isReady, draft, record, versions, inForce, ground, number },
     ...{ open, save, putInForce, discard, standOnTheirs, place },
   }
 }

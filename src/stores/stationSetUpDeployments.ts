@@ -18,9 +18,9 @@ export const useStationSetUpDeployments = defineStore('stationSetUpDeployments',
   const of = (stationId: number): DeploymentRecord[] => versions.get(stationId) ?? []
   const inForce = (stationId: number): DeploymentRecord | null =>
     of(stationId).find((one) => one.isInForce && one.replacesId === null) ?? null
-  /** The draft of a new version; of corrections there may be others. */
-  const draftOf = (stationId: number): DeploymentDraftView | null =>
-    drafts.get(stationId)?.find((draft) => draft.correctsId === null) ?? null
+  /** The draft of a new version (null), or of the correction of one. */
+  const draftOf = (stationId: number, correctsId: number | null): DeploymentDraftView | null =>
+    drafts.get(stationId)?.find((draft) => draft.correctsId === correctsId) ?? null
 
   function apply(draft: DeploymentDraftView): DeploymentDraftView {
     const others = (drafts.get(draft.stationId) ?? []).filter((one) => one.id !== draft.id)

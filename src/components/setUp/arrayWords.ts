@@ -4,11 +4,15 @@ import type { Difference } from './stationForm.ts'
 import { dayWords } from './stationWords.ts'
 import { rowOf, surveyFormOf } from './surveyForm.ts'
 
-/** `deployment 3, surveyed 2 Oct 2026, in force. Draft of deployment 4`. */
-export function arrayWords(inForce: DeploymentRecord | null, draft: number | null): string {
+/** `deployment 3, surveyed 2 Oct 2026, in force. Draft of deployment 4`; null: nothing is drafted. */
+export function arrayWords(
+  inForce: DeploymentRecord | null,
+  draft: { number: number; corrects: boolean } | null,
+): string {
   const surveyed = inForce?.surveyedOn ? `, surveyed ${dayWords(inForce.surveyedOn)}` : ''
   const now = inForce ? `deployment ${inForce.number}${surveyed}, in force` : 'no deployment in force'
-  return draft === null ? now : `${now}. Draft of deployment ${draft}`
+  if (draft === null) return now
+  return `${now}. ${draft.corrects ? 'Correction' : 'Draft'} of deployment ${draft.number}`
 }
 
 function sensorWords(sensor: DraftSensor | undefined): string {
