@@ -83,12 +83,18 @@ export function layoutOf(form: UploadForm): { layout: UploadLayout | null; fault
 
 const moment = (iso: string): string => `${dateUtc(Date.parse(iso))} ${clockUtc(Date.parse(iso))}`
 
+/** `Mon 30 Nov 2026 08:31 to 08:33 UTC`; the day is said twice only where it changes. */
+export function spanWords({ startsAt, endsAt }: Pick<UploadReport, 'startsAt' | 'endsAt'>): string {
+  if (!startsAt || !endsAt) return 'no span'
+  const isOneDay = dateUtc(Date.parse(startsAt)) === dateUtc(Date.parse(endsAt))
+  return `${moment(startsAt)} to ${isOneDay ? clockUtc(Date.parse(endsAt)) : moment(endsAt)} UTC`
+}
+
 /** What a report says, one line each. */
 export function reportLines(report: UploadReport, isStored: boolean): [string, string][] {
-  const span = report.startsAt && report.endsAt ? `${moment(report.startsAt)} to ${moment(report.endsAt)} UTC` : 'none'
   return [
     ['Rows', decimals(report.rows, 0)],
-    ['Span', span],
+    ['Span', spanWords(report)],
     [isStored ? 'Readings stored' : 'Readings it would store', decimals(report.stored, 0)],
     ['Stand there already, left out', decimals(report.repeated, 0)],
     ['Stand there with another value, put aside', decimals(report.conflicting, 0)],
