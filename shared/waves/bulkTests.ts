@@ -12,8 +12,11 @@ import type { ArrayWindow } from './window.ts'
 /** Hz */
 const lowFrequency = 0.05
 
-/** Names of these tests: suspect, they make the estimate suspect. */
-export const bulkTestNames = ['climatology', 'frequency range', 'low-frequency energy', 'bulk limits']
+/**
+ * Names of the tests that make the estimate suspect where they are. What the band leaves out is not among them: pressure at the bed of deep
+ * water leaves out the short waves always, and the height says up to where it counts.
+ */
+export const bulkTestNames = ['climatology', 'low-frequency energy', 'bulk limits']
 
 export function addBulkTests(result: EstimateResult, window: ArrayWindow, spectra: ArraySpectra): EstimateResult {
   const limits = window.settings.quality ?? defaultQualityLimits

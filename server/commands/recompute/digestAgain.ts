@@ -22,7 +22,7 @@ export async function digestAgain(
     letters: deployment.sensors.map(({ letter }) => letter),
     upToCommitId: stored.inputCommitId,
   })
-  if (readings.newestCommitId !== stored.inputCommitId) return null
+  if (readings.sampleCount === 0) return null
   const clockOffsets = timeline.clockOffsets.filter(({ recordedAt }) => recordedAt <= stored.computedAt.getTime())
   const question = { windowEndsAt, deployment, settings, clockOffsets, readings }
   const { window } = await assembleWindow(parts, stored.stationId, question)
