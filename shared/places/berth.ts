@@ -3,6 +3,8 @@ import { basinModes } from '../hazards/basinModes.ts'
 import { depthNow } from '../hazards/depths.ts'
 import { check, determined, input, undetermined } from '../hazards/figure.ts'
 import type { Figure, FigureFrame } from '../hazards/figure.ts'
+import { modeEnergies, surgeBand as surgeBandFigure } from '../hazards/surgeBand.ts'
+import type { LongWaveSpectrum } from '../hazards/surgeBand.ts'
 import { propagate } from '../hazards/uncertain.ts'
 import type { Uncertain } from '../hazards/uncertain.ts'
 import type { BerthFeed, BerthSettings } from '../schemas/placeSettings.ts'
@@ -12,13 +14,25 @@ import type { KindOutlook } from './entrance.ts'
 import { graded } from './flags.ts'
 import type { Grounds } from './flags.ts'
 
-/**
- * Sampling error of a surge height, share of it: ½ √(2/ν) with ν = 2 T B of an hour and a third of the band, 0.012 Hz, filled with energy.
- */
-const samplingShare = 0.5 * Math.sqrt(2 / (2 * 3600 * 0.012))
+/** As the band of the surge height, s. */
+const band = { shortest: 1 / surgeBand.to, longest: 1 / surgeBand.from }
 
-function longSwell(surgeHeight: number | null, feed: BerthFeed, relativeSd: number): Figure {
+/**
+ * Sampling error of a surge height without a spectrum, share of it: ½ √(2/ν) with ν = 2 T B of an hour and a third of the band, 0.012 Hz,
+ * filled with energy.
+ */
+const usualSamplingShare = 0.5 * Math.sqrt(2 / (2 * 3600 * 0.012))
+
+type Spectrum = LongWaveSpectrum | null
+
+function samplingShareOf(spectrum: Spectrum): number {
+  const figure = surgeBandFigure(spectrum, band)
+  return figure.value !== null && figure.value > 0 && figure.sd !== null ? figure.sd / figure.value : usualSamplingShare
+}
+
+function longSwell({ surgeHeight, surgeSpectrum, feed, relativeSd }: Measured): Figure {
   const { factor, isInBasin } = feed
+  const samplingShare = samplingShareOf(surgeSpectrum)
   const own: Uncertain = {
     value: surgeHeight ?? 0,
     sd: surgeHeight === null ? null : surgeHeight * Math.hypot(samplingShare, relativeSd),
@@ -50,12 +64,17 @@ function longSwell(surgeHeight: number | null, feed: BerthFeed, relativeSd: numb
   })
 }
 
-/** `relativeSd`: what a substitute adds, share of the height; 0 at the place's own station. */
-export function berthOutlook(
-  settings: BerthSettings,
-  { surgeHeight, feed, level, relativeSd }: { surgeHeight: number | null; feed: BerthFeed; level: Uncertain; relativeSd: number }, // prettier-ignore
-  grounds: Grounds,
-): KindOutlook {
+interface Measured {
+  surgeHeight: number | null
+  surgeSpectrum: Spectrum
+  feed: BerthFeed
+  level: Uncertain
+  /** What a substitute adds, share of the height; 0 at the place's own station. */
+  relativeSd: number
+}
+
+export function berthOutlook(settings: BerthSettings, measured: Measured, grounds: Grounds): KindOutlook {
+  const { surgeSpectrum, feed, level } = measured
   const { length, bedLevel, mouth } = settings.basin
   const depth = depthNow(level, bedLevel) ?? { value: 0, sd: null }
   const modes = basinModes({
@@ -63,10 +82,19 @@ export function berthOutlook(
     length: { value: length, sd: null },
     depth,
   })
+  const here: Spectrum = surgeSpectrum && {
+    ...surgeSpectrum,
+    density: surgeSpectrum.density.map((value) => value * feed.factor.value ** 2),
+  }
+  const energies = here ? modeEnergies(here, modes, band) : []
   return {
     ...nothingElse,
-    figures: [graded('longSwell', longSwell(surgeHeight, feed, relativeSd), grounds)],
-    basin: modes.map(({ kind, mode, period }) => ({ kind, mode, period })),
+    figures: [graded('longSwell', longSwell(measured), grounds)],
+    basin: modes.map(({ kind, mode, period }) => {
+      const energy = energies.find((one) => one.kind === kind && one.mode === mode)
+      return { kind, mode, period, height: energy?.height ?? null, share: energy?.share ?? null }
+    }),
+    longWaves: here && { frequency: here.frequency, density: here.density },
     remarks: feed.isInBasin
       ? []
       : [`Not measured in the basin: ${surgeBand.from} to ${surgeBand.to} Hz outside, times ${feed.factor.value} (${feed.factor.source}).`], // prettier-ignore

@@ -12,11 +12,11 @@ import { heightHere } from './heightHere.ts'
 import { systemRows } from './seaHere.ts'
 import type { SeaHere } from './seaHere.ts'
 
-export type KindOutlook = Pick<OutlookContent, 'figures' | 'courses' | 'rip' | 'basin' | 'remarks'> & {
+export type KindOutlook = Pick<OutlookContent, 'figures' | 'courses' | 'rip' | 'basin' | 'longWaves' | 'remarks'> & {
   systems: SystemAtPlace[]
 }
 
-export const nothingElse = { courses: [], rip: null, basin: [], remarks: [] }
+export const nothingElse = { courses: [], rip: null, basin: [], longWaves: null, remarks: [] }
 
 export function entranceOutlook(settings: EntranceSettings, carried: SeaHere, grounds: Grounds): KindOutlook {
   const { here } = carried

@@ -12,7 +12,10 @@ import { metres } from '../units.ts'
 
 /** The newest estimate of a station that ended at the moment asked for or before. */
 export interface FeedEstimate
-  extends SeaEstimate, Pick<EstimateResult, 'resolved' | 'reason' | 'qualityFlag' | 'surgeHeight'> {
+  extends
+    SeaEstimate,
+    Pick<EstimateResult, 'resolved' | 'reason' | 'qualityFlag' | 'surgeHeight'>,
+    Partial<Pick<EstimateResult, 'surgeSpectrum'>> {
   windowStartsAt: number
   windowEndsAt: number
   revision: number

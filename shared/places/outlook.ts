@@ -77,7 +77,7 @@ const wideningWords = ({ kind, substitute: { relativeSd, headingSd } }: PlaceSet
 
 const nothingKnown = (tide: TideNow, arrivals: OutlookContent['arrivals']): Omit<OutlookContent, 'reason'> => ({
   ...{ qualityFlag: 9, substituteWords: null, tide, sea: null, arrivals },
-  ...{ figures: [], courses: [], rip: null, chances: [], basin: [], remarks: [] },
+  ...{ figures: [], courses: [], rip: null, chances: [], basin: [], longWaves: null, remarks: [] },
 })
 
 type Computed = KindOutlook & {
@@ -93,11 +93,11 @@ function atBerth(
   { estimate, index }: Feed,
   { level }: Surroundings,
 ): Computed {
-  const { surgeHeight, qualityFlag, resolved } = estimate
+  const { surgeHeight, surgeSpectrum = null, qualityFlag, resolved } = estimate
   // A refused direction leaves long waves standing, as it does the height.
   const grounds = groundsOf(resolved ? qualityFlag : 3, index, true)
   const relativeSd = index > 0 ? settings.substitute.relativeSd : 0
-  const measured = { surgeHeight, feed: settings.stationOrder[index], level, relativeSd }
+  const measured = { surgeHeight, surgeSpectrum, feed: settings.stationOrder[index], level, relativeSd }
   return { ...berthOutlook(settings, measured, grounds), sea: null }
 }
 

@@ -138,7 +138,21 @@ export const outlookContent = z.object({
     }),
   ),
   /** The basin's own periods, longest first. */
-  basin: z.array(z.object({ kind: z.enum(['closed', 'open']), mode: z.number().int(), period: figure })),
+  basin: z.array(
+    z.object({
+      kind: z.enum(['closed', 'open']),
+      mode: z.number().int(),
+      period: figure,
+      /** Of what swings within 15 % of the period, m, and its share of the energy of the band; null where the spectrum does not reach. */
+      height: z.number().nullable().default(null),
+      share: z.number().nullable().default(null),
+    }),
+  ),
+  /** Long waves at the berths by frequency: Hz and m²/Hz, the station's times the square of the factor. */
+  longWaves: z
+    .object({ frequency: z.array(z.number()), density: z.array(z.number()) })
+    .nullable()
+    .default(null),
   /** Sentences that belong beside the figures, such as that any overtopping means no access. */
   remarks: z.array(z.string()),
 })

@@ -65,7 +65,17 @@ function contentWithout(row: OutlookRow): OutlookContent {
   })
   return {
     ...{ reason: row.reason, qualityFlag: qualityFlag.parse(row.qualityFlag), substituteWords: null, tide: null },
-    ...{ sea: null, figures, courses: [], arrivals: [], rip: null, chances: [], basin: [], remarks: [] },
+    ...{
+      sea: null,
+      figures,
+      courses: [],
+      arrivals: [],
+      rip: null,
+      chances: [],
+      basin: [],
+      longWaves: null,
+      remarks: [],
+    },
   }
 }
 

@@ -67,7 +67,16 @@ async function makeOutlook(
     return outlookOf({ at, settings, stations, tide: tideAt(levels, settings, at) })
   } catch (error) {
     logger.error({ error, place: place.name }, 'an outlook could not be computed')
-    const nothing = { figures: [], courses: [], arrivals: [], rip: null, chances: [], basin: [], remarks: [] }
+    const nothing = {
+      figures: [],
+      courses: [],
+      arrivals: [],
+      rip: null,
+      chances: [],
+      basin: [],
+      longWaves: null,
+      remarks: [],
+    }
     const content = { ...nothing, qualityFlag: 4 as const, substituteWords: null, tide: null, sea: null }
     return {
       content: { ...content, reason: 'It could not be computed: the fault stands in the server’s log.' },

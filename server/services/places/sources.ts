@@ -58,6 +58,7 @@ async function presentSource({ payload, ...row }: SourceRow): Promise<FeedEstima
     surgeHeight: row.surgeHeight,
     systems: detail.systems ?? [],
     directionalSpectrum: detail.directionalSpectrum ?? null,
+    surgeSpectrum: detail.surgeSpectrum ?? null,
   }
 }
 

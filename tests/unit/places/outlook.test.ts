@@ -41,7 +41,7 @@ function estimate({
       qualityFlag: 1,
     },
     ...{ significantWaveHeight: height, significantWaveHeightSd: 0.05 * height, peakPeriod: 12.5, meanPeriod: 9 },
-    ...{ energyPeriod: 11, surgeHeight: 0.09, waterDepth: 11.6, directionalSpectrum: null },
+    ...{ energyPeriod: 11, surgeHeight: 0.09, surgeSpectrum: null, waterDepth: 11.6, directionalSpectrum: null },
     systems: systems.map((one, n) => waveSystem(one, n + 1)),
     ...changes,
   }
