@@ -33,6 +33,7 @@ const together = {
   observations: 'places',
   people: 'messages|sessions|secondFactor',
   sessions: 'secondFactor',
+  configuration: 'settings',
   uploads: 'longJobs',
 }
 

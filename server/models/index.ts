@@ -10,6 +10,7 @@ import { defineAuxiliaryReading } from './auxiliaryReading.ts'
 import { defineBackupRun } from './backupRun.ts'
 import { defineBulletin } from './bulletin.ts'
 import { defineClockOffset } from './clockOffset.ts'
+import { defineConfigurationRun } from './configurationRun.ts'
 import { defineConflict } from './conflict.ts'
 import { defineDatabaseSize } from './databaseSize.ts'
 import { defineDelivery } from './delivery.ts'
@@ -66,6 +67,7 @@ export { AuxiliaryReading } from './auxiliaryReading.ts'
 export { BackupRun } from './backupRun.ts'
 export { Bulletin } from './bulletin.ts'
 export { ClockOffset } from './clockOffset.ts'
+export { ConfigurationRun } from './configurationRun.ts'
 export { Conflict } from './conflict.ts'
 export { DatabaseSize } from './databaseSize.ts'
 export { Delivery } from './delivery.ts'
@@ -123,6 +125,7 @@ const definitions = [
   defineBackupRun,
   defineBulletin,
   defineClockOffset,
+  defineConfigurationRun,
   defineConflict,
   defineDatabaseSize,
   defineDelivery,

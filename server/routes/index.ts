@@ -9,6 +9,7 @@ import { bulletinRoutes } from './bulletins.ts'
 import { capRoutes } from './cap.ts'
 import { clockOffsetRoutes } from './clockOffsets.ts'
 import { deploymentRoutes } from './deployments.ts'
+import { configurationRoutes } from './configuration.ts'
 import { installationRoutes } from './installation.ts'
 import { jobRoutes } from './jobs.ts'
 import { limitRoutes } from './limits.ts'
@@ -69,6 +70,7 @@ const features: ((parts: Parts) => Route[])[] = [
   auditRoutes,
   settingVersionRoutes,
   systemRoutes,
+  configurationRoutes,
   receiptRoutes,
   bulletinRoutes,
   logRoutes,
