@@ -62,7 +62,7 @@ export async function signIn({ page }: Visitor, role: Role): Promise<void> {
     .getByRole('button', { name: /sign in|begin|open/i })
     .first()
     .click()
-  await page.waitForURL(/\/watch/)
+  await page.waitForURL(/\/(watch|places)/)
 }
 
 /** Asks the API as the person signed in at this browser. */
