@@ -9,6 +9,7 @@ import { benchAcknowledgement } from './acknowledgement.ts'
 import { benchAlertMail } from './alertMail.ts'
 import { benchAlerts } from './alerts.ts'
 import type { Figure } from './benchParts.ts'
+import { benchEstimateCost } from './estimateCost.ts'
 import { benchLargeFile } from './largeFile.ts'
 import { benchLoad } from './load.ts'
 import { benchStorage } from './storage.ts'
@@ -23,6 +24,8 @@ function tell(figures: Figure[]): void {
 
 if (words[0] === '--accuracy') {
   benchAccuracy(Number(words[1] ?? 200), Number(words[2] ?? 300_001), (line) => process.stdout.write(`${line}\n`))
+} else if (words[0] === '--estimate') {
+  benchEstimateCost(Number(words[1] ?? 10), (line) => process.stdout.write(`${line}\n`))
 } else if (words[0] === '--large-file') {
   tell(await benchLargeFile(Number(words[1] ?? 200)))
 } else if (words[0] === '--load') {
