@@ -4,7 +4,7 @@ import type { StationRecord, StationSettingsRecord } from '../../../shared/schem
 import { areaPolygon } from '../../../shared/schemas/stationSetUp.ts'
 import { stationSettingsContent } from '../../../shared/schemas/stationSettings.ts'
 import type { Parts } from '../../config/parts.ts'
-import type { Station} from '../../models/index.ts';
+import type { Station } from '../../models/index.ts'
 import { Deployment, DeploymentDraft, Limit, Person, StationKey, StationSettings } from '../../models/index.ts'
 import { select } from '../../models/sql.ts'
 
