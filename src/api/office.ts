@@ -1,5 +1,12 @@
 import { auditChoices, auditPage, auditVerification, latestVerification } from '../../shared/schemas/audit.ts'
 import type { AuditChoices, AuditPage, AuditVerification } from '../../shared/schemas/audit.ts'
+import { appliedConfiguration, appliedConfigurations, comparison } from '../../shared/schemas/configuration.ts'
+import type {
+  AppliedConfiguration,
+  Comparison,
+  Configuration,
+  ConfigurationOrder,
+} from '../../shared/schemas/configuration.ts'
 import { settingVersions, settingVersionView } from '../../shared/schemas/settingGroups.ts'
 import type { SettingChange, SettingReturn, SettingVersionView } from '../../shared/schemas/settingGroups.ts'
 import { systemView } from '../../shared/schemas/system.ts'
@@ -41,3 +48,12 @@ export const returnSettings = (group: string, version: number, to: SettingReturn
   request('POST', `/api/settings/groups/${group}/return`, settingVersionView, to, version)
 
 export const readSystem = (): Promise<SystemView> => request('GET', '/api/system', systemView)
+
+export const compareConfiguration = (file: Configuration): Promise<Comparison> =>
+  request('POST', '/api/configuration/comparison', comparison, file)
+export const readApplied = async (): Promise<AppliedConfiguration[]> =>
+  (await request('GET', '/api/configuration/applied', appliedConfigurations)).applied
+export const applyConfiguration = (order: ConfigurationOrder): Promise<AppliedConfiguration> =>
+  request('POST', '/api/configuration/applied', appliedConfiguration, order)
+export const rollBackConfiguration = (id: number, reason: string): Promise<AppliedConfiguration> =>
+  request('POST', `/api/configuration/applied/${id}/roll-back`, appliedConfiguration, { reason })
