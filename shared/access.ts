@@ -181,5 +181,7 @@ export function actionOfRoom(room: string): Action | null {
   if (room === 'limits') return 'limits.read'
   if (room === 'messages') return 'messages.read'
   if (room === 'watch') return 'log.read'
+  if (room === 'onWatch') return 'watches.read'
+  if (room === 'bulletins') return 'bulletins.read'
   return null
 }

@@ -13,7 +13,7 @@
  * POST   /api/bulletins/:bulletinId/proof   bulletins.change  -> 204, the e-mail to oneself
  * GET    /api/publicBulletins               publicBulletins.read (anybody, while the office has switched it on; else 404)
  *                                           -> { portName, bulletins: publicBulletin[] }
- * Live: room `watch`, kind `bulletin`, body bulletinView; a draft thrown away: kind `bulletinGone`, body { id }.
+ * Live: room `bulletins`, kind `bulletin`, body bulletinView; a draft thrown away: kind `bulletinGone`, body { id }.
  */
 import { z } from 'zod'
 import { consentFields } from './consent.ts'

@@ -11,7 +11,7 @@
  * POST /api/handOvers/takeOver   watches.change  takeOver -> 201 watchNow: the relief, from their own session, notes owed
  * POST /api/handOvers/:handOverId/owed  watches.change  owedNotes -> watchNow; by who owes them
  * POST /api/watches/end          watches.change  { reason } -> watchNow: the watch ends and nobody follows; logged
- * Live: room `stations`, kind `watch`, body watchNow: who is on watch shows on every page.
+ * Live: room `onWatch`, kind `watch`, body watchNow: who is on watch shows on every page.
  */
 import { z } from 'zod'
 import { missingFigure, stationFigure } from './bulletin.ts'

@@ -4,7 +4,9 @@ import { z } from 'zod'
 /** Rooms: `stations`, `station:ID`, `traces:ID`, `system`, `connections`, `alerts`, `limits`, `messages`, `places`, `place:ID`; watch joins with its feature. */
 export const roomName = z
   .string()
-  .regex(/^(stations|system|connections|alerts|limits|messages|watch|places|(station|traces|place):[1-9][0-9]{0,8})$/)
+  .regex(
+    /^(stations|system|connections|alerts|limits|messages|watch|onWatch|bulletins|places|(station|traces|place):[1-9][0-9]{0,8})$/,
+  )
 
 export const liveClientMessage = z.discriminatedUnion('type', [
   z.strictObject({ type: z.literal('subscribe'), rooms: z.array(roomName).min(1).max(100) }),
@@ -54,11 +56,11 @@ export const liveEventKinds = {
   limit: 'limit',
   /** room `watch`; body: logEntryView, also when something was added to it */
   logEntry: 'logEntry',
-  /** room `stations`: it shows everywhere; body: watchNow */
+  /** room `onWatch`; body: watchNow */
   watch: 'watch',
-  /** room `watch`; body: bulletinView */
+  /** room `bulletins`; body: bulletinView */
   bulletin: 'bulletin',
-  /** room `watch`; body: { id } of a draft thrown away */
+  /** room `bulletins`; body: { id } of a draft thrown away */
   bulletinGone: 'bulletinGone',
   /** room `messages`; body: messageView */
   message: 'message',

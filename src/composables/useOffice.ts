@@ -6,6 +6,7 @@ import { usePlaces } from '../stores/places.ts'
 import { useSession } from '../stores/session.ts'
 import { useSettings } from '../stores/settings.ts'
 import { useStations } from '../stores/stations.ts'
+import { useWatches } from '../stores/watches.ts'
 
 const againMs = 4_000
 
@@ -18,6 +19,7 @@ export function useOffice() {
   const places = usePlaces()
   const jobs = useJobs()
   const alerts = useAlerts()
+  const watches = useWatches()
   let again: ReturnType<typeof setTimeout> | undefined
 
   function open(): void {
@@ -26,6 +28,7 @@ export function useOffice() {
     places.watchAll()
     jobs.watchAll()
     alerts.watchAll()
+    watches.watchAll()
     void readSettings()
   }
 
@@ -45,6 +48,7 @@ export function useOffice() {
     places.leave()
     jobs.leave()
     alerts.leave()
+    watches.leave()
     live.disconnect()
   }
 

@@ -4,6 +4,7 @@ import type { RouteRecordRaw, Router, RouterHistory } from 'vue-router'
 import WatchLayout from '../layouts/WatchLayout.vue'
 import { useSession } from '../stores/session.ts'
 import { useStations } from '../stores/stations.ts'
+import { homeOf } from './home.ts'
 import { officeRoutes } from './office.ts'
 import { pages } from './pages.ts'
 import { placeRoutes } from './places.ts'
@@ -44,7 +45,7 @@ const routes: RouteRecordRaw[] = [
     path: '/',
     component: WatchLayout,
     children: [
-      { path: '', redirect: { name: 'watch' } },
+      { path: '', redirect: () => ({ name: homeOf(useSession().person?.role ?? null) }) },
       {
         path: 'watch',
         name: 'watch',
@@ -92,6 +93,12 @@ const routes: RouteRecordRaw[] = [
         name: 'limit',
         component: () => import('../pages/LimitEditorPage.vue'),
         meta: { title: 'Limit', page: 'limits' },
+      },
+      {
+        path: 'log',
+        name: 'log',
+        component: () => import('../pages/LogPage.vue'),
+        meta: { title: 'Watch log', page: 'log' },
       },
       {
         path: 'messages',

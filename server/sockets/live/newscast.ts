@@ -121,15 +121,15 @@ export function startNewscast(parts: Parts, hub: Hub): Newscast {
   const logTail = createLogTail(hub)
   const followLog = (): void => inTurn('log', ['watch'], () => logTail.follow())
   const tellWatch = (): void =>
-    inTurn('watch', ['stations'], async () =>
-      hub.publish('stations', kinds.watch, watchNow.parse(await presentWatchNow(parts)), 'watch'),
+    inTurn('onWatch', ['onWatch'], async () =>
+      hub.publish('onWatch', kinds.watch, watchNow.parse(await presentWatchNow(parts)), 'watch'),
     )
 
   const tellBulletin = (bulletinId: number): void =>
-    tell('watch', async () => {
+    tell('bulletins', async () => {
       const view = await findBulletin(parts, await bulletinOfficeOf(parts), bulletinId)
-      if (view) hub.publish('watch', kinds.bulletin, bulletinView.parse(view), bulletinId)
-      else hub.publish('watch', kinds.bulletinGone, { id: bulletinId }, bulletinId)
+      if (view) hub.publish('bulletins', kinds.bulletin, bulletinView.parse(view), bulletinId)
+      else hub.publish('bulletins', kinds.bulletinGone, { id: bulletinId }, bulletinId)
     })
 
   const tellMessage = (messageId: number): void =>
