@@ -1,7 +1,7 @@
 /** What the sea does at a breakwater: mean overtopping as a screening with its likely band, and the largest single volume. */
 import { depthNow } from '../hazards/depths.ts'
 import { overtopping } from '../hazards/overtopping.ts'
-import { saturation } from '../hazards/carried.ts'
+import { depthLimit } from '../hazards/depthLimit.ts'
 import { shorewardSea } from '../hazards/shoreward.ts'
 import type { Uncertain } from '../hazards/uncertain.ts'
 import { radiansFromEast } from '../directions.ts'
@@ -14,6 +14,9 @@ import type { Grounds } from './flags.ts'
 import { heightHere } from './heightHere.ts'
 import { systemRows } from './seaHere.ts'
 import type { SeaHere } from './seaHere.ts'
+
+/** The bed before a toe is taken as level: the saturated height has no part of its slope. */
+const flatBed: Uncertain = { value: 0.01, sd: 0 }
 
 const kinds = { smoothSlope: 'smooth', rubbleSlope: 'rubble', vertical: 'vertical' } as const
 
@@ -35,10 +38,11 @@ export function breakwaterOutlook(
     sd: level.sd === null || settings.crestLevel.sd === null ? null : Math.hypot(level.sd, settings.crestLevel.sd),
   }
   const remarks: string[] = []
-  const limited = toeDepth && toe ? Math.min(toe.height.value, saturation * toeDepth.value) : null
+  const most = toeDepth && toe ? depthLimit(toeDepth, toe.period, flatBed).significant : null
+  const limited = most?.value != null && toe ? Math.min(toe.height.value, most.value) : null
   if (toeDepth && toe && limited !== null && limited < toe.height.value) {
     remarks.push(
-      `Height at the toe limited by depth to ${metres(limited)}: ${saturation} of ${metres(toeDepth.value)} (Thornton & Guza 1982, from memory).`,
+      `Height at the toe limited by depth to ${metres(limited)}: ${most?.method.formula} of ${metres(toeDepth.value)} (${most?.method.source}).`,
     )
   }
   const nothing: Uncertain = { value: 0, sd: 0 }

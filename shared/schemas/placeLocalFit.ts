@@ -28,19 +28,22 @@ const evidence = {
   from: time,
   to: time,
 }
+const strictCoefficient = z.strictObject({ value: z.number(), standardError: z.number().min(0) })
 export const adoptedFit = z.discriminatedUnion('kind', [
   z.strictObject({
     kind: z.literal('heights'),
     ...evidence,
     /** Times the figure. */
-    factor: z.strictObject({ value: z.number().min(0.05).max(20), standardError: z.number().min(0) }),
+    factor: strictCoefficient.extend({ value: z.number().min(0.05).max(20) }),
   }),
   z.strictObject({
     kind: z.literal('sightings'),
     ...evidence,
     /** ln(p/(1−p)) = intercept + slope · x; x the figure, of overtopping its logarithm to base ten. */
-    intercept: z.number(),
-    slope: z.number(),
+    intercept: strictCoefficient,
+    slope: strictCoefficient,
+    /** Of intercept and slope, row by row. */
+    covariance: z.array(z.number()).length(4),
     /** Of x, as observed: beyond it nothing is said. */
     range: z.strictObject({ from: z.number(), to: z.number() }),
   }),
@@ -78,6 +81,7 @@ const sightingsFit = z.object({
   seen: z.number().int(),
   intercept: coefficient,
   coefficients: z.array(coefficient),
+  covariance: z.array(z.number()),
   observedRange: z.array(z.object({ from: z.number(), to: z.number() })),
   bins: z.array(bin),
   calibration: z.array(bin),

@@ -127,14 +127,14 @@ export const outlookContent = z.object({
   courses: z.array(courseOutlook),
   arrivals: z.array(arrival.omit({ stationName: true })),
   rip: ripCaution.omit({ caution: true }).nullable(),
-  /** How often it was logged here at such figures, by an adopted local fit: 0 to 1; null with the reason outside what was observed. */
+  /** How often it was logged here at such figures, by an adopted local fit: 0 to 1 with its likely range, or why it is not told. */
   chances: z.array(
     z.object({
       observed: observationKind,
       label: z.string(),
-      chance: z.number().nullable(),
-      words: z.string(),
+      /** Observations behind it. */
       count: z.number().int(),
+      figure,
     }),
   ),
   /** The basin's own periods, longest first. */

@@ -227,7 +227,7 @@ describe('observations', () => {
     const after = placeView.parse((await operator.get(`/api/places/${beach}`)).body)
     const valueOf = (place: PlaceView) => place.outlook?.figures[0].figure.value ?? 0
     expect(valueOf(after) / valueOf(before)).toBeCloseTo(view.outcome.fit.factor.value, 3)
-    expect(after.outlook?.figures[0].figure.method.name).toContain('times the local factor')
+    expect(after.outlook?.figures[0].figure.method.name).toContain('times a local factor')
     // The fit is of the bare prediction still: adopting it does not make it disappear.
     const again = await fitOfBreakers()
     expect(again.outcome).toMatchObject({ kind: 'fitted', fit: { factor: view.outcome.fit.factor } })

@@ -78,7 +78,8 @@ function proposalOf({ observed, outcome }: LocalFitView): AdoptedFit {
   const [slope] = fit.coefficients
   const [range] = fit.observedRange
   if (!slope || !range) throw new RangeError('a fit of sightings has one predictor')
-  return { kind: 'sightings', observed, count: fit.count, from, to, intercept: fit.intercept.value, slope: slope.value, range } // prettier-ignore
+  const { intercept, covariance, count } = fit
+  return { kind: 'sightings', observed, count, from, to, intercept, slope, covariance, range }
 }
 
 /** What the newest fit proposes, or its removal, as a new version of the settings from now on. */

@@ -13,7 +13,7 @@ export function adoptedWords(adopted: AdoptedFit): string {
   const from = `from ${adopted.count} observations, ${day(adopted.from)} to ${day(adopted.to)}`
   return adopted.kind === 'heights'
     ? `figures times ${decimals(adopted.factor.value, 3)} ${plusMinus(adopted.factor.standardError, 3)}, ${from}`
-    : `chance of a sighting by ln(p/(1−p)) = ${decimals(adopted.intercept, 2)} + ${decimals(adopted.slope, 2)} · x, ${from}`
+    : `chance of a sighting by ln(p/(1−p)) = ${decimals(adopted.intercept.value, 2)} + ${decimals(adopted.slope.value, 2)} · x, ${from}`
 }
 
 /** What the fit would change, and the evidence for it. */
