@@ -12,13 +12,15 @@ export interface HeadingTurn {
   slope: number
   /** |slope| over its standard deviation under the model. */
   significance: number
-  /** How far the heading turns over the frequencies that tell it: two standard deviations of slope · ln f, rad. */
+  /** How far the heading turns over the frequencies that tell it: two standard deviations of slope · ln f, rad; at most 20°. */
   range: number
 }
 
 /** Turns below so many standard deviations or so many radians are none: 1 of 240 single trains reached three. */
 const leastSignificance = 3
 const leastRange = 0.05
+/** A straight line through two seas says no more than this of either: beyond it the vector is doubted, not withdrawn. */
+const greatestRange = 0.35
 
 /** Null where the record says nothing of it, or where the heading does not turn. */
 export function headingTurn(fit: SeaFit, system: number): HeadingTurn | null {
@@ -47,7 +49,7 @@ export function headingTurn(fit: SeaFit, system: number): HeadingTurn | null {
   const turn = {
     slope,
     significance: Math.abs(score) / Math.sqrt(square),
-    range: 2 * Math.abs(slope) * Math.sqrt(square / information),
+    range: Math.min(greatestRange, 2 * Math.abs(slope) * Math.sqrt(square / information)),
   }
   return turn.significance > leastSignificance && turn.range > leastRange ? turn : null
 }

@@ -132,6 +132,8 @@ const leastScore = 3
 /** ln L that a further train must gain, its least difference of heading, rad, and its least share of the energy. */
 const leastTrainGain = 15
 const leastTurn = 0.2
+/** Nearer than this share of its spread to another train, it is that train's own wide flank. */
+const leastTurnOverSpread = 0.5
 /** Spread that a further train is looked for with, rad. */
 const usualSpread = 0.4
 
@@ -192,8 +194,9 @@ function isSeparate({ fit }: FittedTogether): boolean {
   }
   if (own < leastShare * all) return false
   const heading = (j: number) => fit.state.parameters[j * parametersPerSystem + directionAt]
+  const spread = Math.exp(fit.state.parameters[last * parametersPerSystem + spreadAt])
   return Array.from({ length: last }, (_, j) => heading(last) - heading(j)).every(
-    (turn) => 2 * Math.abs(Math.sin(turn / 2)) > leastTurn,
+    (turn) => 2 * Math.abs(Math.sin(turn / 2)) > Math.max(leastTurn, leastTurnOverSpread * spread),
   )
 }
 
