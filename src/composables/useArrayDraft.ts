@@ -39,6 +39,8 @@ export function useArrayDraft(stationId: number, correctsId: Readonly<Ref<number
 
   const open = (): Promise<boolean> =>
     reading.attempt(async () => {
+      // Nothing may be typed into what is about to be filled anew.
+      isReady.value = false
       await Promise.all([records.open(stationId), deployments.read(stationId)])
       draft.value = deployments.draftOf(stationId, correctsId.value)
       isReady.value = true
