@@ -118,7 +118,11 @@ test('an urgent alert is shelved with the passphrase of the other operator, and 
   await shelve.click()
   await sheet.waitFor({ state: 'detached' })
   const { shelf, state } = await ask(desk, `/alerts/${alertIds[0]}`, alertView)
-  expect([state, shelf?.by?.name, shelf?.secondPerson?.name]).toEqual(['shelved', 'Duty officer A-1', 'Duty officer B-2'])
+  expect([state, shelf?.by?.name, shelf?.secondPerson?.name]).toEqual([
+    'shelved',
+    'Duty officer A-1',
+    'Duty officer B-2',
+  ])
 })
 
 test('an e-mail that is not out stands in the line, which leads to it alone', async () => {
