@@ -24,7 +24,7 @@ export const noticeStateWords = (notice: NoticeView, nowMs: number): string =>
   isExpired(notice, nowMs) ? stateNames.expired : stateNames[notice.state]
 
 /** `Closure: the walk, until 18:00 UTC`. */
-export function noticeShort(notice: NoticeView, nowMs: number): { key: number; words: string } {
+export function noticeShort(notice: NoticeView, nowMs: number): { key: number; words: string; isLoud: boolean } {
   const title = capital(noticeTitle(notice.content))
   const state =
     notice.state === 'planned'
@@ -34,7 +34,7 @@ export function noticeShort(notice: NoticeView, nowMs: number): { key: number; w
         : notice.expiresAt
           ? `, until ${momentUtc(Date.parse(notice.expiresAt), nowMs)} UTC`
           : ''
-  return { key: notice.id, words: `${title}${state}` }
+  return { key: notice.id, words: `${title}${state}`, isLoud: isExpired(notice, nowMs) }
 }
 
 /** `14:06 UTC, 15:06 local`. */
