@@ -7,13 +7,15 @@ import { age, decimals, metres } from '../units.ts'
 
 const degree = Math.PI / 180
 const hour = 3600
-const inDegrees = (radians: number): string => `${decimals(Math.abs(radians) / degree, 0)}°`
+const inDegrees = (radians: number, places = 0): string => `${decimals(Math.abs(radians) / degree, places)}°`
 
-function valueWords({ key, value, reason, state }: RipReason, stationName: string): string {
+function valueWords({ key, value, reason, state, threshold }: RipReason, stationName: string): string {
   if (value === null) return reason ?? 'not known'
   if (key === 'height') return `${metres(value)} at ${stationName}`
-  if (key === 'incidence') return `${inDegrees(value)} off square at the break`
-  if (key === 'spread') return `${inDegrees(value)}, ${state === 'present' ? 'narrow' : 'wide'}`
+  // Where whole degrees would write the value and the bound alike, a tenth tells them apart.
+  const places = inDegrees(value) === inDegrees(threshold) ? 1 : 0
+  if (key === 'incidence') return `${inDegrees(value, places)} off square at the break`
+  if (key === 'spread') return `${inDegrees(value, places)}, ${state === 'present' ? 'narrow' : 'wide'}`
   const near = Math.abs(value)
   return near < 60 ? 'at low water' : `${age(near)} ${value > 0 ? 'before' : 'after'} low water`
 }
