@@ -21,7 +21,7 @@ export function client(folder: string): Router {
 }
 
 /** The signed links of e-mails have points in them and are no files. */
-const isFile = (path: string): boolean => /\.\w+$/.test(path) && !/^\/receipt\/[^/]+$/.test(path)
+const isFile = (path: string): boolean => /\.\w+$/.test(path) && !/^\/(receipt|welcome)\/[^/]+$/.test(path)
 
 /** Every path of the client's router is the same page; a missing file is missing and no page. */
 const page =

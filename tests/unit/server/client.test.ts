@@ -18,7 +18,13 @@ afterAll(() => rmSync(folder, { recursive: true }))
 
 describe('the built client', () => {
   test('is the same page at every path of its router, and never from a cache', async () => {
-    for (const path of ['/', '/watch', '/stations/OL', '/receipt/7.tpf3x3.ToPk5XtvI2qpNn4zyPUWpyD0SCQ4PbHg']) {
+    for (const path of [
+      '/',
+      '/watch',
+      '/stations/OL',
+      '/receipt/7.tpf3x3.ToPk5XtvI2qpNn4zyPUWpyD0SCQ4PbHg',
+      '/welcome/1.tpqfj8.YtU5nF0fHY',
+    ]) {
       const answer = await request(app).get(path).expect(200)
       expect(answer.text).toBe('<title>Offing</title>')
       expect(answer.get('Cache-Control')).toBe('no-cache')
