@@ -144,7 +144,7 @@ test('the chain of the audit is walked from its page and found whole', async () 
   await page.goto('/audit')
   await page.getByRole('button', { name: 'Walk it now' }).click()
   await page.getByText('Whole', { exact: true }).waitFor()
-  await page.getByLabel('Action', { exact: true }).selectOption({ label: 'person: choose passphrase' })
+  await page.getByRole('combobox', { name: /^Action/ }).selectOption({ label: 'person: choose passphrase' })
   await page
     .getByRole('cell', { name: /choose passphrase/ })
     .first()
