@@ -162,14 +162,14 @@ test('an administrator describes a station, draws its array, issues a key, and i
   await page.getByText(/frames received, all up to number \d+ on disk/).waitFor({ timeout: 30_000 })
 
   await page.goto(`/stations/${stationId}`)
-  await page.getByText(/^toward$/).first().waitFor({ timeout: 60_000 }) // prettier-ignore
+  await page.getByText(/^toward$/).first().waitFor({ timeout: 120_000 }) // prettier-ignore
   const { estimate } = await ask(admin, `/stations/${stationId}`, stationView)
   expect(estimate?.resolved).toBe(true)
   expect(Math.abs(turnBetween(estimate?.systems[0]?.toward ?? NaN, recordedToward))).toBeLessThan(12)
   // That nothing is computed yet is an answer that a browser writes down.
   expect(admin.complaints.filter((one) => !one.includes('404'))).toEqual([])
   expect(admin.foreign).toEqual([])
-}, 120_000)
+}, 180_000)
 
 test('of two administrators the second sees the difference, and nothing of the first is overwritten', async () => {
   const admin = await office()
