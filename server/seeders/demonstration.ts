@@ -11,6 +11,14 @@ import { seedDemonstrationTide } from './demonstrationPlaces.ts'
 import { prepareDemonstrationPeople } from './demonstrationPeople.ts'
 import { demonstrationKeys, seedStation } from './demonstrationStations.ts'
 
+/** By the port's clock. */
+const demonstrationRota = [
+  { name: 'A', from: '06:00', to: '12:00' },
+  { name: 'B', from: '12:00', to: '18:00' },
+  { name: 'C', from: '18:00', to: '00:00' },
+  { name: 'D', from: '00:00', to: '06:00' },
+]
+
 /**
  * Everything in one transaction (lists and limits in the next), after the files with the secrets: a stop in between leaves nothing half done, and
  * lost files are made anew. Answers whether the database was empty.
@@ -30,6 +38,7 @@ export async function seedDemonstration(parts: Parts): Promise<boolean> {
     await changeSetting(parts, 'port', demonstrationPort, by, transaction)
     await changeSetting(parts, 'watch', { leadStationId: stations[0]?.id ?? null }, by, transaction)
     await changeSetting(parts, 'coast', { plan: demonstrationCoast }, by, transaction)
+    await changeSetting(parts, 'rota', { watches: demonstrationRota }, by, transaction)
     const alerts = { asksSecondPerson: true, longestShelfHours: 8, capSender: 'duty@marrowick.example' }
     await changeSetting(parts, 'alerts', alerts, by, transaction)
     const text = `Demonstration set up: ${demonstrationPort.portName} and its ${stations.length} stations are invented.`
