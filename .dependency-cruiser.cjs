@@ -19,7 +19,7 @@ const upperServer = '^server/(app\\.ts|index\\.ts|routes|sockets|commands|jobs|m
 const usedByAll = 'bus|audit|watchLog|problems|passwords|transaction'
 /**
  * Services whose writes share a transaction with others: an imported file is stored with the record of it, a leased
- * e-mail with its link, a step of an escalation with its e-mail, an invitation with its e-mail, a session with the
+ * e-mail with its link, a step of an escalation with its e-mail, a bulletin with its e-mail, an invitation with its e-mail, a session with the
  * code that opened it, a deployment under the lock of its station, an order to take a file in with the work of doing so.
  */
 const together = {
@@ -30,6 +30,7 @@ const together = {
   alerts: 'limits',
   limits: 'alerts',
   notices: 'messages',
+  bulletins: 'messages',
   observations: 'places',
   people: 'messages|sessions|secondFactor',
   sessions: 'secondFactor',

@@ -4,17 +4,8 @@ import type { Parts } from '../../config/parts.ts'
 import { Bulletin } from '../../models/index.ts'
 import { changedMeanwhile, notFound, Refused } from '../problems.ts'
 import { inTransaction } from '../transaction.ts'
+import type { BulletinOffice } from './office.ts'
 import { presentBulletins } from './present.ts'
-
-/** What of the installation's settings bulletins speak of; read by whoever calls the service. */
-export interface BulletinOffice {
-  portName: string
-  timeZone: string
-  cautions: string[]
-  isDemonstration: boolean
-  /** A second pair of eyes before anything goes out, or a written reason of who is alone. */
-  asksSecondPerson: boolean
-}
 
 export type BulletinParts = Pick<Parts, 'bus' | 'clock' | 'environment' | 'sequelize'>
 

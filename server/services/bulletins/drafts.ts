@@ -4,7 +4,8 @@ import { Bulletin } from '../../models/index.ts'
 import { recordAudit } from '../audit.ts'
 import { invalidInput } from '../problems.ts'
 import { atBulletinDesk, lockBulletin } from './desk.ts'
-import type { BulletinChange, BulletinDesk, BulletinOffice, BulletinParts } from './desk.ts'
+import type { BulletinChange, BulletinDesk, BulletinParts } from './desk.ts'
+import type { BulletinOffice } from './office.ts'
 
 /** Only what is issued can be replaced, and by one draft at a time. */
 async function checkReplaced({ transaction }: BulletinDesk, draft: BulletinDraft, ownId: number | null): Promise<void> {

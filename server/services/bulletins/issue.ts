@@ -2,8 +2,10 @@
  * Issuing and cancelling: content frozen, the one before it replaced, e-mail to the lists, a line of the watch log and the audit, all in one
  * transaction. A stop after it loses no e-mail, for the outbox holds them.
  */
+import { chosenFigures } from '../../../shared/bulletins/figureKey.ts'
 import { bulletinPlainText, bulletinTitle } from '../../../shared/bulletins/plainText.ts'
 import { draftFaults } from '../../../shared/bulletins/term.ts'
+import type { BulletinContent } from '../../../shared/schemas/bulletin.ts'
 import { clockUtc, dateUtc } from '../../../shared/times.ts'
 import { Bulletin, Person } from '../../models/index.ts'
 import { recordAudit } from '../audit.ts'
@@ -11,8 +13,9 @@ import { writeMessage, writeToLists } from '../messages.ts'
 import { invalidInput } from '../problems.ts'
 import { writeSystemLine } from '../watchLog.ts'
 import { atBulletinDesk, lockBulletin } from './desk.ts'
-import type { BulletinChange, BulletinDesk, BulletinOffice, BulletinParts } from './desk.ts'
-import { chosenFigures, contentOf, priorityOfBulletin } from './present.ts'
+import type { BulletinChange, BulletinDesk, BulletinParts } from './desk.ts'
+import type { BulletinOffice } from './office.ts'
+import { contentOf, priorityOfBulletin } from './present.ts'
 
 /** Who looked at it too: proven before; or why nobody could. */
 export interface SecondLook {
@@ -71,6 +74,7 @@ export const issueBulletin = (
     const told = await tellLists(desk, bulletin, {
       subject: `${content.marker === 'warning' ? 'Warning' : 'Information'}: ${content.headline}`,
       text: bulletinPlainText(content),
+      shown: content,
     })
     await bulletin.update(
       {
@@ -121,12 +125,12 @@ interface Told {
 async function tellLists(
   { parts, office, transaction, changed }: BulletinDesk,
   bulletin: Bulletin,
-  { subject, text }: { subject: string; text: string },
+  { subject, text, shown }: { subject: string; text: string; shown: BulletinContent | null },
 ): Promise<Told> {
   const { isExercise } = bulletin.draft
   const marks = [isExercise && 'EXERCISE', office.isDemonstration && 'DEMONSTRATION'].filter(Boolean)
   const message = {
-    ...{ kind: 'bulletin' as const, bulletinId: bulletin.id, isExercise, text },
+    ...{ kind: 'bulletin' as const, bulletinId: bulletin.id, isExercise, text, bulletin: shown },
     subject: [...marks, subject].join(' '),
   }
   const order = { listIds: bulletin.draft.listIds, priority: priorityOfBulletin(bulletin), timeZone: office.timeZone }
@@ -206,6 +210,7 @@ export const cancelBulletin = (
       text: content
         ? bulletinPlainText({ ...content, cancelled })
         : `Bulletin ${bulletin.number} is cancelled: ${reason}\n`,
+      shown: content && { ...content, cancelled },
     })
     const audit = { action: 'bulletin.cancel', entity: 'bulletin', entityId: bulletin.id, personId, after: { reason } }
     await recordAudit(parts, audit, transaction)
@@ -228,6 +233,7 @@ export const proofBulletin = (
     const text = `PROOF, not issued. It went to you alone.\n\n${bulletinPlainText(content)}`
     const subject = `PROOF ${bulletinTitle(content)}: ${content.headline}`
     const recipients = [{ personId, address: person.email }]
-    const message = await writeMessage(parts, { kind: 'bulletin', bulletinId, subject, text }, transaction, recipients)
+    const proof = { kind: 'bulletin' as const, bulletinId, subject, text, bulletin: content }
+    const message = await writeMessage(parts, proof, transaction, recipients)
     changed.messages.add(message.id)
   })

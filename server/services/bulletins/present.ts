@@ -1,20 +1,11 @@
 /** Bulletins as they are shown: an issue from its frozen content, a draft from what it would be if it went out now. */
-import type { BulletinContent, BulletinFigure, BulletinView, PublicBulletin } from '../../../shared/schemas/bulletin.ts'
+import { chosenFigures } from '../../../shared/bulletins/figureKey.ts'
+import type { BulletinContent, BulletinView, PublicBulletin } from '../../../shared/schemas/bulletin.ts'
 import type { Parts } from '../../config/parts.ts'
 import { Bulletin, DistributionList, Person } from '../../models/index.ts'
 import { select } from '../../models/sql.ts'
 import { countReached } from '../messages.ts'
-import type { BulletinOffice } from './desk.ts'
-
-/** The figures that the draft names, in its order. */
-export const chosenFigures = (figures: readonly BulletinFigure[], chosen: readonly string[]): BulletinFigure[] =>
-  chosen.flatMap((key) => figures.find((figure) => keyOf(figure) === key) ?? [])
-
-/** `station:3`, `place:1`. */
-export function keyOf(figure: BulletinFigure): string {
-  if (figure.kind === 'missing') return `${figure.subject}:${figure.subjectId}`
-  return figure.kind === 'station' ? `station:${figure.stationId}` : `place:${figure.placeId}`
-}
+import type { BulletinOffice } from './office.ts'
 
 /** What an issue would say now. */
 export function contentOf(
@@ -97,6 +88,8 @@ async function presentOne(
     ...withCancellation(content, row),
     ...{ id: row.id, version: row.version, chainId: row.chainId ?? row.id, status: row.status },
     draft: isDraft ? row.draft : null,
+    frozen: row.status === 'draft' ? row.figures : [],
+    asksSecondPerson: office.asksSecondPerson,
     frozenAt: row.frozenAt?.toISOString() ?? null,
     author: named(row.authorId),
     consentBy: row.consentById === null ? null : named(row.consentById),
