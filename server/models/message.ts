@@ -1,5 +1,6 @@
 import { DataTypes, Model } from 'sequelize'
 import type { CreationOptional, InferAttributes, InferCreationAttributes, Sequelize } from 'sequelize'
+import type { BulletinContent } from '../../shared/schemas/bulletin.ts'
 import type { MessageContent, MessageKind } from '../../shared/schemas/message.ts'
 
 /** An e-mail as it was written, once for all who get it: frozen in the transaction of what it tells. */
@@ -14,6 +15,7 @@ export class Message extends Model<InferAttributes<Message>, InferCreationAttrib
   declare text: string
   declare html: string | null
   declare content: MessageContent | null
+  declare bulletin: BulletinContent | null
   declare isExercise: boolean
   declare createdAt: Date
   /** When its recipients were worked out; null: still to do. */
@@ -33,6 +35,7 @@ export const defineMessage = (sequelize: Sequelize): void => {
       text: { type: DataTypes.TEXT('medium'), allowNull: false },
       html: DataTypes.TEXT('medium'),
       content: DataTypes.JSON,
+      bulletin: DataTypes.JSON,
       isExercise: { type: DataTypes.BOOLEAN, allowNull: false },
       createdAt: { type: DataTypes.DATE(3), allowNull: false },
       queuedAt: DataTypes.DATE(3),

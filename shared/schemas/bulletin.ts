@@ -153,6 +153,10 @@ export const bulletinView = publicBulletin.extend({
   chainId: z.number().int(),
   draft: bulletinDraft.nullable(),
   frozenAt: time.nullable(),
+  /** Everything that a draft can choose of, as it was frozen; empty for an issue. */
+  frozen: z.array(bulletinFigure),
+  /** The office asks for a second operator, or for a written reason of who is alone, before it goes out. */
+  asksSecondPerson: z.boolean(),
   author: personName,
   /** Who looked at it before it went out; null: nobody was asked, or the author was alone. */
   consentBy: personName.nullable(),

@@ -4,6 +4,7 @@ import type { RouteRecordRaw, Router, RouterHistory } from 'vue-router'
 import WatchLayout from '../layouts/WatchLayout.vue'
 import { useSession } from '../stores/session.ts'
 import { useStations } from '../stores/stations.ts'
+import { bulletinRoutes } from './bulletins.ts'
 import { homeOf } from './home.ts'
 import { officeRoutes } from './office.ts'
 import { pages } from './pages.ts'
@@ -34,6 +35,12 @@ const routes: RouteRecordRaw[] = [
     name: 'welcome',
     component: () => import('../pages/WelcomePage.vue'),
     meta: { title: 'Choose a passphrase', withoutSession: true },
+  },
+  {
+    path: '/bulletin',
+    name: 'publicBulletin',
+    component: () => import('../pages/PublicBulletinPage.vue'),
+    meta: { title: 'Bulletin', withoutSession: true },
   },
   {
     path: '/second-factor',
@@ -118,6 +125,7 @@ const routes: RouteRecordRaw[] = [
         component: () => import('../pages/MySettingsPage.vue'),
         meta: { title: 'My settings', page: 'mySettings' },
       },
+      ...bulletinRoutes,
       ...placeRoutes,
       ...officeRoutes,
       ...setUpRoutes,

@@ -31,6 +31,7 @@ export const pages: readonly PageEntry[] = [
   { name: 'alerts', title: 'Alerts', keys: 'g a', action: 'alerts.read', isFirst: true, isInBar: true },
   { name: 'limits', title: 'Limits', keys: 'g i', action: 'limits.read', isFirst: false, isInBar: true },
   { name: 'log', title: 'Log', keys: 'g l', action: 'log.read', isFirst: false, isInBar: true },
+  { name: 'bulletins', title: 'Bulletins', keys: 'g b', action: 'bulletins.read', isFirst: false, isInBar: true },
   { name: 'messages', title: 'Messages', keys: 'g m', action: 'messages.read', isFirst: false, isInBar: false },
   { name: 'lists', title: 'Lists', keys: 'g t', action: 'profile.read', isFirst: false, isInBar: false },
   { name: 'mySettings', title: 'My settings', keys: 'g y', action: 'profile.read', isFirst: false, isInBar: false },

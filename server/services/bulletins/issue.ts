@@ -10,7 +10,7 @@ import { clockUtc, dateUtc } from '../../../shared/times.ts'
 import { Bulletin, Person } from '../../models/index.ts'
 import { recordAudit } from '../audit.ts'
 import { writeMessage, writeToLists } from '../messages.ts'
-import { invalidInput } from '../problems.ts'
+import { invalidInput, notFound } from '../problems.ts'
 import { writeSystemLine } from '../watchLog.ts'
 import { atBulletinDesk, lockBulletin } from './desk.ts'
 import type { BulletinChange, BulletinDesk, BulletinParts } from './desk.ts'
@@ -226,7 +226,8 @@ export const proofBulletin = (
 ): Promise<void> =>
   atBulletinDesk(parts, office, async (desk) => {
     const { transaction, changed } = desk
-    const bulletin = await Bulletin.findByPk(bulletinId, { transaction, rejectOnEmpty: true })
+    const bulletin = await Bulletin.findByPk(bulletinId, { transaction })
+    if (!bulletin) throw notFound('bulletin', bulletinId)
     const person = await Person.findByPk(personId, { transaction, rejectOnEmpty: true })
     if (person.email === null) throw invalidInput([{ path: 'email', message: 'your account has no e-mail address' }])
     const content = bulletin.content ?? contentOf(bulletin, office, { number: null, issuedAt: null, replaces: null })

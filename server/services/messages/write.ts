@@ -1,6 +1,7 @@
 /** E-mails as they are written down: once for all who get them, in the transaction of what they tell. */
 import { createHash, randomBytes } from 'node:crypto'
 import type { Transaction } from 'sequelize'
+import type { BulletinContent } from '../../../shared/schemas/bulletin.ts'
 import type { MessageContent, MessageKind } from '../../../shared/schemas/message.ts'
 import type { Parts } from '../../config/parts.ts'
 import { Delivery, Message } from '../../models/index.ts'
@@ -13,6 +14,8 @@ export interface NewMessage {
   subject: string
   text: string
   content?: MessageContent | null
+  /** Of a bulletin's e-mail: the bulletin as it is now. */
+  bulletin?: BulletinContent | null
   isExercise?: boolean
 }
 
@@ -36,6 +39,7 @@ export async function writeMessage(
       subject: message.subject.slice(0, longestSubject),
       text: message.text,
       content: message.content ?? null,
+      bulletin: message.bulletin ?? null,
       isExercise: message.isExercise ?? false,
       createdAt: now,
       queuedAt: recipients ? now : null,
