@@ -1,7 +1,10 @@
 /** From the frozen content of a message to the e-mail of one person: HTML, plain text and pictures. */
+import type { BulletinContent } from '../../shared/schemas/bulletin.ts'
 import type { MessageContent, MessageKind } from '../../shared/schemas/message.ts'
+import { bulletinTitle } from '../../shared/bulletins/plainText.ts'
 import { bothSenses } from '../../shared/directions.ts'
 import { clockLocal, clockUtc, dateUtc } from '../../shared/times.ts'
+import { bulletinBlock, bulletinGlyph, bulletinGlyphCid, bulletinLines } from './letter/bulletinBlock.ts'
 import { colours, priorityColours } from './letter/colours.ts'
 import { glyphSvg, historySvg } from './letter/drawings.ts'
 import type { History } from './letter/drawings.ts'
@@ -19,6 +22,8 @@ export interface Letter {
   subject: string
   text: string
   content: MessageContent | null
+  /** Of a bulletin's e-mail: the bulletin as it was when the e-mail was written. */
+  bulletin?: BulletinContent | null
   isExercise: boolean
   alertId: number | null
   createdAt: Date
@@ -119,6 +124,27 @@ function rowsOf(content: MessageContent): Row[] {
   return rows.filter(({ text }) => text !== '')
 }
 
+const nothing = {
+  ...{ glyph: null, waves: null, measured: null, chart: null, rows: [], others: [], page: null, bulletin: null },
+}
+
+/** A bulletin wears no alert's colour: its places' priorities are told by the watch, not by the bulletin. */
+function bulletinPageOf({ subject }: Letter, bulletin: BulletinContent) {
+  const kind = bulletin.marker === 'warning' ? 'WARNING' : 'INFORMATION'
+  const audience = bulletin.audience ? `, for ${bulletin.audience}` : ''
+  return {
+    ...nothing,
+    ...{ ink: colours.ink, wash: colours.paper, paragraphs: [], caution: bulletin.cautions.join(' ') },
+    priorityLine: `${kind}${audience}. ${bulletinTitle(bulletin)}`,
+    heading: bulletin.cancelled ? `Cancelled: ${bulletin.headline}` : bulletin.headline || 'No headline',
+    headline: [
+      ...(subject.startsWith('PROOF') ? ['PROOF, not issued. It went to you alone.'] : []),
+      ...bulletinLines(bulletin),
+    ],
+    bulletin: bulletin.cancelled ? null : bulletinBlock(bulletin),
+  }
+}
+
 function pageOf(letter: Letter, around: Surroundings): Page {
   const { content, kind, receipt, isAcknowledged } = letter
   const { publicUrl, portName, isDemonstration } = around
@@ -136,12 +162,13 @@ function pageOf(letter: Letter, around: Surroundings): Page {
     afterwards: afterwardsOf(letter, around),
     foot: footOf(letter, around),
   }
+  if (letter.bulletin) return { ...common, ...bulletinPageOf(letter, letter.bulletin) }
   if (!content) {
     const paragraphs = letter.text.split('\n').filter((line) => line !== '')
     return {
       ...common,
       ...{ ink: colours.ink, wash: colours.paper, priorityLine: null, heading: letter.subject, headline: [] },
-      ...{ glyph: null, waves: null, measured: null, chart: null, rows: [], others: [], page: null, caution: null },
+      ...{ ...nothing, caution: null },
       paragraphs,
     }
   }
@@ -177,6 +204,7 @@ function pageOf(letter: Letter, around: Surroundings): Page {
       caption: chartWords(around),
     },
     rows: rowsOf(content),
+    bulletin: null,
     others: (content.others ?? []).map(({ line, path }) => ({ line, url: `${publicUrl}${path}` })),
     paragraphs: [],
     page: { url: `${publicUrl}${isSeveral ? '/alerts' : content.path}`, words: 'Open it in Offing' },
@@ -206,11 +234,13 @@ function textOf(letter: Letter, page: Page): string {
 export async function writeLetter(letter: Letter, around: Surroundings): Promise<Written> {
   const chartSvg = letter.content && around.history && historySvg(around.history)
   const page = pageOf(letter, chartSvg ? around : { ...around, history: null })
+  const bulletinDrawing = page.bulletin && letter.bulletin ? bulletinGlyph(letter.bulletin) : null
   const drawings = [
     { cid: 'mark@offing', name: 'offing.png', svg: wordmarkSvg },
     ...(page.glyph && letter.content?.glyph
       ? [{ cid: page.glyph.cid, name: 'waves.png', svg: glyphSvg(letter.content.glyph) }]
       : []),
+    ...(bulletinDrawing ? [{ cid: bulletinGlyphCid, name: 'waves.png', svg: glyphSvg(bulletinDrawing) }] : []),
     ...(page.chart && chartSvg ? [{ cid: page.chart.cid, name: 'history.png', svg: chartSvg }] : []),
   ]
   // One that cannot be made is left out: its alternative text says the same.

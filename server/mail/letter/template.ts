@@ -1,5 +1,7 @@
 /** The e-mail as a table of 600 px with its styles written out. Compiled once, when the program starts. */
 import Handlebars from 'handlebars'
+import type { BulletinBlock } from './bulletinBlock.ts'
+import { bulletinSource } from './bulletinTemplate.ts'
 import { colours as c } from './colours.ts'
 
 export interface Row {
@@ -21,6 +23,7 @@ export interface Page {
   measured: string | null
   chart: { cid: string; alt: string; caption: string } | null
   rows: Row[]
+  bulletin: BulletinBlock | null
   others: { line: string; url: string }[]
   paragraphs: string[]
   receipt: { url: string; words: string } | null
@@ -40,6 +43,7 @@ const source = `<!doctype html><html lang="en"><head><meta charset="utf-8"><meta
 {{#if priorityLine}}<div style="font-size:15px;font-weight:600;color:{{ink}}">{{priorityLine}}</div>{{/if}}
 <h1 style="font-size:25px;line-height:1.2;font-weight:600;margin:6px 0 4px;letter-spacing:-.02em">{{heading}}</h1>
 {{#each headline}}<div style="font-size:15px;line-height:1.45">{{this}}</div>{{/each}}</td></tr>
+{{#if bulletin}}{{#with bulletin}}${bulletinSource}{{/with}}{{/if}}
 {{#if waves}}<tr><td style="padding:20px 28px 4px"><table role="presentation" width="100%" cellpadding="0" cellspacing="0"><tr>
 {{#if glyph}}<td width="150" valign="middle"><table role="presentation" cellpadding="0" cellspacing="0"><tr><td><img src="cid:{{glyph.cid}}" width="72" height="72" alt="{{glyph.alt}}" style="display:block;border:0"></td><td style="padding:0 16px 0 6px;font-size:26px;font-weight:600;color:${c.wave};white-space:nowrap">{{glyph.height}}</td></tr></table></td>{{/if}}
 <td valign="middle" style="font-size:16px;line-height:1.55"><div>{{waves}}</div>{{#if measured}}<div style="color:${c.ink2};font-size:14px">{{measured}}</div>{{/if}}</td></tr></table></td></tr>

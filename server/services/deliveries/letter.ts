@@ -1,6 +1,8 @@
 /** Everything that one e-mail to one person says: the frozen content, and what is of that person alone. */
 import { z } from 'zod'
 import type { Transaction } from 'sequelize'
+import { bulletinContent } from '../../../shared/schemas/bulletin.ts'
+import type { BulletinContent } from '../../../shared/schemas/bulletin.ts'
 import { condition, recipients } from '../../../shared/schemas/limit.ts'
 import type { SubjectKind } from '../../../shared/schemas/limit.ts'
 import { messageContent, messageKind } from '../../../shared/schemas/message.ts'
@@ -23,6 +25,7 @@ export interface Letter {
   subject: string
   text: string
   content: MessageContent | null
+  bulletin: BulletinContent | null
   isExercise: boolean
   alertId: number | null
   createdAt: Date
@@ -65,6 +68,7 @@ export async function letterOf(
     subject: message.subject,
     text: message.text,
     content: z.nullable(messageContent).parse(message.content),
+    bulletin: z.nullable(bulletinContent).parse(message.bulletin),
     isExercise: message.isExercise,
     alertId: message.alertId,
     createdAt: message.createdAt,
