@@ -63,6 +63,25 @@ export const settingSections: readonly SettingSection[] = [
     fields: [{ name: 'name', label: 'Name', kind: 'text', help: 'Empty: as the configuration has it.' }],
   },
   {
+    group: 'bulletins',
+    title: 'Bulletins',
+    says: 'who looks at them before they go out, and who may read them',
+    fields: [
+      {
+        name: 'asksSecondPerson',
+        label: 'A second pair of eyes before issuing',
+        kind: 'switch',
+        help: 'Another operator consents at the desk; who is alone writes down why.',
+      },
+      {
+        name: 'isPublic',
+        label: 'Public page of bulletins',
+        kind: 'switch',
+        help: 'Anybody can read issued bulletins at /bulletin without signing in; no names stand there.',
+      },
+    ],
+  },
+  {
     group: 'people',
     title: 'Signing in',
     says: 'who needs more than a passphrase',
