@@ -31,7 +31,7 @@ function plainCrossSpectra({ series, sampleRate }: ArrayWindow): Float64Array[] 
   const length = 128 * sampleRate
   const fft = new FFT(length)
   const taper = Float64Array.from({ length }, (_, i) => 0.5 - 0.5 * Math.cos((2 * Math.PI * i) / length))
-  const input = new Array<number>(length)
+  const input = new Float64Array(length)
   const parts = series.map(() => new Float64Array(2 * length))
   const pairs = series.flatMap((_, i) => series.slice(i).map(() => new Float64Array(length + 2)))
   for (let start = 0; start + length <= series[0].length; start += length / 2) {

@@ -83,7 +83,7 @@ describe('the window given to the estimator', () => {
   })
 
   it('hands on the clock offset that is in force for each sensor', () => {
-    const offset = { sensorId: 2, sd: 0.01 }
+    const offset = { sensorId: 2, sd: 0.01, recordedAt: 0 }
     const { window } = arrayWindowOf(
       question([sensor(1), sensor(2)], 0, {
         clockOffsets: [
