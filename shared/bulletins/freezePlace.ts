@@ -19,7 +19,7 @@ const usableFlags = [1, 2, 3]
 /** `nowMs`: server time, ms since 1970 UTC. A place without a figure now is missing, with the reason in words. */
 export function freezePlace(place: PlaceView, nowMs: number): BulletinFigure {
   const missing = (reason: string): BulletinFigure => ({
-    ...{ kind: 'missing', subject: 'place', subjectId: place.id, name: place.name, reason },
+    ...{ kind: 'missing', subject: 'place', subjectId: place.id, name: place.name, reason: reason.replace(/\.$/, '') },
   })
   const last = place.lastGood ? `, last good ${clockUtc(Date.parse(place.lastGood.windowEndsAt))} UTC` : ''
   const picture = livePlace(place, nowMs)
