@@ -109,8 +109,9 @@ async function saveOne(
   const { windowStartsAt, windowEndsAt } = feed?.estimate ?? estimate
   const [known] = await select<KnownRow>(
     sequelize,
+    // Locking, for the transaction's own view is older than the lock on the place: another station's outlook may have come since.
     `SELECT revision, stationId, estimateRevision, placeSettingsId FROM outlooks
-     WHERE placeId = :placeId AND windowEndsAt = :windowEndsAt ORDER BY revision DESC LIMIT 1`,
+     WHERE placeId = :placeId AND windowEndsAt = :windowEndsAt ORDER BY revision DESC LIMIT 1 FOR UPDATE`,
     { placeId: place.id, windowEndsAt: new Date(windowEndsAt) },
     transaction,
   )
