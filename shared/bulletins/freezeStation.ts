@@ -61,5 +61,11 @@ export function freezeStation(station: StationView, nowMs: number): StationFigur
     },
     totalHeight: estimate.significantWaveHeight,
     totalHeightSd: estimate.significantWaveHeightSd,
+    ...(station.deployment && {
+      plan: {
+        sensors: station.deployment.sensors.map(({ letter, east, north }) => ({ name: letter, east, north })),
+        landSectors: station.landSectors,
+      },
+    }),
   }
 }

@@ -54,6 +54,13 @@ export const stationFigure = z.object({
   }),
   totalHeight: z.number().nullable(),
   totalHeightSd: z.number().nullable(),
+  /** Of its array, for the drawing: metres true east and north, land between two bearings. Bulletins of earlier versions have none. */
+  plan: z
+    .object({
+      sensors: z.array(z.object({ name: z.string(), east: z.number(), north: z.number() })),
+      landSectors: z.array(z.tuple([z.number(), z.number()])),
+    })
+    .optional(),
 })
 export type StationFigure = z.infer<typeof stationFigure>
 
