@@ -46,7 +46,13 @@ describe('the schema', () => {
       `SELECT DISTINCT TABLE_NAME AS name FROM information_schema.PARTITIONS
        WHERE TABLE_SCHEMA = DATABASE() AND PARTITION_NAME IS NOT NULL ORDER BY name`,
     )
-    expect(rows.map((row) => row.name)).toEqual(['estimateDetails', 'estimates', 'readingBlocks', 'stationHealthHours'])
+    expect(rows.map((row) => row.name)).toEqual([
+      'estimateDetails',
+      'estimates',
+      'outlooks',
+      'readingBlocks',
+      'stationHealthHours',
+    ])
   })
 })
 
