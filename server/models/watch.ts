@@ -1,7 +1,7 @@
 import { DataTypes, Model } from 'sequelize'
 import type { CreationOptional, InferAttributes, InferCreationAttributes, Sequelize } from 'sequelize'
 
-/** One person's time on watch. A unique key over a generated column keeps one open at most. */
+/** One person's time on watch. `openKey` lets one be open at most. */
 export class Watch extends Model<InferAttributes<Watch>, InferCreationAttributes<Watch>> {
   declare id: CreationOptional<number>
   declare personId: number
@@ -11,6 +11,7 @@ export class Watch extends Model<InferAttributes<Watch>, InferCreationAttributes
   /** For the next officer, by item; written during the watch. */
   declare notes: Record<string, string>
   declare expected: string
+  declare openKey: CreationOptional<number | null>
 }
 
 export const defineWatch = (sequelize: Sequelize): void => {
@@ -23,6 +24,7 @@ export const defineWatch = (sequelize: Sequelize): void => {
       endedAt: DataTypes.DATE(3),
       notes: { type: DataTypes.JSON, allowNull: false },
       expected: { type: DataTypes.STRING(2000), allowNull: false },
+      openKey: DataTypes.TINYINT,
     },
     { sequelize, tableName: 'watches' },
   )

@@ -112,7 +112,7 @@ export function describeSea(
   const tested = { ...described, tests: [...described.tests, bulkLimitsTest(described, limits)] }
   if (doubts.ambiguous) return refuse(tested, 'ambiguous')
   if (isSurfZone(tested)) return refuse(tested, 'surf-zone')
-  return { ...tested, qualityFlag: overallFlag(tested) }
+  return { ...tested, qualityFlag: overallFlag(tested, Boolean(doubts.turns[lead])) }
 }
 
 /**
@@ -195,18 +195,12 @@ function seaTests(result: EstimateResult, leading: WaveSystem): QualityTest[] {
 }
 
 /** Suspect (3) when a sensor was left out, a geometry fault was found or a test of the sea is suspect; else good. */
-function overallFlag(result: EstimateResult): QualityFlag {
-  const geometry = [
-    'lag closure',
-    'dispersion ratio',
-    'height over depth',
-    'sensor phases',
-    coherenceTest,
-    mixedSeasTest,
-  ]
+/** A second train that may be two has its own wide ±; it leaves the leading one's vector as good as it is. */
+function overallFlag(result: EstimateResult, isLeadMixed: boolean): QualityFlag {
+  const geometry = ['lag closure', 'dispersion ratio', 'height over depth', 'sensor phases', coherenceTest]
   const doubtful = result.tests.some(
     (test) =>
       (geometry.includes(test.test) && test.flag !== 1) || (bulkTestNames.includes(test.test) && test.flag === 3),
   )
-  return doubtful || result.sensors.some((sensor) => !sensor.used) ? 3 : 1
+  return doubtful || isLeadMixed || result.sensors.some((sensor) => !sensor.used) ? 3 : 1
 }

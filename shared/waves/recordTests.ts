@@ -29,8 +29,10 @@ export function judgeAgainstPast(
 ): EstimateResult {
   if (result.significantWaveHeight === null) return result
   const before = past.filter((one) => one.at < at)
-  const tests = [usual(result, before, limits), repeats(result, before, limits), change(result, before, at, limits)]
-  const worst = tests.reduce<QualityFlag>((flag, test) => graver(flag, test.flag), result.qualityFlag)
+  // A sea far from the usual of the last days is of high interest, and in a gale it is true: it is told and doubts nothing.
+  const doubting = [repeats(result, before, limits), change(result, before, at, limits)]
+  const tests = [usual(result, before, limits), ...doubting]
+  const worst = doubting.reduce<QualityFlag>((flag, test) => graver(flag, test.flag), result.qualityFlag)
   return { ...result, tests: [...result.tests, ...tests], qualityFlag: worst }
 }
 

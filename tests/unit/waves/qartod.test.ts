@@ -181,6 +181,13 @@ describe('an estimate against those before it', () => {
     expect(judgeAgainstPast(of(1.2, 16), past, now, limits).tests[2]).toMatchObject({ flag: 3, detail: expect.stringContaining('peak period by 7.0 s') }) // prettier-ignore
   })
 
+  it('is told and not doubted where it is far from the usual and rose by and by, as in a gale', () => {
+    const rising = past.map((one) => (one.at >= now - 2 * jumpMs ? { ...one, significantWaveHeight: 2.4 } : one))
+    const gale = judgeAgainstPast(of(2.6), rising, now, limits)
+    expect(flags(gale)[0]).toEqual(['mean and deviation', 3])
+    expect(gale.qualityFlag).toBe(1)
+  })
+
   it('fails where the very same height comes again and again', () => {
     const same = (count: number) =>
       judgeAgainstPast(
