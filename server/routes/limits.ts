@@ -1,7 +1,15 @@
 import { z } from 'zod'
 import { presentQuantity, quantities } from '../../shared/alerts/quantities.ts'
 import { shelving, withReason, withReasonAndConsent } from '../../shared/schemas/alert.ts'
-import { backTestQuestion, backTestView, limitChange, limitDraft, limitSubject, limitView, limitWithHistory, quantityView } from '../../shared/schemas/limit.ts' // prettier-ignore
+import { backTestQuestion, backTestView } from '../../shared/schemas/backTest.ts'
+import {
+  limitChange,
+  limitDraft,
+  limitSubject,
+  limitView,
+  limitWithHistory,
+  quantityView,
+} from '../../shared/schemas/limit.ts'
 import type { Parts } from '../config/parts.ts'
 import { officeOf } from '../presenters/office.ts'
 import { resetLimit, returnToService, shelveLimit, takeOutOfService, unshelveLimit } from '../services/alerts.ts'
@@ -79,7 +87,7 @@ export const limitRoutes = (parts: Parts): Route[] => [
     method: 'post',
     path: '/api/limits',
     action: 'limits.change',
-    summary: "Set a limit; the first wave limit that needs a station brings one on stale data with it",
+    summary: 'Set a limit; the first wave limit that needs a station brings one on stale data with it',
     body: limitDraft,
     answer: limitView,
     status: 201,

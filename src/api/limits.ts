@@ -1,14 +1,9 @@
 import { z } from 'zod'
 import type { ReasonAndConsent } from '../../shared/schemas/alert.ts'
-import { backTestView, limitSubject, limitView, limitWithHistory } from '../../shared/schemas/limit.ts'
-import type {
-  BackTestQuestion,
-  BackTestView,
-  LimitChange,
-  LimitDraft,
-  LimitSubject,
-  LimitView,
-} from '../../shared/schemas/limit.ts'
+import { backTestView } from '../../shared/schemas/backTest.ts'
+import type { BackTestQuestion, BackTestView } from '../../shared/schemas/backTest.ts'
+import { limitSubject, limitView, limitWithHistory } from '../../shared/schemas/limit.ts'
+import type { LimitChange, LimitDraft, LimitSubject, LimitView } from '../../shared/schemas/limit.ts'
 import { request } from './request.ts'
 
 export type LimitWithHistory = z.infer<typeof limitWithHistory>

@@ -1,7 +1,8 @@
 import { computed, onBeforeUnmount, ref, shallowRef, watch } from 'vue'
 import type { Ref } from 'vue'
 import { quantityOf } from '../../shared/alerts/quantities.ts'
-import type { BackTestView, Condition, SubjectKind } from '../../shared/schemas/limit.ts'
+import type { BackTestView } from '../../shared/schemas/backTest.ts'
+import type { Condition, SubjectKind } from '../../shared/schemas/limit.ts'
 import { inWords } from '../api/problem.ts'
 import { useLimits } from '../stores/limits.ts'
 

@@ -1,6 +1,6 @@
 /** Where things of the back-test's drawing stand: times and values in, pixels out. Pure. */
 import { quantityOf } from '../../../shared/alerts/quantities.ts'
-import type { BackTestView } from '../../../shared/schemas/limit.ts'
+import type { BackTestView } from '../../../shared/schemas/backTest.ts'
 import { niceTicks } from '../drawings/geometry/niceScale.ts'
 
 export interface Box {

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest'
 import { backTestPath, backTestScale, dayTicks } from '../../../src/components/limits/backTestLayout.ts'
 import { niceTicks, tickPlaces, unbroken } from '../../../src/components/drawings/geometry/niceScale.ts'
-import type { BackTestView } from '../../../shared/schemas/limit.ts'
+import type { BackTestView } from '../../../shared/schemas/backTest.ts'
 
 const run = { raise: 1, clear: 0.85, count: 0, activeSeconds: 0, aWeek: 0, episodes: [] }
 const hour = (n: number): string => new Date(Date.parse('2026-11-12T00:00:00.000Z') + n * 3_600_000).toISOString()
