@@ -54,8 +54,8 @@ function parts(root: string, reports: string) {
     count: () => readFaultReport(faultReport),
   }
   return [
-    [types, build, vitest('e2e'), lint, vitest('client')],
-    [vitest('unit'), imports, vitest('api'), faults],
+    [types, build, vitest('e2e'), vitest('client')],
+    [vitest('unit'), imports, lint, vitest('api'), faults],
   ]
 }
 
