@@ -9,7 +9,6 @@ import { unpackDay } from '../../server/models/seriesDayPayload.ts'
 import { outlookView, placeSeriesView } from '../../shared/schemas/placeOutlook.ts'
 import { placeView } from '../../shared/schemas/place.ts'
 import type { PlaceView } from '../../shared/schemas/place.ts'
-import { saveOutlooks } from '../../server/services/places.ts'
 import { makeList } from '../support/alerts.ts'
 import { signedIn } from '../support/browser.ts'
 import type { Browser } from '../support/browser.ts'
@@ -141,19 +140,6 @@ describe('an outlook', () => {
       [at(18).toISOString(), false],
       [at(40).toISOString(), true],
     ])
-  })
-
-  test('of two stations at the same moment stands from the better one, and neither estimate is lost', async () => {
-    parts.clock.set(at(60))
-    const window = { windowStartsAt: at(40).getTime(), windowEndsAt: at(60).getTime() }
-    // This transaction's view is taken before the other station's outlook is committed.
-    await parts.sequelize.transaction(async (transaction) => {
-      await Outlook.count({ transaction })
-      await saveSea(parts, coast.stations.FW, at(60))
-      await saveOutlooks(parts, { stationId: coast.stations.PB.id, ...window }, transaction)
-    })
-    const rows = await Outlook.findAll({ where: { placeId: beach, windowEndsAt: at(60) } })
-    expect(rows.map(({ revision }) => revision)).toEqual([1])
   })
 
   test('is written by the job in the transaction of the estimate', async () => {
