@@ -1,4 +1,5 @@
 /** Who is on watch: taking over, handing over with a signed sheet, notes owed. */
+import { Op } from 'sequelize'
 import { HandOver, Watch } from '../models/index.ts'
 import { presentHandOvers, presentWatches } from './watches/present.ts'
 import type { HandOverView, WatchView } from '../../shared/schemas/watch.ts'
@@ -34,8 +35,8 @@ const aPage = 40
 
 /** Newest first; `before` is the last id of the page before. */
 export async function listWatches(before: number | null): Promise<{ watches: WatchView[]; next: number | null }> {
-  const rows = await Watch.findAll({ order: [['id', 'DESC']] })
-  const after = rows.filter(({ id }) => before === null || id < before)
-  const page = after.slice(0, aPage)
-  return { watches: await presentWatches(page), next: after.length > aPage ? (page.at(-1)?.id ?? null) : null }
+  const where = before === null ? {} : { id: { [Op.lt]: before } }
+  const rows = await Watch.findAll({ where, order: [['id', 'DESC']], limit: aPage + 1 })
+  const page = rows.slice(0, aPage)
+  return { watches: await presentWatches(page), next: rows.length > aPage ? (page.at(-1)?.id ?? null) : null }
 }
